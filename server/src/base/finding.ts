@@ -1,0 +1,98 @@
+import { CATALOGUE, type FindingCode, type Severity } from './catalogue';
+import type { Span } from './span';
+
+/** A further place that a finding speaks of. */
+export interface Related extends Span {
+  readonly message: string;
+}
+
+/** A replacement of one span of the text. */
+export interface TextEdit extends Span {
+  readonly text: string;
+}
+
+/** A remedy that can be applied: what it does, and the edits that do it. */
+export interface Fix {
+  readonly title: string;
+  readonly edits: readonly TextEdit[];
+}
+
+/** One thing found in a file, at an exact place. */
+export interface Finding extends Span {
+  readonly code: FindingCode;
+  readonly severity: Severity;
+  /** The reason and what to do, in sentences. */
+  readonly message: string;
+  readonly related: readonly Related[];
+  readonly fix?: Fix;
+}
+
+/** What a site adds to the catalogue's entry. */
+export interface FindingDetail {
+  readonly related?: readonly Related[];
+  readonly fix?: Fix;
+}
+
+/** Makes a finding: `reason` says what was seen, the catalogue adds what to do. */
+export function finding(code: FindingCode, span: Span, reason: string, detail: FindingDetail = {}): Finding {
+  const entry = CATALOGUE[code];
+  return {
+    code,
+    severity: entry.severity,
+    message: `${reason} ${entry.remedy}`,
+    start: span.start,
+    end: span.end,
+    related: detail.related ?? [],
+    ...(detail.fix === undefined ? {} : { fix: detail.fix }),
+  };
+}
+
+/** How many findings of one code are kept one by one; the last then says how many more there were. */
+const KEPT_PER_CODE = 100;
+
+/** Collects findings with bounded memory: past a hundred of one code they are only counted. */
+export class FindingCollector {
+  readonly #kept: Finding[] = [];
+  readonly #counts = new Map<FindingCode, number>();
+  readonly #last = new Map<FindingCode, number>();
+
+  /** Adds a finding; the reason is only made where the finding is kept. */
+  add(code: FindingCode, span: Span, reason: () => string, detail?: () => FindingDetail): void {
+    if (this.#admits(code)) this.#kept.push(finding(code, span, reason(), detail?.()));
+  }
+
+  push(entry: Finding): void {
+    if (this.#admits(entry.code)) this.#kept.push(entry);
+  }
+
+  #admits(code: FindingCode): boolean {
+    const count = this.count(code) + 1;
+    this.#counts.set(code, count);
+    if (count > KEPT_PER_CODE) return false;
+    this.#last.set(code, this.#kept.length);
+    return true;
+  }
+
+  count(code: FindingCode): number {
+    return this.#counts.get(code) ?? 0;
+  }
+
+  /** All findings kept, in the order of their place in the text. */
+  list(): Finding[] {
+    const list = [...this.#kept];
+    for (const [code, count] of this.#counts) {
+      const index = this.#last.get(code);
+      if (count <= KEPT_PER_CODE || index === undefined) continue;
+      const entry = list[index]!;
+      list[index] = { ...entry, message: `${entry.message} (${count - KEPT_PER_CODE} more like this are not listed.)` };
+    }
+    return sortFindings(list);
+  }
+}
+
+/** Orders findings by place, then code. */
+export function sortFindings(findings: Finding[]): Finding[] {
+  return findings.sort(
+    (a, b) => a.start - b.start || a.end - b.end || (a.code < b.code ? -1 : a.code > b.code ? 1 : 0),
+  );
+}

@@ -1,0 +1,174 @@
+import { FindingCollector } from '../../base/finding';
+import { indexLines } from '../../text/lines';
+import { trimEnd } from '../../text/numbers';
+import type { Snapshot } from '../../text/snapshot';
+import { valueText } from '../annotation/lists';
+import { finishTree } from '../unreadable';
+import type { AtomField, CoordinateTree, FrameTree, RemarkAnnotation } from '../tree';
+import { ModelAtoms } from './atoms';
+import { ConnectionRecords } from './connections';
+import { readCrystalCell } from './crystal';
+import { ATOM_COLUMNS, type ColumnRange, FixedColumns } from './fields';
+import { checkRemarks, readRemark } from './remarks';
+
+/**
+ * Reads the Protein Data Bank format: models, atoms by fixed columns, chains, CONECT, LINK, CRYST1, and the annotation in REMARK
+ * records. Any text gives a tree; every problem is in its list. Linear in the text.
+ */
+export function parsePdb(text: Snapshot): CoordinateTree {
+  const lines = indexLines(text);
+  const columns = new FixedColumns(text, lines);
+  const problems = new FindingCollector();
+  const remarks = readRemarks(text, columns, problems);
+  const chargeColumn = readChargeColumn(text, remarks, problems);
+  const connections = new ConnectionRecords(columns);
+  const frames: FrameTree[] = [];
+  let cell: FrameTree['cell'] = null;
+  const state: { open: OpenModel | null } = { open: null };
+
+  const begin = (line: number) => {
+    state.open = { firstLine: line, model: new ModelAtoms(columns, problems, chargeColumn) };
+    return state.open;
+  };
+  const end = (line: number) => {
+    const { open } = state;
+    state.open = null;
+    if (open === null || open.model.count === 0) return;
+    const { atoms, residues, alternateSites, firstAlternateLine } = open.model.build();
+    if (alternateSites > 0) {
+      const span = columns.span(firstAlternateLine, ATOM_COLUMNS.altLoc);
+      problems.add('alternate-locations', span, () => {
+        const places = alternateSites === 1 ? 'One residue has' : `${alternateSites} residues have`;
+        return `${places} alternate locations; the ones with less occupancy are left out, the first of them here.`;
+      });
+    }
+    const fieldSpan: FrameTree['fieldSpan'] = (atom, field) => fieldOf(columns, atoms.line[atom]!, field);
+    frames.push({
+      index: frames.length,
+      firstLine: open.firstLine,
+      endLine: line,
+      headLine: open.firstLine,
+      atoms,
+      groups: null,
+      entries: [],
+      cell,
+      residues,
+      bonds: new Int32Array(0),
+      fieldSpan,
+    });
+  };
+
+  for (let line = 0; line < lines.count; line++) {
+    switch (recordAt(text.bytes, lines.starts[line]!, lines.end(line))) {
+      case 'ATOM':
+      case 'HETATM':
+        (state.open ?? begin(line)).model.read(line);
+        break;
+      case 'MODEL':
+        end(line);
+        begin(line);
+        break;
+      case 'ENDMDL':
+      case 'END':
+        end(line + 1);
+        break;
+      case 'TER':
+        state.open?.model.endSegment();
+        break;
+      case 'CONECT':
+      case 'LINK':
+        connections.add(line);
+        break;
+      case 'CRYST1':
+        cell = readCrystalCell(columns, line, problems);
+        break;
+    }
+  }
+  end(lines.count);
+  const bonded = frames.map((frame) => ({ ...frame, bonds: connections.bondsOf(frame) }));
+  checkRemarks(remarks, bonded, text, problems);
+  return finishTree({ language: 'pdb', text, lines, frames: bonded, remarks }, problems);
+}
+
+interface OpenModel {
+  readonly firstLine: number;
+  readonly model: ModelAtoms;
+}
+
+type RecordName = 'ATOM' | 'HETATM' | 'MODEL' | 'ENDMDL' | 'END' | 'TER' | 'CONECT' | 'LINK' | 'CRYST1';
+
+const RECORDS: ReadonlyMap<string, RecordName> = new Map(
+  (['ATOM', 'HETATM', 'MODEL', 'ENDMDL', 'END', 'TER', 'CONECT', 'LINK', 'CRYST1'] as const).map((name) => [name, name]),
+);
+
+/** The record name in columns 1–6, told by its letters without making strings for atoms. */
+function recordAt(bytes: Uint8Array, start: number, end: number): RecordName | undefined {
+  if (end - start < 3) return undefined;
+  const first = bytes[start]!;
+  // A, H: the bulk of the file.
+  if (first === 65) {
+    const isAtom = bytes[start + 1] === 84 && bytes[start + 2] === 79 && bytes[start + 3] === 77;
+    return isAtom && (end - start === 4 || bytes[start + 4] === 32) ? 'ATOM' : undefined;
+  }
+  if (first === 72 && bytes[start + 1] === 69 && bytes[start + 2] === 84) return 'HETATM';
+  if (first < 67 || first > 84) return undefined;
+  let name = '';
+  for (let i = start; i < Math.min(start + 6, end) && bytes[i] !== 32; i++) name += String.fromCharCode(bytes[i]!);
+  return RECORDS.get(name);
+}
+
+function readRemarks(text: Snapshot, columns: FixedColumns, problems: FindingCollector): RemarkAnnotation[] {
+  const { lines } = columns;
+  const remarks: RemarkAnnotation[] = [];
+  for (let line = 0; line < lines.count; line++) {
+    const start = lines.starts[line]!;
+    // R, E, M: cheap enough to pass over a million atoms.
+    if (text.bytes[start] !== 82 || text.bytes[start + 1] !== 69 || text.bytes[start + 2] !== 77) continue;
+    if (text.slice(start, start + 6) !== 'REMARK') continue;
+    const remark = readRemark(text, lines, line, problems);
+    if (remark !== null) remarks.push(remark);
+  }
+  return remarks;
+}
+
+function readChargeColumn(
+  text: Snapshot,
+  remarks: readonly RemarkAnnotation[],
+  problems: FindingCollector,
+): ColumnRange | null {
+  for (const remark of remarks) {
+    if (remark.selector !== null) continue;
+    const entry = remark.entries.find((candidate) => candidate.key === 'charge_column');
+    if (entry === undefined) continue;
+    const value = valueText(text, entry).trim().toLowerCase();
+    if (value === 'occupancy') return ATOM_COLUMNS.occupancy;
+    if (value === 'bfactor') return ATOM_COLUMNS.temperatureFactor;
+    const match = /^(\d{1,3})-(\d{1,3})$/.exec(value);
+    const first = Number(match?.[1]);
+    const last = Number(match?.[2]);
+    if (match !== null && first >= 55 && last >= first && last <= 200) return [first - 1, last];
+    problems.add('value-invalid', entry.value, () => {
+      return 'charge_column is occupancy, bfactor, or a range of columns from 55 on such as 71-76.';
+    });
+    return null;
+  }
+  return null;
+}
+
+function fieldOf(columns: FixedColumns, line: number, field: AtomField): { start: number; end: number } {
+  const { bytes } = columns.text;
+  switch (field) {
+    case 'line': {
+      const start = columns.lines.starts[line]!;
+      return { start, end: trimEnd(bytes, start, columns.lines.end(line)) };
+    }
+    case 'element': {
+      const written = columns.span(line, ATOM_COLUMNS.element);
+      return columns.trimmed(line, ATOM_COLUMNS.element) === '' ? columns.span(line, ATOM_COLUMNS.name) : written;
+    }
+    case 'charge':
+      return columns.span(line, ATOM_COLUMNS.formalCharge);
+    default:
+      return columns.span(line, ATOM_COLUMNS[field]);
+  }
+}

@@ -1,0 +1,121 @@
+import type { FindingCollector } from '../../base/finding';
+import type { LineIndex } from '../../text/lines';
+import type { Snapshot } from '../../text/snapshot';
+import { type Entry, scanEntries } from '../annotation/entries';
+import { FILE_KEYS, SELECTED_KEYS } from '../annotation/keys';
+import { valueText } from '../annotation/lists';
+import { reportKeys } from '../annotation/report-keys';
+import type { FrameTree, RemarkAnnotation, Residue, Selector } from '../tree';
+import { decodeHybrid36 } from './hybrid36';
+
+const FIRST_FREE_REMARK = 6;
+const LAST_FREE_REMARK = 99;
+/** Column of the text of a REMARK, from 0. */
+const TEXT_COLUMN = 11;
+
+const KNOWN = new Set<string>([...SELECTED_KEYS, ...FILE_KEYS]);
+
+/**
+ * Reads the annotation in one REMARK line, or `null` where the line is none: its number is outside the free range 6–99, or none
+ * of its keys is ours.
+ */
+export function readRemark(
+  text: Snapshot,
+  lines: LineIndex,
+  line: number,
+  problems: FindingCollector,
+): RemarkAnnotation | null {
+  const lineStart = lines.starts[line]!;
+  const lineEnd = lines.end(line);
+  if (lineEnd <= lineStart + TEXT_COLUMN) return null;
+  const number = Number(text.slice(lineStart + 6, lineStart + 10));
+  if (!(number >= FIRST_FREE_REMARK && number <= LAST_FREE_REMARK)) return null;
+  const entries = scanEntries(text, lineStart + TEXT_COLUMN - 1, lineEnd);
+  if (!entries.some((entry) => KNOWN.has(entry.key))) return null;
+  const selectorEntry = entries.find((entry) => entry.key === 'fragment');
+  const known: readonly string[] = selectorEntry === undefined ? FILE_KEYS : SELECTED_KEYS;
+  reportKeys(text, entries, known, problems);
+  const rest = entries.filter((entry) => entry.key !== 'fragment');
+  if (selectorEntry === undefined) {
+    return { line, selector: null, selectorSpan: { start: lineStart, end: lineEnd }, entries: rest };
+  }
+  const selector = parseSelector(valueText(text, selectorEntry));
+  if (selector === null) {
+    problems.add(
+      'value-invalid',
+      selectorEntry.value,
+      () => 'A selector is chain:residue:number with an optional insertion code.',
+    );
+    return null;
+  }
+  return { line, selector, selectorSpan: selectorEntry.value, entries: rest };
+}
+
+/** Parses `chain:residue:number[insertion]`; `*` for any, `_` for a blank chain. `null` where it is no selector. */
+export function parseSelector(text: string): Selector | null {
+  const parts = text.split(':');
+  if (parts.length !== 3) return null;
+  const [chain, name, place] = parts.map((part) => part.trim()) as [string, string, string];
+  if (chain === '' || name === '' || place === '') return null;
+  const any = place === '*';
+  const match = /^(-?\d+|[A-Za-z][0-9A-Za-z]{3})([A-Za-z]?)$/.exec(place);
+  if (!any && match === null) return null;
+  const number = any ? null : decodeHybrid36(match![1]!.length < 4 ? match![1]!.padStart(4) : match![1]!, 4);
+  return {
+    chain: chain === '*' ? null : chain === '_' ? '' : chain,
+    name: name === '*' ? null : name,
+    number,
+    insertion: any ? null : match![2]!,
+  };
+}
+
+export function selectorMatches(selector: Selector, residue: Residue): boolean {
+  return (
+    (selector.chain === null || selector.chain === residue.chain) &&
+    (selector.name === null || selector.name === residue.name) &&
+    (selector.number === null || selector.number === residue.number) &&
+    (selector.insertion === null || selector.insertion === residue.insertion)
+  );
+}
+
+/** How exact a selector is: a number outweighs a name, a name a chain. */
+export function selectorWeight(selector: Selector): number {
+  return (selector.number === null ? 0 : 4) + (selector.name === null ? 0 : 2) + (selector.chain === null ? 0 : 1);
+}
+
+/** Reports selectors that match nothing in any model, and keys given twice for one selector on different lines. */
+export function checkRemarks(
+  remarks: readonly RemarkAnnotation[],
+  frames: readonly FrameTree[],
+  text: Snapshot,
+  problems: FindingCollector,
+): void {
+  const first = new Map<string, { line: number; entry: Entry }>();
+  for (const { line, selector, selectorSpan, entries } of remarks) {
+    if (selector !== null && !isMatched(selector, frames)) {
+      problems.add('selector-unmatched', selectorSpan, () => {
+        return `No fragment of the file is ${text.slice(selectorSpan.start, selectorSpan.end)}.`;
+      });
+    }
+    const owner = JSON.stringify(selector);
+    for (const entry of entries) {
+      if (!KNOWN.has(entry.key)) continue;
+      const id = `${owner} ${entry.key}`;
+      const earlier = first.get(id);
+      if (earlier === undefined) first.set(id, { line, entry });
+      else if (earlier.line !== line) {
+        problems.add(
+          'key-repeated',
+          entry.keySpan,
+          () =>
+            `"${entry.key}" is given on line ${earlier.line + 1} and again on line ${line + 1} for the same fragments; the first one is used.`,
+          () => ({ related: [{ ...earlier.entry.keySpan, message: 'The first one stands here.' }] }),
+        );
+      }
+    }
+  }
+}
+
+function isMatched(selector: Selector, frames: readonly FrameTree[]): boolean {
+  return frames.some((frame) => frame.residues?.some((residue) => selectorMatches(selector, residue)) ?? false);
+}

@@ -1,0 +1,44 @@
+import type { FindingCollector } from '../../base/finding';
+import { itemNumber, listItems } from '../annotation/lists';
+import type { Entry } from '../annotation/entries';
+import { readBoolean } from '../annotation/values';
+import type { Snapshot } from '../../text/snapshot';
+import type { FrameTree } from '../tree';
+
+/** Reads `Lattice` (nine numbers: the cell vectors as rows; three: a box) and `pbc`; a cell without `pbc` is periodic. */
+export function readCell(text: Snapshot, entries: readonly Entry[], problems: FindingCollector): FrameTree['cell'] {
+  const periodic = readPeriodic(text, entries, problems);
+  const lattice = entries.find((entry) => entry.key === 'Lattice');
+  if (lattice === undefined) return null;
+  const items = listItems(text, lattice);
+  if (items.length !== 9 && items.length !== 3) {
+    problems.add('array-length', lattice.value, () => `Lattice has ${items.length} numbers; it needs nine (or three for a box).`);
+    return null;
+  }
+  const numbers = items.map((item) => itemNumber(text, item).value);
+  const bad = numbers.findIndex((value) => Number.isNaN(value));
+  if (bad >= 0) {
+    const span = items[bad]!;
+    problems.add('number-unreadable', span, () => `"${text.slice(span.start, Math.min(span.end, span.start + 40))}" in Lattice is no finite number.`);
+    return null;
+  }
+  const vectorsA = Float64Array.from(
+    numbers.length === 9 ? numbers : [numbers[0]!, 0, 0, 0, numbers[1]!, 0, 0, 0, numbers[2]!],
+  );
+  return { vectorsA, periodic: periodic ?? [true, true, true], span: lattice.value };
+}
+
+function readPeriodic(
+  text: Snapshot,
+  entries: readonly Entry[],
+  problems: FindingCollector,
+): readonly [boolean, boolean, boolean] | null {
+  const entry = entries.find((candidate) => candidate.key === 'pbc');
+  if (entry === undefined) return null;
+  const flags = listItems(text, entry).map((item) => readBoolean(text.slice(item.start, Math.min(item.end, item.start + 8))));
+  if (flags.length !== 3 || flags.includes(undefined)) {
+    problems.add('value-invalid', entry.value, () => 'pbc needs three flags, each T or F.');
+    return null;
+  }
+  return [flags[0] === true, flags[1] === true, flags[2] === true];
+}
