@@ -1,5 +1,8 @@
 // Bundles every entry point. `node esbuild.mjs` writes what the package and the command line run.
+import { readFile } from 'node:fs/promises';
 import { build } from 'esbuild';
+
+const { version } = JSON.parse(await readFile(new URL('package.json', import.meta.url), 'utf8'));
 
 const shared = {
   bundle: true,
@@ -9,6 +12,7 @@ const shared = {
   sourcemap: false,
   legalComments: 'none',
   logLevel: 'warning',
+  define: { POLEWISE_VERSION: JSON.stringify(version) },
 };
 
 await Promise.all([

@@ -40,7 +40,8 @@ export const CATALOGUE = {
   'number-unreadable': {
     severity: 'error',
     title: 'Number unreadable',
-    meaning: 'A field that must hold a finite decimal number holds something else. The atom is left out of the analysis.',
+    meaning:
+      'A field that must hold a finite decimal number holds something else. The atom is left out of the analysis.',
     remedy: 'Write a decimal number.',
   },
   'field-missing': {
@@ -65,7 +66,8 @@ export const CATALOGUE = {
   'array-length': {
     severity: 'error',
     title: 'Array of the wrong length',
-    meaning: 'A list does not have one entry (three for vectors, nine for a cell) for each thing it describes. The key is ignored.',
+    meaning:
+      'A list does not have one entry (three for vectors, nine for a cell) for each thing it describes. The key is ignored.',
     remedy: 'Give one entry for each; `nan` stands for "not given".',
   },
   'value-invalid': {
@@ -101,7 +103,8 @@ export const CATALOGUE = {
   'cell-unusable': {
     severity: 'error',
     title: 'Cell unusable',
-    meaning: 'The cell has no volume, is not finite, or is thinner than any atom in a periodic direction. The frame is treated as not periodic.',
+    meaning:
+      'The cell has no volume, is not finite, or is thinner than any atom in a periodic direction. The frame is treated as not periodic.',
     remedy: 'Correct the cell vectors, or switch the periodic direction off.',
   },
   'atoms-coincident': {
@@ -120,7 +123,8 @@ export const CATALOGUE = {
   'too-dense': {
     severity: 'error',
     title: 'Atoms far too dense',
-    meaning: 'The atoms lie many times denser than in any material, so neighbours cannot be told apart. The frame is not analysed.',
+    meaning:
+      'The atoms lie many times denser than in any material, so neighbours cannot be told apart. The frame is not analysed.',
     remedy: 'Check the unit of the coordinates (they are read as Å).',
   },
   'fragments-joined': {
@@ -209,7 +213,8 @@ export const CATALOGUE = {
   'dipole-sum': {
     severity: 'information',
     title: 'Dipole of the frame',
-    meaning: 'The dipole of the whole frame differs from the sum over its fragments; mutual polarization is a real reason.',
+    meaning:
+      'The dipole of the whole frame differs from the sum over its fragments; mutual polarization is a real reason.',
     remedy: 'Nothing to do if the fragments polarize each other; else check the fragment dipoles.',
   },
   'key-misspelt': {
@@ -221,13 +226,15 @@ export const CATALOGUE = {
   'value-unportable': {
     severity: 'information',
     title: 'Value that other readers reject',
-    meaning: 'A value of ours is written in a way that the extended XYZ convention does not allow. It is read here all the same.',
+    meaning:
+      'A value of ours is written in a way that the extended XYZ convention does not allow. It is read here all the same.',
     remedy: 'Write lists flat and in double quotes.',
   },
   'edge-field': {
     severity: 'information',
     title: 'Point dipole at its edge',
-    meaning: 'The point-dipole estimate differs from the reference by more than the tolerance, but less than twice of it.',
+    meaning:
+      'The point-dipole estimate differs from the reference by more than the tolerance, but less than twice of it.',
     remedy: 'Use the number with care.',
   },
   'dipole-missing': {
@@ -245,7 +252,8 @@ export const CATALOGUE = {
   'ion-charge-missing': {
     severity: 'information',
     title: 'Lone atom without a charge',
-    meaning: 'A lone atom of group 1, 2 or 17 is usually an ion, and no charge is given for it; it is taken as neutral.',
+    meaning:
+      'A lone atom of group 1, 2 or 17 is usually an ion, and no charge is given for it; it is taken as neutral.',
     remedy: 'Give its charge in fragment_charges or in the charge column.',
   },
   'alternate-locations': {

@@ -50,25 +50,32 @@ export function finding(code: FindingCode, span: Span, reason: string, detail: F
 /** How many findings of one code are kept one by one; the last then says how many more there were. */
 const KEPT_PER_CODE = 100;
 
-/** Collects findings with bounded memory: past a hundred of one code they are only counted. */
+/**
+ * Collects findings with bounded memory: past a hundred of one code they are only counted. The same code at the same place is one
+ * finding, however often it is met (an annotation that holds for many fragments or models).
+ */
 export class FindingCollector {
   readonly #kept: Finding[] = [];
   readonly #counts = new Map<FindingCode, number>();
   readonly #last = new Map<FindingCode, number>();
+  readonly #places = new Set<string>();
 
   /** Adds a finding; the reason is only made where the finding is kept. */
   add(code: FindingCode, span: Span, reason: () => string, detail?: () => FindingDetail): void {
-    if (this.#admits(code)) this.#kept.push(finding(code, span, reason(), detail?.()));
+    if (this.#admits(code, span)) this.#kept.push(finding(code, span, reason(), detail?.()));
   }
 
   push(entry: Finding): void {
-    if (this.#admits(entry.code)) this.#kept.push(entry);
+    if (this.#admits(entry.code, entry)) this.#kept.push(entry);
   }
 
-  #admits(code: FindingCode): boolean {
+  #admits(code: FindingCode, { start, end }: Span): boolean {
     const count = this.count(code) + 1;
+    const place = `${code} ${start} ${end}`;
+    if (this.#places.has(place)) return false;
     this.#counts.set(code, count);
     if (count > KEPT_PER_CODE) return false;
+    this.#places.add(place);
     this.#last.set(code, this.#kept.length);
     return true;
   }

@@ -13,7 +13,8 @@ const LETTER_A = 97;
 const BY_LETTERS = new Uint8Array(27 * 27);
 for (let z = 1; z <= MAX_ATOMIC_NUMBER; z++) {
   const symbol = symbolOf(z).toLowerCase();
-  BY_LETTERS[27 * (symbol.charCodeAt(0) - LETTER_A) + (symbol.length > 1 ? symbol.charCodeAt(1) - LETTER_A + 1 : 0)] = z;
+  BY_LETTERS[27 * (symbol.charCodeAt(0) - LETTER_A) + (symbol.length > 1 ? symbol.charCodeAt(1) - LETTER_A + 1 : 0)] =
+    z;
 }
 
 const GHOST = AtomFlag.ghost << 8;

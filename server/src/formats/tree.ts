@@ -75,7 +75,11 @@ export interface FrameTree {
   /** Keys of the comment line. */
   readonly entries: readonly Entry[];
   /** Cell vectors as rows, Å, where given. */
-  readonly cell: { readonly vectorsA: Float64Array; readonly periodic: readonly [boolean, boolean, boolean]; readonly span: Span } | null;
+  readonly cell: {
+    readonly vectorsA: Float64Array;
+    readonly periodic: readonly [boolean, boolean, boolean];
+    readonly span: Span;
+  } | null;
   readonly residues: readonly Residue[] | null;
   /** Declared bonds (CONECT, LINK): pairs of atom indices. */
   readonly bonds: Int32Array;

@@ -26,7 +26,9 @@ export function finishTree(tree: Omit<CoordinateTree, 'problems'>, problems: Fin
     only.add('not-text', span, () => 'The file holds NUL bytes or mostly unprintable characters.');
     return { ...tree, frames: [], problems: only.list() };
   }
-  problems.add('no-frame', span, () => (text.length === 0 ? 'The file is empty.' : 'No line of the file reads as an atom.'));
+  problems.add('no-frame', span, () =>
+    text.length === 0 ? 'The file is empty.' : 'No line of the file reads as an atom.',
+  );
   return { ...tree, frames: tree.frames.filter((frame) => frame.atoms.count > 0), problems: problems.list() };
 }
 

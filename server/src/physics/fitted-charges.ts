@@ -1,5 +1,5 @@
-import { eigen3 } from './symmetric3';
 import { DEBYE_E_A } from './constants';
+import { eigen3 } from './symmetric3';
 
 /** Root-mean-square thickness below which a fragment counts as flat (or a line) in that direction, Å: coordinate rounding. */
 const FLAT_A = 0.02;

@@ -103,5 +103,10 @@ for (const medium of MEDIA) {
 
 /** Finds a medium by name; case, blanks and underscores do not matter. */
 export function findMedium(name: string): Medium | undefined {
-  return BY_NAME.get(name.trim().toLowerCase().replace(/[\s_]+/g, '-'));
+  return BY_NAME.get(
+    name
+      .trim()
+      .toLowerCase()
+      .replace(/[\s_]+/g, '-'),
+  );
 }

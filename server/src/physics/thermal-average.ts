@@ -116,7 +116,12 @@ export function ionDipoleAverage(coupling: number): ThermalAverage {
     // coth y − 1/y = y/3 − y³/45 + 2y⁵/945 − …; ln(sinh y / y) = y²/6 − y⁴/180 + y⁶/2835 − …
     const y2 = y * y;
     const alignment = y * (1 / 3 - y2 * (1 / 45 - (2 * y2) / 945));
-    return { averageKT: -y * alignment, freeEnergyKT: -y2 * (1 / 6 - y2 * (1 / 180 - y2 / 2835)), leadingKT, alignment };
+    return {
+      averageKT: -y * alignment,
+      freeEnergyKT: -y2 * (1 / 6 - y2 * (1 / 180 - y2 / 2835)),
+      leadingKT,
+      alignment,
+    };
   }
   const decay = Math.exp(-2 * y);
   const coth = (1 + decay) / (1 - decay);

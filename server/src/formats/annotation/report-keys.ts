@@ -60,6 +60,10 @@ function reportSyntax(text: Snapshot, entry: Entry, problems: FindingCollector):
   if (entry.value.end - entry.value.start > LONGEST_CHECKED) return;
   const value = typedValue(text, entry);
   if (value.kind === 'invalid') {
-    problems.add('value-unportable', entry.value, () => `Other readers of extended XYZ will not take this value. ${value.reason}`);
+    problems.add(
+      'value-unportable',
+      entry.value,
+      () => `Other readers of extended XYZ will not take this value. ${value.reason}`,
+    );
   }
 }

@@ -7,7 +7,11 @@ export type ValueKind = 'int' | 'float' | 'bool' | 'string';
 
 /** A value as the convention types it, or why it is none. */
 export type TypedValue =
-  | { readonly kind: ValueKind; readonly shape: readonly number[]; readonly items: readonly (number | boolean | string)[] }
+  | {
+      readonly kind: ValueKind;
+      readonly shape: readonly number[];
+      readonly items: readonly (number | boolean | string)[];
+    }
   | { readonly kind: 'invalid'; readonly reason: string };
 
 const INTEGER = /^[+-]?\d+$/;
@@ -31,15 +35,22 @@ export function typedValue(snapshot: Snapshot, entry: Entry): TypedValue {
   if (entry.form === 'bracketed') return bracketed(text);
   const words = text.trim().split(/\s+/);
   const simple = words.every((word) => kindOf(word) !== 'string');
-  if (entry.form === 'braced' || (simple && words[0] !== '')) return combine(words, words.length === 1 ? [] : [words.length]);
-  return { kind: 'string', shape: [], items: [text.replace(/\\(.)/g, (_, unit: string) => (unit === 'n' ? '\n' : unit))] };
+  if (entry.form === 'braced' || (simple && words[0] !== ''))
+    return combine(words, words.length === 1 ? [] : [words.length]);
+  return {
+    kind: 'string',
+    shape: [],
+    items: [text.replace(/\\(.)/g, (_, unit: string) => (unit === 'n' ? '\n' : unit))],
+  };
 }
 
 function bracketed(text: string): TypedValue {
   const trimmed = text.trim();
   if (!trimmed.startsWith('[')) {
     const items = splitItems(trimmed);
-    return items === null ? { kind: 'invalid', reason: 'An item is missing beside a comma.' } : combine(items, [items.length]);
+    return items === null
+      ? { kind: 'invalid', reason: 'An item is missing beside a comma.' }
+      : combine(items, [items.length]);
   }
   const rows: string[][] = [];
   for (const part of trimmed.split(/\]\s*,\s*\[/)) {

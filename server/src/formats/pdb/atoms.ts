@@ -92,7 +92,11 @@ export class ModelAtoms {
       const { start, end } = this.#columns.span(line, range);
       const index = 3 * atom + axis;
       const { positionA } = this.#atoms;
-      if (end > start && scanNumberInto(text, start, end, positionA, index) === end && Number.isFinite(positionA[index]!)) {
+      if (
+        end > start &&
+        scanNumberInto(text, start, end, positionA, index) === end &&
+        Number.isFinite(positionA[index]!)
+      ) {
         continue;
       }
       this.#atoms.flags[atom]! |= AtomFlag.noPosition;
@@ -143,7 +147,11 @@ export class ModelAtoms {
     this.#atoms.flags[atom]! |= species >> 8;
     if (species & UNKNOWN) {
       const span = written ? { start, end } : columns.span(line, ATOM_COLUMNS.name);
-      this.#problems.add('element-unknown', span, () => `"${columns.text.slice(span.start, span.end)}" names no element.`);
+      this.#problems.add(
+        'element-unknown',
+        span,
+        () => `"${columns.text.slice(span.start, span.end)}" names no element.`,
+      );
     }
   }
 
@@ -152,7 +160,11 @@ export class ModelAtoms {
     this.#atoms.chargeE![atom] = value;
     if (Number.isFinite(value)) return;
     this.#atoms.chargeE![atom] = Number.NaN;
-    this.#problems.add('number-unreadable', this.#columns.span(line, range), () => 'The charge column holds no finite number.');
+    this.#problems.add(
+      'number-unreadable',
+      this.#columns.span(line, range),
+      () => 'The charge column holds no finite number.',
+    );
   }
 
   /** Drops alternate locations, forms residues, and returns the table. */

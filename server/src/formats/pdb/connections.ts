@@ -11,8 +11,20 @@ const CONECT_PARTNERS: readonly ColumnRange[] = [
 ];
 /** Columns of the two ends of a LINK record: atom name, residue name, chain, number, insertion code. */
 const LINK_ENDS: readonly (readonly [ColumnRange, ColumnRange, ColumnRange, ColumnRange, ColumnRange])[] = [
-  [[12, 16], [17, 21], [21, 22], [22, 26], [26, 27]],
-  [[42, 46], [47, 51], [51, 52], [52, 56], [56, 57]],
+  [
+    [12, 16],
+    [17, 21],
+    [21, 22],
+    [22, 26],
+    [26, 27],
+  ],
+  [
+    [42, 46],
+    [47, 51],
+    [51, 52],
+    [52, 56],
+    [56, 57],
+  ],
 ];
 const SERIAL_WIDTH = 5;
 const AMBIGUOUS = -2;
@@ -68,13 +80,9 @@ export class ConnectionRecords {
   }
 
   #linkedAtom(line: number, columns: (typeof LINK_ENDS)[number], byPlace: ReadonlyMap<string, Residue>): number {
-    const [name, residueName, chain, number, insertion] = columns.map((range) => this.#columns.trimmed(line, range)) as [
-      string,
-      string,
-      string,
-      string,
-      string,
-    ];
+    const [name, residueName, chain, number, insertion] = columns.map((range) =>
+      this.#columns.trimmed(line, range),
+    ) as [string, string, string, string, string];
     const place = { chain, name: residueName, number: decodeHybrid36(number.padStart(4), 4), insertion };
     const residue = byPlace.get(placeOf(place));
     const index = residue?.atomNames.indexOf(name) ?? -1;

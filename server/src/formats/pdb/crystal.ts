@@ -26,7 +26,11 @@ export function readCrystalCell(columns: FixedColumns, line: number, problems: F
   ];
   const span = columns.span(line, [6, 54]);
   if (![a, b, c, alpha, beta, gamma].every(Number.isFinite)) {
-    problems.add('number-unreadable', span, () => 'CRYST1 does not hold three lengths and three angles in its columns.');
+    problems.add(
+      'number-unreadable',
+      span,
+      () => 'CRYST1 does not hold three lengths and three angles in its columns.',
+    );
     return null;
   }
   if (a === 1 && b === 1 && c === 1) return null;

@@ -1,6 +1,6 @@
 import { atomicNumberOf } from '../../physics/elements';
-import { AtomFlag } from '../tree';
 import type { PackedSpecies } from '../species';
+import { AtomFlag } from '../tree';
 
 /** Residues whose atom names are known to begin with the element (amino acids, nucleotides, water). */
 const POLYMER_RESIDUES = new Set(

@@ -3,8 +3,8 @@ import { indexLines } from '../../text/lines';
 import { trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import { valueText } from '../annotation/lists';
-import { finishTree } from '../unreadable';
 import type { AtomField, CoordinateTree, FrameTree, RemarkAnnotation } from '../tree';
+import { finishTree } from '../unreadable';
 import { ModelAtoms } from './atoms';
 import { ConnectionRecords } from './connections';
 import { readCrystalCell } from './crystal';
@@ -98,7 +98,10 @@ interface OpenModel {
 type RecordName = 'ATOM' | 'HETATM' | 'MODEL' | 'ENDMDL' | 'END' | 'TER' | 'CONECT' | 'LINK' | 'CRYST1';
 
 const RECORDS: ReadonlyMap<string, RecordName> = new Map(
-  (['ATOM', 'HETATM', 'MODEL', 'ENDMDL', 'END', 'TER', 'CONECT', 'LINK', 'CRYST1'] as const).map((name) => [name, name]),
+  (['ATOM', 'HETATM', 'MODEL', 'ENDMDL', 'END', 'TER', 'CONECT', 'LINK', 'CRYST1'] as const).map((name) => [
+    name,
+    name,
+  ]),
 );
 
 /** The record name in columns 1–6, told by its letters without making strings for atoms. */

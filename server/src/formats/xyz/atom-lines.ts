@@ -1,13 +1,13 @@
 import type { FindingCollector } from '../../base/finding';
 import type { Span } from '../../base/span';
+import { MAX_ATOMIC_NUMBER } from '../../physics/elements';
 import type { LineIndex } from '../../text/lines';
 import { isBlank, scanCount, scanNumberInto, skipBlanks, skipField, trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
-import { MAX_ATOMIC_NUMBER } from '../../physics/elements';
 import type { Entry } from '../annotation/entries';
 import { AtomBuilder } from '../atom-builder';
 import { likelySymbol, readSpecies } from '../species';
-import { AtomFlag, type AtomField } from '../tree';
+import { type AtomField, AtomFlag } from '../tree';
 import { ColumnOp, type ColumnPlan } from './columns';
 
 const COORDINATE_NAMES = ['x', 'y', 'z'];
@@ -122,7 +122,11 @@ export class AtomLineReader {
   }
 
   #reportNumber(start: number, end: number, what: string): void {
-    this.#problems.add('number-unreadable', { start, end }, () => `The ${what} "${shown(this.#text, start, end)}" is no finite number.`);
+    this.#problems.add(
+      'number-unreadable',
+      { start, end },
+      () => `The ${what} "${shown(this.#text, start, end)}" is no finite number.`,
+    );
   }
 
   #reportElement(start: number, end: number): void {
@@ -169,9 +173,17 @@ export class AtomLineReader {
     const many = this.#linesWithMore;
     const lines = `${many} atom line${many === 1 ? ' has' : 's have'}`;
     if (properties !== undefined && this.#plan.declared) {
-      this.#problems.add('columns-off', span, () => `${lines} more fields than Properties declares, the first one here.`);
+      this.#problems.add(
+        'columns-off',
+        span,
+        () => `${lines} more fields than Properties declares, the first one here.`,
+      );
     } else if (properties === undefined) {
-      this.#problems.add('extra-columns', span, () => `${lines} columns after z, the first ones "${shown(this.#text, span.start, span.end)}".`);
+      this.#problems.add(
+        'extra-columns',
+        span,
+        () => `${lines} columns after z, the first ones "${shown(this.#text, span.start, span.end)}".`,
+      );
     }
   }
 }
@@ -188,7 +200,9 @@ export function fieldOfAtom(text: Snapshot, lines: LineIndex, line: number, plan
   const first = skipBlanks(bytes, lines.starts[line]!, lineEnd);
   const whole = { start: first, end: trimEnd(bytes, first, lineEnd) };
   if (field === 'line') return whole;
-  const wanted = { element: ColumnOp.species, x: ColumnOp.x, y: ColumnOp.y, z: ColumnOp.z, charge: ColumnOp.charge }[field];
+  const wanted = { element: ColumnOp.species, x: ColumnOp.x, y: ColumnOp.y, z: ColumnOp.z, charge: ColumnOp.charge }[
+    field
+  ];
   let at = first;
   for (const op of plan.ops) {
     const end = skipField(bytes, at, lineEnd);

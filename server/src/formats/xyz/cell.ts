@@ -1,8 +1,8 @@
 import type { FindingCollector } from '../../base/finding';
-import { itemNumber, listItems } from '../annotation/lists';
-import type { Entry } from '../annotation/entries';
-import { readBoolean } from '../annotation/values';
 import type { Snapshot } from '../../text/snapshot';
+import type { Entry } from '../annotation/entries';
+import { itemNumber, listItems } from '../annotation/lists';
+import { readBoolean } from '../annotation/values';
 import type { FrameTree } from '../tree';
 
 /** Reads `Lattice` (nine numbers: the cell vectors as rows; three: a box) and `pbc`; a cell without `pbc` is periodic. */
@@ -12,14 +12,22 @@ export function readCell(text: Snapshot, entries: readonly Entry[], problems: Fi
   if (lattice === undefined) return null;
   const items = listItems(text, lattice);
   if (items.length !== 9 && items.length !== 3) {
-    problems.add('array-length', lattice.value, () => `Lattice has ${items.length} numbers; it needs nine (or three for a box).`);
+    problems.add(
+      'array-length',
+      lattice.value,
+      () => `Lattice has ${items.length} numbers; it needs nine (or three for a box).`,
+    );
     return null;
   }
   const numbers = items.map((item) => itemNumber(text, item).value);
   const bad = numbers.findIndex((value) => Number.isNaN(value));
   if (bad >= 0) {
     const span = items[bad]!;
-    problems.add('number-unreadable', span, () => `"${text.slice(span.start, Math.min(span.end, span.start + 40))}" in Lattice is no finite number.`);
+    problems.add(
+      'number-unreadable',
+      span,
+      () => `"${text.slice(span.start, Math.min(span.end, span.start + 40))}" in Lattice is no finite number.`,
+    );
     return null;
   }
   const vectorsA = Float64Array.from(
@@ -35,7 +43,9 @@ function readPeriodic(
 ): readonly [boolean, boolean, boolean] | null {
   const entry = entries.find((candidate) => candidate.key === 'pbc');
   if (entry === undefined) return null;
-  const flags = listItems(text, entry).map((item) => readBoolean(text.slice(item.start, Math.min(item.end, item.start + 8))));
+  const flags = listItems(text, entry).map((item) =>
+    readBoolean(text.slice(item.start, Math.min(item.end, item.start + 8))),
+  );
   if (flags.length !== 3 || flags.includes(undefined)) {
     problems.add('value-invalid', entry.value, () => 'pbc needs three flags, each T or F.');
     return null;

@@ -1,6 +1,6 @@
 import type { Snapshot } from '../../text/snapshot';
-import { valueText } from '../annotation/lists';
 import type { Entry } from '../annotation/entries';
+import { valueText } from '../annotation/lists';
 
 /** What one blank-separated field of an atom line is. */
 export const ColumnOp = {

@@ -4,13 +4,13 @@ import { indexLines, type LineIndex } from '../../text/lines';
 import { scanCount, scanNumber, skipBlanks, skipField, trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import { type Entry, scanEntries } from '../annotation/entries';
-import { reportKeys } from '../annotation/report-keys';
 import { FRAME_KEYS } from '../annotation/keys';
+import { reportKeys } from '../annotation/report-keys';
 import type { CoordinateTree, FrameTree } from '../tree';
 import { finishTree } from '../unreadable';
 import { AtomLineReader, fieldOfAtom } from './atom-lines';
 import { readCell } from './cell';
-import { PLAIN_COLUMNS, readProperties, type ColumnPlan } from './columns';
+import { type ColumnPlan, PLAIN_COLUMNS, readProperties } from './columns';
 
 const NO_BONDS = new Int32Array(0);
 
@@ -34,7 +34,11 @@ export function parseXyz(text: Snapshot): CoordinateTree {
     if (frame === null) {
       if (!lost && frames.length > 0) {
         const span = reader.contentSpan(line);
-        problems.add('count-wrong', span, () => 'A frame must begin with its atom count; this line is no whole number.');
+        problems.add(
+          'count-wrong',
+          span,
+          () => 'A frame must begin with its atom count; this line is no whole number.',
+        );
       }
       lost = true;
       line++;
@@ -109,13 +113,17 @@ class XyzReader {
     const lines = this.#lines;
     const commentLine = firstAtomLine > head ? head + 1 : -1;
     const hasComment = commentLine >= 0 && commentLine < lines.count;
-    const entries = hasComment
-      ? scanEntries(this.#text, lines.starts[commentLine]!, lines.end(commentLine))
-      : [];
+    const entries = hasComment ? scanEntries(this.#text, lines.starts[commentLine]!, lines.end(commentLine)) : [];
     reportKeys(this.#text, entries, FRAME_KEYS, this.#problems);
     const plan = this.#columnPlan(entries);
     const available = Math.max(0, lines.count - firstAtomLine);
-    const reader = new AtomLineReader(this.#text, lines, this.#problems, plan, Math.min(available, Math.max(declared, 16)));
+    const reader = new AtomLineReader(
+      this.#text,
+      lines,
+      this.#problems,
+      plan,
+      Math.min(available, Math.max(declared, 16)),
+    );
     let line = firstAtomLine;
     const { bytes } = this.#text;
     for (; line < lines.count; line++) {
@@ -174,18 +182,30 @@ class XyzReader {
     const span = this.contentSpan(head);
     const atomLines = `${found} atom line${found === 1 ? '' : 's'}`;
     if (!hasHead) {
-      this.#problems.add('count-wrong', span, () => `The count and comment lines are missing before ${atomLines}.`, () => ({
-        fix: {
-          title: `Insert the count ${found} and an empty comment line`,
-          edits: [{ start: this.#lines.starts[head]!, end: this.#lines.starts[head]!, text: `${found}\n\n` }],
-        },
-      }));
+      this.#problems.add(
+        'count-wrong',
+        span,
+        () => `The count and comment lines are missing before ${atomLines}.`,
+        () => ({
+          fix: {
+            title: `Insert the count ${found} and an empty comment line`,
+            edits: [{ start: this.#lines.starts[head]!, end: this.#lines.starts[head]!, text: `${found}\n\n` }],
+          },
+        }),
+      );
       return;
     }
     const said = declared < 0 ? 'This line is no atom count' : `The count says ${declared}`;
-    this.#problems.add('count-wrong', span, () => `${said}, and ${atomLines} follow${found === 1 ? 's' : ''}.`, () => ({
-      ...(found > 0 ? { fix: { title: `Set the count to ${found}`, edits: [{ ...span, text: String(found) }] } } : {}),
-    }));
+    this.#problems.add(
+      'count-wrong',
+      span,
+      () => `${said}, and ${atomLines} follow${found === 1 ? 's' : ''}.`,
+      () => ({
+        ...(found > 0
+          ? { fix: { title: `Set the count to ${found}`, edits: [{ ...span, text: String(found) }] } }
+          : {}),
+      }),
+    );
   }
 }
 

@@ -1,0 +1,66 @@
+import { type Finding, FindingCollector } from '../base/finding';
+import type { CoordinateTree } from '../formats/tree';
+import { type FrameAnalysis, pairsOf } from './frame-analysis';
+import type { Pair } from './pair';
+import { pairId, reportClash, reportCoincident, reportJoined } from './rules/contacts';
+import { RuleContext } from './rules/context';
+import { reportDipolesAgainstCharges } from './rules/dipole-charges';
+import { reportFragmentFacts, reportSmallCell } from './rules/fragment-facts';
+import { reportChargeSum, reportDipoleSum, reportElectronParity } from './rules/frame-charge';
+import { reportLengthUnit } from './rules/length-unit';
+import { NearField } from './rules/near-field';
+import { reportResidues } from './rules/residues';
+
+/** Gathers the findings of a file frame by frame. */
+export class FileFindings {
+  readonly #file: CoordinateTree;
+  readonly #findings = new FindingCollector();
+  readonly #said = new Set<string>();
+  readonly #silenced = new Set<string>();
+
+  constructor(file: CoordinateTree) {
+    this.#file = file;
+    for (const problem of file.problems) this.#findings.push(problem);
+  }
+
+  /**
+   * Yields every pair of the frame's list in order, and adds the findings of the frame when the last one is taken: a caller who
+   * wants the pairs too need not make them twice, and may pause between them.
+   */
+  *pairsOfFrame(frame: FrameAnalysis): Generator<Pair> {
+    const { model } = frame;
+    for (const code of model.frameNotes.silence) this.#silenced.add(code);
+    for (const problem of frame.problems.list()) this.#findings.push(problem);
+    const context = new RuleContext(this.#file, frame, this.#findings, this.#said);
+    reportElectronParity(context);
+    reportResidues(context);
+    // Distances in the wrong unit would bring a finding for every atom; the unit is the one cause.
+    if (reportLengthUnit(context)) {
+      yield* pairsOf(frame.system);
+      return;
+    }
+    reportCoincident(context);
+    reportChargeSum(context);
+    reportDipoleSum(context);
+    reportDipolesAgainstCharges(context);
+    reportFragmentFacts(context);
+    reportSmallCell(context);
+    const nearField = new NearField(context);
+    const clashing = new Set<string>();
+    for (const pair of pairsOf(frame.system)) {
+      if (pair.contact === 'clash') {
+        clashing.add(pairId(pair.first, pair.second));
+        reportClash(context, pair);
+      }
+      nearField.add(pair);
+      yield pair;
+    }
+    reportJoined(context, clashing);
+    nearField.report();
+  }
+
+  /** Everything found so far, in the order of the text, without what the file does not want to hear. */
+  list(): Finding[] {
+    return this.#findings.list().filter((entry) => !this.#silenced.has(entry.code));
+  }
+}

@@ -1,0 +1,246 @@
+import { AtomFlag } from '../formats/tree';
+import type { Axis, FragmentNotes } from '../model/annotation';
+import type { FrameModel } from '../model/frame-model';
+import { DEUTERIUM_MASS_U, TRITIUM_MASS_U } from '../physics/element-table';
+import { ATOMIC_WEIGHT_U, usualIonCharge } from '../physics/elements';
+import { type Centre, ZERO_DIPOLE_EA } from './settings';
+
+/** Where a dipole comes from, strongest first. */
+export const DIPOLE_SOURCES = ['annotated', 'axis', 'charges', 'atom', 'library', 'estimated', 'none'] as const;
+export type DipoleSource = (typeof DIPOLE_SOURCES)[number];
+
+/** Where a net charge comes from, strongest first. */
+export const CHARGE_SOURCES = ['annotated', 'charges', 'formal', 'library', 'assumed'] as const;
+export type ChargeSource = (typeof CHARGE_SOURCES)[number];
+
+/**
+ * Moments of all fragments of a frame, as columns; NaN where a number is not known. Lengths in Å, charges in e, dipoles in e·Å,
+ * traceless quadrupoles (xx xy xz yy yz zz) in e·Å², both about {@link centreA}.
+ */
+export interface Moments {
+  readonly count: number;
+  readonly centreA: Float64Array;
+  /** Distance from the centre to the farthest atom. */
+  readonly extentA: Float64Array;
+  readonly chargeE: Float64Array;
+  readonly chargeSource: readonly ChargeSource[];
+  /** NaN where size or direction is unknown. */
+  readonly dipoleEA: Float64Array;
+  /** Known where the size is, even without a direction. */
+  readonly dipoleNormEA: Float64Array;
+  readonly dipoleSource: readonly DipoleSource[];
+  readonly quadrupoleEA2: Float64Array;
+  /** Dipole and sum of the charge column; NaN without one. */
+  readonly columnDipoleEA: Float64Array;
+  readonly columnChargeE: Float64Array;
+  readonly polarizabilityA3: Float64Array;
+}
+
+interface FragmentMoments {
+  centre: [number, number, number];
+  extent: number;
+}
+
+/** Computes the moments of every fragment; unusable ones keep NaN. Linear in the atoms. */
+export function computeMoments(model: FrameModel, centre: Centre): Moments {
+  const { fragments, notes, usable } = model;
+  const n = fragments.count;
+  const unknown = (size: number) => new Float64Array(size).fill(Number.NaN);
+  const chargeSource: ChargeSource[] = [];
+  const dipoleSource: DipoleSource[] = [];
+  const moments = {
+    count: n,
+    centreA: unknown(3 * n),
+    extentA: unknown(n),
+    chargeE: unknown(n),
+    chargeSource,
+    dipoleEA: unknown(3 * n),
+    dipoleNormEA: unknown(n),
+    dipoleSource,
+    quadrupoleEA2: unknown(6 * n),
+    columnDipoleEA: unknown(3 * n),
+    columnChargeE: unknown(n),
+    polarizabilityA3: unknown(n),
+  };
+  for (let f = 0; f < n; f++) {
+    const members = fragments.members.subarray(fragments.starts[f]!, fragments.starts[f + 1]!);
+    const note = notes[f]!;
+    moments.polarizabilityA3[f] = note.polarizabilityA3 ?? Number.NaN;
+    const place = placeFragment(model, members, centre);
+    if (usable[f]) {
+      moments.centreA.set(place.centre, 3 * f);
+      moments.extentA[f] = place.extent;
+      addColumnMoments(model, members, place.centre, f, moments);
+    }
+    const charge = netCharge(model, members, note, moments.columnChargeE[f]!);
+    moments.chargeE[f] = charge.value;
+    chargeSource.push(charge.source);
+    dipoleSource.push(usable[f] ? chooseDipole(model, members, note, f, moments) : 'none');
+    // An atom without charges of its own beside it has no quadrupole about itself.
+    const isAtom = members.length === 1;
+    if (isAtom && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
+      moments.quadrupoleEA2.fill(0, 6 * f, 6 * f + 6);
+    }
+  }
+  return moments;
+}
+
+/** Mass of an atom, u; 0 for ghosts and unknown elements. */
+export function atomMassU(element: number, flags: number): number {
+  if (flags & AtomFlag.ghost) return 0;
+  if (flags & AtomFlag.deuterium) return DEUTERIUM_MASS_U;
+  return flags & AtomFlag.tritium ? TRITIUM_MASS_U : ATOMIC_WEIGHT_U[element]!;
+}
+
+function placeFragment(model: FrameModel, members: Int32Array, centre: Centre): FragmentMoments {
+  const { atoms } = model.tree;
+  const weigh = (weightOf: (atom: number) => number): [number, number, number] | null => {
+    let total = 0;
+    const sum: [number, number, number] = [0, 0, 0];
+    for (const atom of members) {
+      const weight = weightOf(atom);
+      total += weight;
+      for (let a = 0; a < 3; a++) sum[a as 0]! += weight * model.positionA[3 * atom + a]!;
+    }
+    return total > 0 ? [sum[0] / total, sum[1] / total, sum[2] / total] : null;
+  };
+  const isReal = (atom: number) => (atoms.flags[atom]! & AtomFlag.ghost) === 0;
+  let point: [number, number, number] | null;
+  if (centre === 'mass') point = weigh((atom) => atomMassU(atoms.element[atom]!, atoms.flags[atom]!));
+  else if (centre === 'nuclear-charge') point = weigh((atom) => (isReal(atom) ? atoms.element[atom]! : 0));
+  else point = weigh((atom) => (isReal(atom) ? 1 : 0));
+  // A fragment of ghosts alone has only its geometry.
+  point ??= weigh(() => 1)!;
+  const hasReal = members.some(isReal);
+  let extent2 = 0;
+  for (const atom of members) {
+    if (!isReal(atom) && hasReal) continue;
+    const dx = model.positionA[3 * atom]! - point[0];
+    const dy = model.positionA[3 * atom + 1]! - point[1];
+    const dz = model.positionA[3 * atom + 2]! - point[2];
+    extent2 = Math.max(extent2, dx * dx + dy * dy + dz * dz);
+  }
+  const isAtom = members.filter(isReal).length === 1 || members.length === 1;
+  return { centre: point, extent: isAtom ? 0 : Math.sqrt(extent2) };
+}
+
+/** Sums over the charge and atomic-dipole columns; what a missing or unreadable entry spoils stays NaN. */
+function addColumnMoments(
+  model: FrameModel,
+  members: Int32Array,
+  centre: readonly [number, number, number],
+  f: number,
+  out: { columnChargeE: Float64Array; columnDipoleEA: Float64Array; quadrupoleEA2: Float64Array },
+): void {
+  const { chargeE, dipoleEA } = model.tree.atoms;
+  if (chargeE === null && dipoleEA === null) return;
+  let charge = 0;
+  const dipole = [0, 0, 0];
+  const theta = [0, 0, 0, 0, 0, 0];
+  for (const atom of members) {
+    const r = [0, 1, 2].map((a) => model.positionA[3 * atom + a]! - centre[a as 0]) as [number, number, number];
+    const r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
+    const q = chargeE?.[atom] ?? 0;
+    charge += q;
+    const m = [0, 1, 2].map((a) => dipoleEA?.[3 * atom + a] ?? 0) as [number, number, number];
+    const rm = r[0] * m[0] + r[1] * m[1] + r[2] * m[2];
+    let k = 0;
+    for (let a = 0; a < 3; a++) {
+      dipole[a]! += q * r[a as 0] + m[a as 0];
+      for (let b = a; b < 3; b++) {
+        const fromCharge = 0.5 * q * (3 * r[a as 0] * r[b as 0] - (a === b ? r2 : 0));
+        const fromDipole = 1.5 * (r[a as 0] * m[b as 0] + r[b as 0] * m[a as 0]) - (a === b ? rm : 0);
+        theta[k]! += fromCharge + fromDipole;
+        k++;
+      }
+    }
+  }
+  if (chargeE !== null) {
+    out.columnChargeE[f] = charge;
+    out.quadrupoleEA2.set(theta, 6 * f);
+  }
+  out.columnDipoleEA.set(dipole, 3 * f);
+}
+
+function netCharge(
+  model: FrameModel,
+  members: Int32Array,
+  note: FragmentNotes,
+  columnCharge: number,
+): { value: number; source: ChargeSource } {
+  if (note.chargeE !== null) return { value: note.chargeE, source: 'annotated' };
+  const total = model.frameNotes.totalChargeE;
+  if (total !== null && model.fragments.count === 1 && Number.isNaN(columnCharge)) {
+    return { value: total.value, source: 'annotated' };
+  }
+  if (!Number.isNaN(columnCharge)) return { value: columnCharge, source: 'charges' };
+  const { formalE } = model.tree.atoms;
+  if (formalE !== null) {
+    let sum = 0;
+    let given = false;
+    for (const atom of members) {
+      if (Number.isNaN(formalE[atom]!)) continue;
+      given = true;
+      sum += formalE[atom]!;
+    }
+    if (given) return { value: sum, source: 'formal' };
+  }
+  return { value: 0, source: 'assumed' };
+}
+
+/** Fills the dipole of a fragment from the strongest source there is, and returns that source. */
+function chooseDipole(
+  model: FrameModel,
+  members: Int32Array,
+  note: FragmentNotes,
+  f: number,
+  out: { dipoleEA: Float64Array; dipoleNormEA: Float64Array; columnDipoleEA: Float64Array },
+): DipoleSource {
+  const set = (x: number, y: number, z: number) => {
+    out.dipoleEA[3 * f] = x;
+    out.dipoleEA[3 * f + 1] = y;
+    out.dipoleEA[3 * f + 2] = z;
+    out.dipoleNormEA[f] = Math.sqrt(x * x + y * y + z * z);
+  };
+  if (note.dipoleEA !== null) {
+    set(...note.dipoleEA);
+    return 'annotated';
+  }
+  const fromColumn = out.columnDipoleEA.subarray(3 * f, 3 * f + 3);
+  if (note.dipoleSizeEA !== null) {
+    const size = note.dipoleSizeEA;
+    const axis = note.axis === null ? null : axisDirection(model, note.axis);
+    const direction = axis ?? unitVector(fromColumn);
+    if (size < ZERO_DIPOLE_EA) set(0, 0, 0);
+    else if (direction !== null) set(size * direction[0], size * direction[1], size * direction[2]);
+    out.dipoleNormEA[f] = size;
+    return axis === null ? 'annotated' : 'axis';
+  }
+  if (members.length === 1 && model.tree.atoms.dipoleEA === null) {
+    set(0, 0, 0);
+    return 'atom';
+  }
+  if (!Number.isNaN(fromColumn[0]!)) {
+    set(fromColumn[0]!, fromColumn[1]!, fromColumn[2]!);
+    return model.tree.atoms.chargeE === null ? 'annotated' : 'charges';
+  }
+  return 'none';
+}
+
+/** Unit vector of an axis, or `null` where its two ends coincide. */
+function axisDirection(model: FrameModel, axis: Axis): [number, number, number] | null {
+  const mean = (atoms: readonly number[], a: number) =>
+    atoms.reduce((sum, atom) => sum + model.positionA[3 * atom + a]!, 0) / atoms.length;
+  return unitVector([0, 1, 2].map((a) => mean(axis.after, a) - mean(axis.before, a)));
+}
+
+function unitVector(v: ArrayLike<number>): [number, number, number] | null {
+  const length = Math.hypot(v[0]!, v[1]!, v[2]!);
+  return length > 1e-9 ? [v[0]! / length, v[1]! / length, v[2]! / length] : null;
+}
+
+/** Charge that a lone atom probably carries where none is given, for the finding that asks for it. */
+export function likelyLoneCharge(model: FrameModel, f: number): number {
+  const { starts, members } = model.fragments;
+  return starts[f + 1]! - starts[f]! === 1 ? usualIonCharge(model.tree.atoms.element[members[starts[f]!]!]!) : 0;
+}

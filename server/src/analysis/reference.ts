@@ -1,0 +1,177 @@
+import { type ExtendedDipole, extendedDipoleEnergy } from '../physics/finite-dipole';
+import type { System } from './system';
+
+/** What a reference energy rests on, best first. */
+export type Basis = 'charges' | 'fitted' | 'extent' | 'none';
+
+/** How well the point dipole does beside a reference. */
+export type Regime = 'far' | 'edge' | 'near';
+
+/** Share of kT below which an error never matters. */
+export const NEGLIGIBLE_KT = 0.1;
+
+/** The best basis that both fragments allow. */
+export function basisOf(system: System, f: number, g: number): Basis {
+  const { dipoleEA } = system.moments;
+  if (system.featureless[f] || system.featureless[g]) return 'none';
+  if (Number.isNaN(dipoleEA[3 * f]!) || Number.isNaN(dipoleEA[3 * g]!)) return 'none';
+  if (system.ownCharges[f] && system.ownCharges[g]) return 'charges';
+  return system.fitted[f] && system.fitted[g] ? 'fitted' : 'extent';
+}
+
+/** Largest error that the point dipole may have and hold, kJ/mol. */
+export function errorBound(system: System, referenceKJPerMol: number): number {
+  return Math.max(system.settings.tolerance * Math.abs(referenceKJPerMol), NEGLIGIBLE_KT * system.kTKJPerMol);
+}
+
+export function regimeOf(errorKJPerMol: number, boundKJPerMol: number): Regime {
+  if (errorKJPerMol <= boundKJPerMol) return 'far';
+  return errorKJPerMol <= 2 * boundKJPerMol ? 'edge' : 'near';
+}
+
+export function extendedDipoleOf(system: System, f: number): ExtendedDipole {
+  const { chargeE, dipoleEA, extentA } = system.moments;
+  return {
+    chargeE: chargeE[f]!,
+    dipoleEA: [dipoleEA[3 * f]!, dipoleEA[3 * f + 1]!, dipoleEA[3 * f + 2]!],
+    extentA: extentA[f]!,
+  };
+}
+
+/** The pair's energies as functions of the separation alone, both fragments rigid and moved along the line of centres. */
+interface RadialPair {
+  /** Sum of the terms up to dipole–dipole, e²/Å. */
+  point(distanceA: number): number;
+  /** Reference energy on the pair's basis, e²/Å. */
+  reference(distanceA: number): number;
+}
+
+function radialPair(
+  system: System,
+  f: number,
+  g: number,
+  u: readonly [number, number, number],
+  basis: Basis,
+): RadialPair {
+  const { chargeE, dipoleEA } = system.moments;
+  const q1 = chargeE[f]!;
+  const q2 = chargeE[g]!;
+  const along = (h: number) => dipoleEA[3 * h]! * u[0] + dipoleEA[3 * h + 1]! * u[1] + dipoleEA[3 * h + 2]! * u[2];
+  const m1 = along(f);
+  const m2 = along(g);
+  let product = 0;
+  for (let a = 0; a < 3; a++) product += dipoleEA[3 * f + a]! * dipoleEA[3 * g + a]!;
+  const third = product - 3 * m1 * m2;
+  const point = (r: number) => (q1 * q2 + (q2 * m1 - q1 * m2 + third / r) / r) / r;
+  if (basis === 'extent') {
+    const first = extendedDipoleOf(system, f);
+    const second = extendedDipoleOf(system, g);
+    return { point, reference: (r) => extendedDipoleEnergy(first, second, [u[0] * r, u[1] * r, u[2] * r], point(r)) };
+  }
+  return { point, reference: coulombAlong(system, f, g, u, basis === 'charges' ? system.columnE : system.fittedE) };
+}
+
+/** Σ q_i q_j/r_ij as a function of the distance of the centres. */
+function coulombAlong(
+  system: System,
+  f: number,
+  g: number,
+  u: readonly [number, number, number],
+  charges: Float64Array,
+): (distanceA: number) => number {
+  const { starts, localA } = system;
+  const terms: number[] = [];
+  for (let i = starts[f]!; i < starts[f + 1]!; i++) {
+    for (let j = starts[g]!; j < starts[g + 1]!; j++) {
+      const product = charges[i]! * charges[j]!;
+      if (product === 0) continue;
+      const x = localA[3 * j]! - localA[3 * i]!;
+      const y = localA[3 * j + 1]! - localA[3 * i + 1]!;
+      const z = localA[3 * j + 2]! - localA[3 * i + 2]!;
+      terms.push(product, x * u[0] + y * u[1] + z * u[2], x * x + y * y + z * z);
+    }
+  }
+  const table = Float64Array.from(terms);
+  return (r) => {
+    let sum = 0;
+    for (let k = 0; k < table.length; k += 3)
+      sum += table[k]! / Math.sqrt(r * r + 2 * r * table[k + 1]! + table[k + 2]!);
+    return sum;
+  };
+}
+
+/** Step of the inward search, as a ratio of distances. */
+const STEP = 1.02;
+const SHORTEST_START_A = 1;
+const FARTHEST_A = 1e5;
+
+/**
+ * The smallest separation from which the point dipole holds at every larger one, both fragments rigid and moved along the line of
+ * centres; the start of the search where it holds throughout; NaN without a basis. The search runs inward in steps of 2 %, looks
+ * closer where the margin is about to touch zero between two steps, and bisects the last crossing.
+ */
+export function validBeyond(
+  system: System,
+  f: number,
+  g: number,
+  u: readonly [number, number, number],
+  basis: Basis,
+): number {
+  if (basis === 'none') return Number.NaN;
+  const { extentA } = system.moments;
+  const a1 = extentA[f]!;
+  const a2 = extentA[g]!;
+  const start = basis === 'extent' ? a1 + a2 : Math.max(a1, a2, SHORTEST_START_A);
+  const pair = radialPair(system, f, g, u, basis);
+  // Positive where the point dipole holds.
+  const margin = (r: number) => {
+    const reference = pair.reference(r) * system.couplingKJA;
+    const error = Math.abs(pair.point(r) * system.couplingKJA - reference);
+    const value = errorBound(system, reference) - error;
+    return Number.isNaN(value) ? Number.NEGATIVE_INFINITY : value;
+  };
+  const first = Math.max(start, 1e-3);
+  let outer = 4 * first;
+  while (outer < FARTHEST_A && !(margin(outer) > 0 && margin(1.5 * outer) > 0 && margin(2 * outer) > 0)) outer *= 2;
+  let r = outer;
+  let here = margin(r);
+  let beyond = here;
+  while (r > first) {
+    const inner = Math.max(first, r / STEP);
+    const next = margin(inner);
+    if (here < beyond && here < next) {
+      // A dip between the neighbours of r: its bottom may lie below zero.
+      const bottom = lowest(margin, inner, Math.min(r * STEP, outer));
+      if (margin(bottom) < 0) return bisect(margin, bottom, Math.min(r * STEP, outer));
+    }
+    if (next < 0) return bisect(margin, inner, r);
+    beyond = here;
+    here = next;
+    r = inner;
+  }
+  return start;
+}
+
+/** Where a function is lowest between two points, by golden section. */
+function lowest(value: (r: number) => number, low: number, high: number): number {
+  const share = (Math.sqrt(5) - 1) / 2;
+  let [a, b] = [low, high];
+  for (let k = 0; k < 40; k++) {
+    const c = b - share * (b - a);
+    const d = a + share * (b - a);
+    if (value(c) < value(d)) b = d;
+    else a = c;
+  }
+  return (a + b) / 2;
+}
+
+/** The crossing between a point where the margin is negative and a larger one where it is not. */
+function bisect(margin: (r: number) => number, low: number, high: number): number {
+  let [a, b] = [low, high];
+  for (let k = 0; k < 60 && b - a > 1e-12 * b; k++) {
+    const middle = (a + b) / 2;
+    if (margin(middle) < 0) a = middle;
+    else b = middle;
+  }
+  return b;
+}

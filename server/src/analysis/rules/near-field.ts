@@ -1,0 +1,116 @@
+import type { FindingCode } from '../../base/catalogue';
+import type { Related } from '../../base/finding';
+import { NOTICEABLE_KT } from '../advice';
+import type { Pair } from '../pair';
+import type { Basis } from '../reference';
+import { type RuleContext, shown } from './context';
+
+/** Past this many fragments a frame gets one finding for all. */
+const MOST_FRAGMENTS = 20;
+const MOST_RELATED = 10;
+
+const BASIS_WORDS: Readonly<Record<Basis, string>> = {
+  charges: 'the Coulomb sum over the charges',
+  fitted: 'the Coulomb sum over charges fitted to the dipole',
+  extent: 'dipoles as long as the fragments',
+  none: 'nothing',
+};
+
+/** Collects the pairs for which the point dipole does not hold, and reports them by fragment. */
+export class NearField {
+  readonly #context: RuleContext;
+  readonly #near = new Map<number, Pair[]>();
+  readonly #edge = new Map<number, Pair[]>();
+
+  constructor(context: RuleContext) {
+    this.#context = context;
+  }
+
+  add(pair: Pair): void {
+    const { kTKJPerMol } = this.#context.frame.system;
+    if (pair.contact === 'clash' || pair.contact === 'bonded') return;
+    if (pair.regime === 'near' && pair.strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) this.#keep(this.#near, pair);
+    else if (pair.regime === 'edge') this.#keep(this.#edge, pair);
+  }
+
+  #keep(lists: Map<number, Pair[]>, pair: Pair): void {
+    for (const f of [pair.first, pair.second]) {
+      if (f >= this.#context.ownFragments) continue;
+      const list = lists.get(f);
+      if (list === undefined) lists.set(f, [pair]);
+      else list.push(pair);
+    }
+  }
+
+  report(): void {
+    this.#reportCode('near-field', this.#near);
+    // A fragment that is told about a near partner is not told about the edge too.
+    for (const f of this.#near.keys()) this.#edge.delete(f);
+    this.#reportCode('edge-field', this.#edge);
+  }
+
+  #reportCode(code: FindingCode, lists: ReadonlyMap<number, Pair[]>): void {
+    const context = this.#context;
+    if (lists.size > MOST_FRAGMENTS) {
+      this.#reportFrame(code, lists);
+      return;
+    }
+    for (const [f, pairs] of lists) {
+      const [worst, ...others] = [...pairs].sort(byStrength);
+      const span = context.placeOf(f)!;
+      context.findings.add(
+        code,
+        span,
+        () => this.#sentence(worst!, f),
+        () => ({
+          related: others.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, f)),
+        }),
+      );
+    }
+  }
+
+  #reportFrame(code: FindingCode, lists: ReadonlyMap<number, Pair[]>): void {
+    const context = this.#context;
+    const worst = [...new Set([...lists.values()].flat())].sort(byStrength);
+    const where = code === 'near-field' ? 'does not hold' : 'is at its edge';
+    context.findings.add(
+      code,
+      context.headSpan(),
+      () =>
+        `The point dipole ${where} for ${worst.length} pairs of ${lists.size} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
+      () => ({ related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)) }),
+    );
+  }
+
+  #related(pair: Pair, f: number): Related[] {
+    const other = pair.first === f ? pair.second : pair.first;
+    const span = this.#context.placeOf(other) ?? this.#context.placeOf(f);
+    return span === null ? [] : [{ ...span, message: this.#sentence(pair, f) }];
+  }
+
+  #sentence(pair: Pair, f: number): string {
+    const context = this.#context;
+    const { kTKJPerMol } = context.frame.system;
+    const other = pair.first === f ? pair.second : pair.first;
+    const names = `${context.nameOf(f)} and ${context.nameOf(other)}, R = ${shown(pair.distanceA)} Å`;
+    if (pair.enclosed) {
+      return `${names}: one lies within the extent of the other, so only the Coulomb sum stands (${energy(pair.energies.coulomb, kTKJPerMol)}).`;
+    }
+    if (Number.isNaN(pair.referenceKJPerMol)) {
+      return `${names}: the extents of the two overlap, so no reference can be given; the point dipole would say ${energy(pair.energies.pointDipole, kTKJPerMol)}.`;
+    }
+    const share = pair.errorKJPerMol / Math.abs(pair.referenceKJPerMol);
+    return (
+      `${names}: ${BASIS_WORDS[pair.basis]} ${pair.basis === 'extent' ? 'give' : 'gives'} ${energy(pair.referenceKJPerMol, kTKJPerMol)}, ` +
+      `the point dipole ${shown(pair.energies.pointDipole)} kJ/mol${Number.isFinite(share) ? `, off by ${shown(100 * share, 2)} %` : ''}.`
+    );
+  }
+}
+
+function byStrength(a: Pair, b: Pair): number {
+  return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
+}
+
+function energy(valueKJPerMol: number, kTKJPerMol: number): string {
+  return `${shown(valueKJPerMol)} kJ/mol (${shown(Math.abs(valueKJPerMol) / kTKJPerMol, 2)} kT)`;
+}

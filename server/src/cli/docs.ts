@@ -1,0 +1,40 @@
+import { CATALOGUE, FINDING_CODES, SEVERITIES } from '../base/catalogue';
+import { MEDIA } from '../physics/media';
+
+/** Parts of the README that are made from the program's own tables, by the name of their markers. */
+export function generatedSections(): ReadonlyMap<string, string> {
+  return new Map([
+    ['findings', findingsSection()],
+    ['media', mediaSection()],
+  ]);
+}
+
+function findingsSection(): string {
+  const rows = SEVERITIES.flatMap((severity) =>
+    FINDING_CODES.filter((code) => CATALOGUE[code].severity === severity).map((code) => {
+      const { title, meaning, remedy } = CATALOGUE[code];
+      return `| \`${code}\` | ${severity} | ${title}. ${meaning} | ${remedy} |`;
+    }),
+  );
+  return ['| code | severity | what it means | what to do |', '| --- | --- | --- | --- |', ...rows].join('\n');
+}
+
+function mediaSection(): string {
+  return MEDIA.map(({ name, relativePermittivity, temperatureK }) => {
+    return `${name} ${relativePermittivity}${temperatureK === null ? '' : ` (${temperatureK} K)`}`;
+  }).join(' · ');
+}
+
+/** Puts each section between its markers `<!-- name:begin -->` and `<!-- name:end -->`. Throws where a marker is missing. */
+export function replaceSections(document: string, sections: ReadonlyMap<string, string>): string {
+  let text = document;
+  for (const [name, section] of sections) {
+    const begin = `<!-- ${name}:begin -->`;
+    const end = `<!-- ${name}:end -->`;
+    const from = text.indexOf(begin);
+    const to = text.indexOf(end);
+    if (from < 0 || to < from) throw new Error(`The document has no ${begin} … ${end}`);
+    text = `${text.slice(0, from + begin.length)}\n${section}\n${text.slice(to)}`;
+  }
+  return text;
+}

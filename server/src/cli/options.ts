@@ -1,0 +1,79 @@
+import { type Command, InvalidArgumentError, Option } from 'commander';
+import { type AnalysisRequest, CENTRES, type Centre, DEFAULT_SETTINGS } from '../analysis/settings';
+import type { Language } from '../formats/tree';
+import { findMedium } from '../physics/media';
+import { type Dimension, readQuantity } from '../physics/quantity';
+
+/** The analysis flags that `findings`, `pairs` and `dimers` share. */
+export interface AnalysisFlags {
+  readonly temperature?: number;
+  readonly permittivity?: number;
+  readonly centre?: Centre;
+  readonly tolerance?: number;
+  readonly cutoff?: number;
+  readonly periodic?: boolean;
+  readonly language?: Language;
+}
+
+/** A parser for a flag that must be a quantity above zero. */
+export function positive(dimension: Dimension, what: string): (text: string) => number {
+  return (text) => {
+    const result = readQuantity(text, dimension);
+    if (!result.ok) throw new InvalidArgumentError(result.reason);
+    if (result.value > 0) return result.value;
+    throw new InvalidArgumentError(`${what} must be above zero.`);
+  };
+}
+
+function permittivity(text: string): number {
+  const medium = findMedium(text);
+  if (medium !== undefined) return medium.relativePermittivity;
+  const result = readQuantity(text, 'number');
+  if (result.ok && result.value >= 1) return result.value;
+  throw new InvalidArgumentError('It is a number from 1 up, or the name of a medium such as water or toluene.');
+}
+
+/** Adds the shared flags to a command. */
+export function withAnalysisFlags(command: Command): Command {
+  return command
+    .addOption(
+      new Option('--temperature <T>', 'temperature, K or with a unit such as "25 degC"').argParser(
+        positive('temperatureK', 'The temperature'),
+      ),
+    )
+    .addOption(
+      new Option('--permittivity <value>', 'relative permittivity, a number or a medium such as water').argParser(
+        permittivity,
+      ),
+    )
+    .addOption(new Option('--centre <which>', 'the point that stands for a fragment').choices(CENTRES))
+    .addOption(
+      new Option('--tolerance <share>', 'share of the reference by which the point dipole may be off').argParser(
+        positive('number', 'The tolerance'),
+      ),
+    )
+    .addOption(
+      new Option('--cutoff <distance>', 'between the surfaces of two fragments, Å or with a unit').argParser(
+        positive('lengthA', 'The cutoff'),
+      ),
+    )
+    .option('--periodic', 'use the cell of the file even where the format by itself does not')
+    .addOption(new Option('--language <format>', 'format of the files').choices(['xyz', 'pdb']));
+}
+
+/** The request that the flags make: a flag beats the file's key, which beats the default. */
+export function requestOf(flags: AnalysisFlags): AnalysisRequest {
+  return {
+    settings: {
+      ...DEFAULT_SETTINGS,
+      centre: flags.centre ?? DEFAULT_SETTINGS.centre,
+      tolerance: flags.tolerance ?? DEFAULT_SETTINGS.tolerance,
+      cutoffA: flags.cutoff ?? DEFAULT_SETTINGS.cutoffA,
+    },
+    forced: {
+      ...(flags.temperature === undefined ? {} : { temperatureK: flags.temperature }),
+      ...(flags.permittivity === undefined ? {} : { relativePermittivity: flags.permittivity }),
+    },
+    periodic: flags.periodic ?? false,
+  };
+}

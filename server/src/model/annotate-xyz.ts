@@ -1,0 +1,245 @@
+import { FindingCollector } from '../base/finding';
+import type { Span } from '../base/span';
+import type { Entry } from '../formats/annotation/entries';
+import { listGroups, listItems, listWords } from '../formats/annotation/lists';
+import type { FrameTree } from '../formats/tree';
+import { atomicNumberOf } from '../physics/elements';
+import { dipoleUnitEA } from '../physics/units';
+import type { Snapshot } from '../text/snapshot';
+import { type Axis, emptyNotes, type FragmentNotes, ValueReader } from './annotation';
+import { rangesOf } from './fragment-list';
+import { atomsOf, type FragmentSet } from './fragment-set';
+import { canonicalFormula } from './kinds';
+
+/** Keys of the first frame that hold for a later one which does not give them itself. */
+const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
+
+/**
+ * Binds the comment-line keys of an XYZ frame to its fragments. `first` is the first frame of the file where its names and kinds
+ * hold for this one (same elements in the same order), else `null`.
+ */
+export function annotateXyz(
+  text: Snapshot,
+  frame: FrameTree,
+  set: FragmentSet,
+  formulas: readonly string[],
+  first: FrameTree | null,
+  problems: FindingCollector,
+): FragmentNotes[] {
+  const notes = Array.from({ length: set.count }, emptyNotes);
+  const binder = new XyzBinder(new ValueReader(text, problems), frame, set, formulas, notes);
+  binder.bind(frame.entries, () => true);
+  if (first !== null) {
+    const own = new Set(frame.entries.map((entry) => entry.key));
+    // What was wrong with these keys has been said at the first frame.
+    const silent = new XyzBinder(new ValueReader(text, new FindingCollector()), frame, set, formulas, notes);
+    silent.bind(first.entries, (key) => INHERITED_KEYS.includes(key) && !own.has(key));
+  }
+  return notes;
+}
+
+class XyzBinder {
+  readonly #reader: ValueReader;
+  readonly #frame: FrameTree;
+  readonly #set: FragmentSet;
+  readonly #formulas: readonly string[];
+  readonly #notes: FragmentNotes[];
+
+  constructor(
+    reader: ValueReader,
+    frame: FrameTree,
+    set: FragmentSet,
+    formulas: readonly string[],
+    notes: FragmentNotes[],
+  ) {
+    this.#reader = reader;
+    this.#frame = frame;
+    this.#set = set;
+    this.#formulas = formulas;
+    this.#notes = notes;
+  }
+
+  bind(entries: readonly Entry[], wanted: (key: string) => boolean): void {
+    const entryOf = (key: string) => (wanted(key) ? entries.find((entry) => entry.key === key) : undefined);
+    const unitEntry = entries.find((entry) => entry.key === 'dipole_unit');
+    const unit = unitEntry === undefined ? 'D' : this.#reader.dipoleUnit(unitEntry);
+    const each = (key: string, perFragment: number, assign: (f: number, items: Span[]) => void) => {
+      const entry = entryOf(key);
+      if (entry !== undefined) this.#distribute(entry, perFragment, assign);
+    };
+    if (this.#frame.groups?.areWords) {
+      for (const [f, note] of this.#notes.entries()) note.name = this.#groupName(f);
+    }
+    const names = entryOf('fragment_names');
+    if (names !== undefined) this.#bindNames(names);
+    each('fragment_charges', 1, (f, [item]) => {
+      this.#notes[f]!.chargeE = this.#reader.number(item!, 'charge');
+    });
+    each('fragment_polarizabilities', 1, (f, [item]) => {
+      const value = this.#reader.number(item!, 'polarizability');
+      if (value !== null && value < 0) this.#reader.invalid(item!, 'A polarizability cannot be negative.');
+      else this.#notes[f]!.polarizabilityA3 = value;
+    });
+    if (unit !== null) {
+      each('fragment_dipoles', 3, (f, items) => {
+        const span = { start: items[0]!.start, end: items[2]!.end };
+        const vector = this.#reader.vector(items, unit, span);
+        if (vector === null) return;
+        this.#notes[f]!.dipoleEA = vector.dipoleEA;
+        this.#notes[f]!.writtenDipole = vector.written;
+      });
+      each('fragment_dipole_sizes', 1, (f, [item]) => this.#setSize(f, item!, unit));
+      const sizes = entryOf('kind_dipole_sizes');
+      if (sizes !== undefined) this.#bindKinds(sizes, (f, value) => this.#setSize(f, value, unit));
+    }
+    const axes = entryOf('fragment_axes');
+    if (axes !== undefined) {
+      const groups = listGroups(this.#reader.text, axes);
+      if (this.#hasLength(axes, groups, 1)) {
+        for (const [f, group] of groups.entries()) this.#notes[f]!.axis ??= this.#axisByNumbers(group);
+      }
+    }
+    const kindAxes = entryOf('kind_axes');
+    if (kindAxes !== undefined) {
+      this.#bindKinds(kindAxes, (f, value) => {
+        this.#notes[f]!.axis ??= this.#axisBySymbols(f, value);
+      });
+    }
+  }
+
+  #groupName(fragment: number): string | null {
+    const group = this.#frame.atoms.group![atomsOf(this.#set, fragment)[0]!]!;
+    const name = this.#frame.groups!.names[group]!;
+    return /^[+-]?\d+$/.test(name) ? null : name;
+  }
+
+  #bindNames(entry: Entry): void {
+    const words = listWords(this.#reader.text, entry);
+    if (!this.#hasLength(entry, words, 1)) return;
+    for (const [f, word] of words.entries()) {
+      const name = this.#reader.text.slice(word.start, word.end);
+      if (name.toLowerCase() !== 'nan') this.#notes[f]!.name = name;
+    }
+  }
+
+  #distribute(entry: Entry, perFragment: number, assign: (f: number, items: Span[]) => void): void {
+    const items = listItems(this.#reader.text, entry);
+    if (!this.#hasLength(entry, items, perFragment)) return;
+    for (let f = 0; f < this.#set.count; f++) assign(f, items.slice(f * perFragment, (f + 1) * perFragment));
+  }
+
+  #hasLength(entry: Entry, items: readonly Span[], perFragment: number): boolean {
+    const needed = perFragment * this.#set.count;
+    if (items.length === needed) return true;
+    const { problems } = this.#reader;
+    problems.add(
+      'array-length',
+      entry.value,
+      () => {
+        const each = perFragment === 1 ? '' : ` (${perFragment} for each)`;
+        const fragments = `${this.#set.count} fragment${this.#set.count === 1 ? '' : 's'}`;
+        return `${entry.key} has ${items.length} entries, and ${fragments} need ${needed}${each}.`;
+      },
+      () => ({ fix: lengthFix(entry, items, needed) }),
+    );
+    return false;
+  }
+
+  #setSize(f: number, item: Span, unit: string): void {
+    const note = this.#notes[f]!;
+    if (note.dipoleSizeEA !== null) return;
+    if (this.#reader.text.slice(item.start, item.end).toLowerCase() === 'nan') return;
+    const size = this.#reader.quantity(item, 'dipoleEA', 'dipole size', dipoleUnitEA(unit)!);
+    if (size === null) return;
+    if (size < 0) {
+      this.#reader.invalid(item, 'A dipole size cannot be negative; turn the axis round instead.');
+      return;
+    }
+    note.dipoleSizeEA = size;
+    note.writtenSize = { items: [item], unit, span: item };
+  }
+
+  /** Reads `FORMULA:VALUE` items and gives each value to the fragments of that composition. */
+  #bindKinds(entry: Entry, assign: (f: number, value: Span) => void): void {
+    const { text, problems } = this.#reader;
+    for (const group of listGroups(text, entry)) {
+      const words = text.slice(group.start, group.end);
+      const colon = words.indexOf(':');
+      const formula = colon < 0 ? undefined : canonicalFormula(words.slice(0, colon));
+      if (formula === undefined || colon === words.length - 1) {
+        this.#reader.invalid(group, `"${this.#reader.shown(group)}" in ${entry.key} is no FORMULA:VALUE.`);
+        continue;
+      }
+      const value = { start: group.start + colon + 1, end: group.end };
+      let matches = 0;
+      for (let f = 0; f < this.#set.count; f++) {
+        if (this.#formulas[f] !== formula) continue;
+        matches++;
+        assign(f, value);
+      }
+      if (matches === 0) {
+        problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {
+          return `No fragment of the frame has the composition ${formula}.`;
+        });
+      }
+    }
+  }
+
+  #axisByNumbers(group: Span): Axis | null {
+    const { text } = this.#reader;
+    const words = text.slice(group.start, group.end);
+    if (words.toLowerCase() === 'nan') return null;
+    const mark = words.indexOf('>');
+    const count = this.#frame.atoms.count;
+    const read = (start: number, end: number) => {
+      const ranges = rangesOf(text, { start, end });
+      if (ranges.some(({ from, to }) => !(from >= 1 && to >= from && to <= count))) return [];
+      return ranges.flatMap(({ from, to }) => Array.from({ length: to - from + 1 }, (_, k) => from - 1 + k));
+    };
+    const before = mark < 0 ? [] : read(group.start, group.start + mark);
+    const after = mark < 0 ? [] : read(group.start + mark + 1, group.end);
+    if (before.length > 0 && after.length > 0) return { before, after, span: group };
+    return this.#reader.invalid(group, `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`);
+  }
+
+  #axisBySymbols(f: number, value: Span): Axis | null {
+    const words = this.#reader.text.slice(value.start, value.end);
+    const sides = words.split('>').map((side) => this.#atomsNamed(f, side.split(',')));
+    if (sides.length === 2 && sides[0]!.length > 0 && sides[1]!.length > 0) {
+      return { before: sides[0]!, after: sides[1]!, span: value };
+    }
+    return this.#reader.invalid(
+      value,
+      `"${this.#reader.shown(value)}" names no atoms on both sides of ">"; write symbols as in O>H.`,
+    );
+  }
+
+  /** Atoms of a fragment by element symbol, or by the label that stands in the file. */
+  #atomsNamed(f: number, names: readonly string[]): number[] {
+    const members = [...atomsOf(this.#set, f)];
+    return names.flatMap((name) => {
+      const z = atomicNumberOf(name.trim());
+      if (z > 0) return members.filter((atom) => this.#frame.atoms.element[atom] === z);
+      return members.filter((atom) => {
+        const { start, end } = this.#frame.fieldSpan(atom, 'element');
+        return this.#reader.text.slice(start, end) === name.trim();
+      });
+    });
+  }
+}
+
+/** Fills a list up with `nan`, or takes away what is too much. */
+function lengthFix(entry: Entry, items: readonly Span[], needed: number) {
+  if (items.length > needed) {
+    const start = needed === 0 ? entry.inner.start : items[needed - 1]!.end;
+    return {
+      title: `Remove the last ${items.length - needed} entries`,
+      edits: [{ start, end: items[items.length - 1]!.end, text: '' }],
+    };
+  }
+  const at = items.length === 0 ? entry.inner.start : items[items.length - 1]!.end;
+  const separator = entry.form === 'bracketed' ? ', ' : ' ';
+  const missing = needed - items.length;
+  const text = `${items.length === 0 ? '' : separator}${Array.from({ length: missing }, () => 'nan').join(separator)}`;
+  return { title: `Add ${missing} times nan (not given)`, edits: [{ start: at, end: at, text }] };
+}

@@ -1,0 +1,201 @@
+import type { FindingCollector } from '../base/finding';
+import type { Span } from '../base/span';
+import type { Entry } from '../formats/annotation/entries';
+import { itemNumber, listItems, valueText } from '../formats/annotation/lists';
+import { findMedium } from '../physics/media';
+import { type Dimension, readQuantity } from '../physics/quantity';
+import { dipoleUnitEA, standardDipoleUnit } from '../physics/units';
+import type { Snapshot } from '../text/snapshot';
+
+/** Direction of a dipole by atoms: from the mean position of `before` to that of `after` (atom indices of the frame). */
+export interface Axis {
+  readonly before: readonly number[];
+  readonly after: readonly number[];
+  readonly span: Span;
+}
+
+/** A dipole as it stands in the file, for findings and their fixes. */
+export interface WrittenDipole {
+  /** The three components or the one size, each with its place. */
+  readonly items: readonly Span[];
+  /** Unit of the numbers (its standard spelling). */
+  readonly unit: string;
+  /** The value as a whole. */
+  readonly span: Span;
+}
+
+/** What the file says of one fragment; `null` where it says nothing. */
+export interface FragmentNotes {
+  name: string | null;
+  chargeE: number | null;
+  dipoleEA: readonly [number, number, number] | null;
+  writtenDipole: WrittenDipole | null;
+  dipoleSizeEA: number | null;
+  writtenSize: WrittenDipole | null;
+  axis: Axis | null;
+  polarizabilityA3: number | null;
+}
+
+/** A value with its place. */
+export interface Placed<T> {
+  readonly value: T;
+  readonly span: Span;
+}
+
+/** What the file says of a frame as a whole; `null` where it says nothing. */
+export interface FrameNotes {
+  temperatureK: number | null;
+  relativePermittivity: number | null;
+  totalChargeE: Placed<number> | null;
+  multiplicity: Placed<number> | null;
+  dipoleEA: Placed<readonly [number, number, number]> | null;
+  periodic: boolean | null;
+  /** Finding codes that are not wanted. */
+  silence: ReadonlySet<string>;
+}
+
+export function emptyNotes(): FragmentNotes {
+  return {
+    name: null,
+    chargeE: null,
+    dipoleEA: null,
+    writtenDipole: null,
+    dipoleSizeEA: null,
+    writtenSize: null,
+    axis: null,
+    polarizabilityA3: null,
+  };
+}
+
+/** Reads single values of entries, reporting what cannot be read. */
+export class ValueReader {
+  readonly text: Snapshot;
+  readonly problems: FindingCollector;
+
+  constructor(text: Snapshot, problems: FindingCollector) {
+    this.text = text;
+    this.problems = problems;
+  }
+
+  invalid(span: Span, reason: string): null {
+    this.problems.add('value-invalid', span, () => reason);
+    return null;
+  }
+
+  /** The text of a value, cut for a message. */
+  shown(span: Span): string {
+    return this.text.slice(span.start, Math.min(span.end, span.start + 40));
+  }
+
+  quantity(span: Span, dimension: Dimension, what: string, bareUnit = 1): number | null {
+    const result = readQuantity(this.text.slice(span.start, span.end), dimension, bareUnit);
+    if (result.ok) return result.value;
+    if (result.kind === 'unit') {
+      this.problems.add(
+        'unit-unknown',
+        span,
+        () => `The ${what} "${this.shown(span)}" cannot be read. ${result.reason}`,
+      );
+      return null;
+    }
+    return this.invalid(span, `The ${what} "${this.shown(span)}" is no quantity. ${result.reason}`);
+  }
+
+  /** A finite number; `nan` and anything else that is none gives null, the latter with a finding. */
+  number(span: Span, what: string): number | null {
+    const { value, readable } = itemNumber(this.text, span);
+    if (!Number.isNaN(value)) return value;
+    if (!readable) {
+      this.problems.add('number-unreadable', span, () => `The ${what} "${this.shown(span)}" is no finite number.`);
+    }
+    return null;
+  }
+
+  /** The dipole unit of an entry, or `null` with a finding where it is none. */
+  dipoleUnit(entry: Entry): string | null {
+    const unit = standardDipoleUnit(valueText(this.text, entry));
+    if (unit !== undefined) return unit;
+    this.problems.add('unit-unknown', entry.value, () => `"${this.shown(entry.inner)}" is no unit of a dipole.`);
+    return null;
+  }
+
+  /** Three components of a vector in a dipole unit, e·Å. */
+  vector(
+    items: readonly Span[],
+    unit: string,
+    span: Span,
+  ): { dipoleEA: [number, number, number]; written: WrittenDipole } | null {
+    const numbers = items.map((item) => this.number(item, 'dipole component'));
+    if (numbers.some((value) => value === null)) return null;
+    const scale = dipoleUnitEA(unit)!;
+    const dipoleEA = numbers.map((value) => value! * scale) as [number, number, number];
+    return { dipoleEA, written: { items, unit, span } };
+  }
+
+  permittivity(entry: Entry): number | null {
+    const words = valueText(this.text, entry).trim();
+    const medium = findMedium(words);
+    if (medium !== undefined) return medium.relativePermittivity;
+    const result = readQuantity(words, 'number');
+    if (result.ok && result.value >= 1) return result.value;
+    return this.invalid(
+      entry.value,
+      `relative_permittivity "${this.shown(entry.inner)}" is no number from 1 up and no known medium.`,
+    );
+  }
+
+  temperature(entry: Entry): number | null {
+    const value = this.quantity(entry.inner, 'temperatureK', 'temperature');
+    if (value === null || value > 0) return value;
+    return this.invalid(entry.value, 'The temperature must be above 0 K.');
+  }
+
+  /** Keys that speak of the whole frame or file. */
+  frameNotes(entries: readonly Entry[]): FrameNotes {
+    const first = (...keys: string[]) => entries.find((entry) => keys.includes(entry.key));
+    const permittivity = first('relative_permittivity');
+    const temperature = first('temperature');
+    const total = first('total_charge', 'charge');
+    const multiplicity = first('multiplicity', 'mult');
+    const dipole = first('dipole');
+    const silence = first('silence');
+    const periodic = first('periodic');
+    return {
+      relativePermittivity: permittivity ? this.permittivity(permittivity) : null,
+      temperatureK: temperature ? this.temperature(temperature) : null,
+      totalChargeE: total ? this.#placed(total, 'total charge', Number.isFinite) : null,
+      multiplicity: multiplicity
+        ? this.#placed(multiplicity, 'multiplicity', (value) => Number.isInteger(value) && value >= 1)
+        : null,
+      dipoleEA: dipole ? this.#frameDipole(dipole) : null,
+      periodic: periodic ? this.#flag(periodic) : null,
+      silence: new Set(
+        silence ? listItems(this.text, silence).map((item) => this.text.slice(item.start, item.end)) : [],
+      ),
+    };
+  }
+
+  #placed(entry: Entry, what: string, allowed: (value: number) => boolean): Placed<number> | null {
+    const value = this.number(entry.inner, what);
+    if (value === null) return null;
+    if (allowed(value)) return { value, span: entry.value };
+    return this.invalid(entry.value, `The ${what} ${value} is not allowed.`);
+  }
+
+  #frameDipole(entry: Entry): FrameNotes['dipoleEA'] {
+    const items = listItems(this.text, entry);
+    if (items.length !== 3) {
+      this.problems.add('array-length', entry.value, () => `dipole has ${items.length} numbers; a vector has three.`);
+      return null;
+    }
+    const vector = this.vector(items, 'e*angstrom', entry.value);
+    return vector === null ? null : { value: vector.dipoleEA, span: entry.value };
+  }
+
+  #flag(entry: Entry): boolean | null {
+    const word = valueText(this.text, entry).trim().toLowerCase();
+    if (word === 'true' || word === 't' || word === '1' || word === 'yes') return true;
+    if (word === 'false' || word === 'f' || word === '0' || word === 'no') return false;
+    return this.invalid(entry.value, `"${this.shown(entry.inner)}" is neither true nor false.`);
+  }
+}

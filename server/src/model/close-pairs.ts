@@ -1,0 +1,158 @@
+import { AtomFlag, type AtomTable } from '../formats/tree';
+import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, VDW_RADIUS_A } from '../physics/elements';
+import type { Cell } from './cell';
+import { NeighbourBuffer, PointGrid } from './point-grid';
+
+/** Allowance on the sum of covalent radii of two non-metals, Å (common practice, no source). */
+const NON_METAL_ALLOWANCE_A = 0.4;
+/** Allowance between a metal and a non-metal, Å (common practice, no source). */
+const METAL_ALLOWANCE_A = 0.3;
+/** Two neighbours share a proton when their distances differ by no more than this factor. */
+export const SHARED_PROTON_RATIO = 1.1;
+/** Contact ratio below which an ordinary pair of atoms clashes. */
+export const CLASH_RATIO = 0.55;
+/** Share of the sum of covalent radii below which a close-lying pair clashes. */
+export const CLASH_COVALENT = 0.75;
+
+/** Pairs of atoms so close that they may be bonded, clash or coincide; i < j, in order of i then j. */
+export interface ClosePairs {
+  readonly count: number;
+  readonly first: Int32Array;
+  readonly second: Int32Array;
+  readonly distanceA: Float64Array;
+  /** 1 where the pair is covalently bonded by the rule of distances. */
+  readonly bonded: Uint8Array;
+  /** Whether the atoms are too dense for the search; the list is then empty. */
+  readonly tooDense: boolean;
+}
+
+/** Longest covalent bond between two elements, Å; NaN where they are never bonded by distance. */
+export function bondLimitA(z1: number, z2: number): number {
+  const class1 = BOND_CLASS[z1]!;
+  const class2 = BOND_CLASS[z2]!;
+  if (class1 === BondClass.groupOneOrTwo || class2 === BondClass.groupOneOrTwo) return Number.NaN;
+  if (class1 === BondClass.metal && class2 === BondClass.metal) return Number.NaN;
+  const allowance = class1 === class2 ? NON_METAL_ALLOWANCE_A : METAL_ALLOWANCE_A;
+  return COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]! + allowance;
+}
+
+/** Largest distance that matters between two elements: a bond or a clash, Å. */
+function closeLimitA(z1: number, z2: number): number {
+  const covalent = COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!;
+  const clash = Math.max(CLASH_RATIO * (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!), CLASH_COVALENT * (covalent || 0));
+  const bond = bondLimitA(z1, z2);
+  return bond > clash ? bond : clash;
+}
+
+/** Whether an element can share a proton with another: N, O, F. */
+export function sharesProton(z: number): boolean {
+  return z === 7 || z === 8 || z === 9;
+}
+
+/** Atoms that can have bonds and contacts: of a known element, at a known place. */
+export function solidAtoms(atoms: AtomTable): Int32Array {
+  const barred = AtomFlag.ghost | AtomFlag.unknownElement | AtomFlag.noPosition;
+  const solid: number[] = [];
+  for (let i = 0; i < atoms.count; i++) if ((atoms.flags[i]! & barred) === 0) solid.push(i);
+  return Int32Array.from(solid);
+}
+
+/**
+ * Finds the close pairs of a frame with cells, and decides which are bonds: d ≤ c_i + c_j + 0.4 Å between non-metals
+ * (c: Cordero 2008), + 0.3 Å between a non-metal and a metal outside groups 1 and 2, which are never bonded by distance. A hydrogen
+ * keeps its nearest neighbour alone, unless two N, O or F neighbours lie within 10 % of each other (shared proton).
+ */
+export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): ClosePairs {
+  const solid = solidAtoms(atoms);
+  const present = [...new Set(Array.from(solid, (i) => atoms.element[i]!))];
+  const size = 119;
+  const limits = new Float64Array(size * size);
+  let radius = 0.1;
+  for (const z1 of present) {
+    for (const z2 of present) {
+      const limit = closeLimitA(z1, z2);
+      limits[size * z1 + z2] = limit;
+      radius = Math.max(radius, limit);
+    }
+  }
+  const grid = new PointGrid(positionA, solid, radius, cell);
+  if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
+  const first: number[] = [];
+  const second: number[] = [];
+  const distanceA: number[] = [];
+  const buffer = new NeighbourBuffer();
+  for (const i of solid) {
+    grid.gather(i, radius, true, buffer);
+    const begin = first.length;
+    for (let k = 0; k < buffer.count; k++) {
+      const j = buffer.index[k]!;
+      const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
+      if (d > limits[size * atoms.element[i]! + atoms.element[j]!]!) continue;
+      // Kept in order of j: few partners, so an insertion is cheapest.
+      let at = first.length;
+      while (at > begin && second[at - 1]! > j) {
+        second[at] = second[at - 1]!;
+        distanceA[at] = distanceA[at - 1]!;
+        at--;
+      }
+      second[at] = j;
+      distanceA[at] = d;
+      first.push(i);
+    }
+  }
+  const pairs = {
+    count: first.length,
+    first: Int32Array.from(first),
+    second: Int32Array.from(second),
+    distanceA: Float64Array.from(distanceA),
+    bonded: new Uint8Array(first.length),
+    tooDense: false,
+  };
+  markBonds(atoms, pairs);
+  return pairs;
+}
+
+const NO_PAIRS: ClosePairs = {
+  count: 0,
+  first: new Int32Array(0),
+  second: new Int32Array(0),
+  distanceA: new Float64Array(0),
+  bonded: new Uint8Array(0),
+  tooDense: false,
+};
+
+function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
+  const { element } = atoms;
+  const nearest = new Int32Array(atoms.count).fill(-1);
+  const nearestA = new Float64Array(atoms.count).fill(Number.POSITIVE_INFINITY);
+  const offer = (hydrogen: number, partner: number, d: number) => {
+    if (d >= nearestA[hydrogen]!) return;
+    nearest[hydrogen] = partner;
+    nearestA[hydrogen] = d;
+  };
+  const inReach = (k: number) => {
+    const limit = bondLimitA(element[pairs.first[k]!]!, element[pairs.second[k]!]!);
+    return pairs.distanceA[k]! <= limit;
+  };
+  for (let k = 0; k < pairs.count; k++) {
+    if (!inReach(k)) continue;
+    const i = pairs.first[k]!;
+    const j = pairs.second[k]!;
+    if (element[i] === 1) offer(i, j, pairs.distanceA[k]!);
+    if (element[j] === 1) offer(j, i, pairs.distanceA[k]!);
+  }
+  const keeps = (hydrogen: number, partner: number, d: number) => {
+    if (element[hydrogen] !== 1) return true;
+    const best = nearest[hydrogen]!;
+    if (best === partner) return true;
+    const shared = sharesProton(element[partner]!) && sharesProton(element[best]!);
+    return shared && d <= SHARED_PROTON_RATIO * nearestA[hydrogen]!;
+  };
+  for (let k = 0; k < pairs.count; k++) {
+    if (!inReach(k)) continue;
+    const i = pairs.first[k]!;
+    const j = pairs.second[k]!;
+    const d = pairs.distanceA[k]!;
+    if (keeps(i, j, d) && keeps(j, i, d)) pairs.bonded[k] = 1;
+  }
+}

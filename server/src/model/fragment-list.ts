@@ -1,0 +1,78 @@
+import type { FindingCollector } from '../base/finding';
+import type { Span } from '../base/span';
+import type { Entry } from '../formats/annotation/entries';
+import { listGroups } from '../formats/annotation/lists';
+import type { FrameTree } from '../formats/tree';
+import { scanCount } from '../text/numbers';
+import type { Snapshot } from '../text/snapshot';
+
+const COMMA = 44;
+const DASH = 45;
+const BLANK = 32;
+
+/**
+ * Reads `fragment_atoms`: groups of atom numbers and ranges (`1-3 4-6,9`). Returns the group of each atom, −1 where it is in none.
+ * Reports numbers that are no atoms, atoms listed twice (they stay in the first), and atoms left out.
+ */
+export function readFragmentAtoms(
+  text: Snapshot,
+  frame: FrameTree,
+  entry: Entry,
+  problems: FindingCollector,
+): Int32Array {
+  const count = frame.atoms.count;
+  const labels = new Int32Array(count).fill(-1);
+  let label = 0;
+  for (const group of listGroups(text, entry)) {
+    for (const { span, from, to } of rangesOf(text, group)) {
+      if (!(from >= 1 && to >= from && to <= count)) {
+        const written = text.slice(span.start, Math.min(span.end, span.start + 30));
+        problems.add('value-invalid', span, () => {
+          return `"${written}" in fragment_atoms is no atom number or range between 1 and ${count}.`;
+        });
+        continue;
+      }
+      let overlaps = 0;
+      for (let atom = from - 1; atom < to; atom++) {
+        if (labels[atom]! >= 0) overlaps ||= atom + 1;
+        else labels[atom] = label;
+      }
+      if (overlaps > 0) {
+        problems.add('fragments-overlap', span, () => `Atom ${overlaps} is listed already.`);
+      }
+    }
+    label++;
+  }
+  let left = 0;
+  let firstLeft = -1;
+  for (let atom = 0; atom < count; atom++) {
+    if (labels[atom]! >= 0) continue;
+    left++;
+    if (firstLeft < 0) firstLeft = atom;
+  }
+  if (left > 0) {
+    problems.add('atoms-ungrouped', entry.value, () => {
+      return `${left} atom${left === 1 ? ' is' : 's are'} in no fragment, the first one atom ${firstLeft + 1}.`;
+    });
+  }
+  return labels;
+}
+
+/** The numbers and ranges of one group; NaN-like −1 where one is unreadable. */
+export function rangesOf(text: Snapshot, group: Span): { span: Span; from: number; to: number }[] {
+  const { bytes } = text;
+  const ranges: { span: Span; from: number; to: number }[] = [];
+  let i = group.start;
+  while (i < group.end) {
+    while (i < group.end && (bytes[i] === COMMA || bytes[i] === BLANK)) i++;
+    const start = i;
+    while (i < group.end && bytes[i] !== COMMA && bytes[i] !== BLANK) i++;
+    if (i === start) continue;
+    let dash = start;
+    while (dash < i && bytes[dash] !== DASH) dash++;
+    const from = scanCount(bytes, start, dash);
+    const to = dash < i ? scanCount(bytes, dash + 1, i) : from;
+    ranges.push({ span: { start, end: i }, from, to });
+  }
+  return ranges;
+}
