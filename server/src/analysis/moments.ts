@@ -197,10 +197,10 @@ function chooseDipole(
   out: { dipoleEA: Float64Array; dipoleNormEA: Float64Array; columnDipoleEA: Float64Array },
 ): DipoleSource {
   const set = (x: number, y: number, z: number) => {
-    out.dipoleEA[3 * f] = x;
-    out.dipoleEA[3 * f + 1] = y;
-    out.dipoleEA[3 * f + 2] = z;
-    out.dipoleNormEA[f] = Math.sqrt(x * x + y * y + z * z);
+    const size = Math.sqrt(x * x + y * y + z * z);
+    const isZero = size < ZERO_DIPOLE_EA;
+    out.dipoleEA.set(isZero ? [0, 0, 0] : [x, y, z], 3 * f);
+    out.dipoleNormEA[f] = isZero ? 0 : size;
   };
   if (note.dipoleEA !== null) {
     set(...note.dipoleEA);
@@ -213,7 +213,7 @@ function chooseDipole(
     const direction = axis ?? unitVector(fromColumn);
     if (size < ZERO_DIPOLE_EA) set(0, 0, 0);
     else if (direction !== null) set(size * direction[0], size * direction[1], size * direction[2]);
-    out.dipoleNormEA[f] = size;
+    out.dipoleNormEA[f] = size < ZERO_DIPOLE_EA ? 0 : size;
     return axis === null ? 'annotated' : 'axis';
   }
   if (members.length === 1 && model.tree.atoms.dipoleEA === null) {

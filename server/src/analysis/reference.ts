@@ -103,6 +103,8 @@ function coulombAlong(
 /** Step of the inward search, as a ratio of distances. */
 const STEP = 1.02;
 const SHORTEST_START_A = 1;
+/** The search begins at least this far out, where only the slowest terms are left, Å. */
+const SHORTEST_OUTER_A = 64;
 const FARTHEST_A = 1e5;
 
 /**
@@ -131,7 +133,7 @@ export function validBeyond(
     return Number.isNaN(value) ? Number.NEGATIVE_INFINITY : value;
   };
   const first = Math.max(start, 1e-3);
-  let outer = 4 * first;
+  let outer = Math.max(SHORTEST_OUTER_A, 16 * first);
   while (outer < FARTHEST_A && !(margin(outer) > 0 && margin(1.5 * outer) > 0 && margin(2 * outer) > 0)) outer *= 2;
   let r = outer;
   let here = margin(r);

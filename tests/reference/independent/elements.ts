@@ -2,7 +2,7 @@
  * Element data of the independent calculation, typed in apart from the program's own tables.
  * Weights: IUPAC 2016 (Meija et al., Pure Appl. Chem. 88 (2016) 265), abridged values.
  * Covalent radii: Cordero et al., Dalton Trans. 2008, 2832 (C sp3, Fe low spin).
- * Van der Waals radii: Bondi, J. Phys. Chem. 68 (1964) 441 (Li and Br as reprinted by Mantina); Ca: Mantina et al.,
+ * Van der Waals radii: Bondi, J. Phys. Chem. 68 (1964) 441; Ca: Mantina et al.,
  * J. Phys. Chem. A 113 (2009) 5806; Fe, Zn: Alvarez, Dalton Trans. 2013, 42, 8617.
  */
 export interface Element {
@@ -16,7 +16,7 @@ export interface Element {
 const ELEMENTS: Record<string, Element> = {
   H: { z: 1, weight: 1.008, covalent: 0.31, vdw: 1.2, kind: 'nonmetal' },
   He: { z: 2, weight: 4.002602, covalent: 0.28, vdw: 1.4, kind: 'nonmetal' },
-  Li: { z: 3, weight: 6.94, covalent: 1.28, vdw: 1.81, kind: 'group 1 or 2' },
+  Li: { z: 3, weight: 6.94, covalent: 1.28, vdw: 1.82, kind: 'group 1 or 2' },
   C: { z: 6, weight: 12.011, covalent: 0.76, vdw: 1.7, kind: 'nonmetal' },
   N: { z: 7, weight: 14.007, covalent: 0.71, vdw: 1.55, kind: 'nonmetal' },
   O: { z: 8, weight: 15.999, covalent: 0.66, vdw: 1.52, kind: 'nonmetal' },
@@ -31,7 +31,7 @@ const ELEMENTS: Record<string, Element> = {
   Ca: { z: 20, weight: 40.078, covalent: 1.76, vdw: 2.31, kind: 'group 1 or 2' },
   Fe: { z: 26, weight: 55.845, covalent: 1.32, vdw: 2.44, kind: 'other metal' },
   Zn: { z: 30, weight: 65.38, covalent: 1.22, vdw: 2.39, kind: 'other metal' },
-  Br: { z: 35, weight: 79.904, covalent: 1.2, vdw: 1.83, kind: 'nonmetal' },
+  Br: { z: 35, weight: 79.904, covalent: 1.2, vdw: 1.85, kind: 'nonmetal' },
   I: { z: 53, weight: 126.90447, covalent: 1.39, vdw: 1.98, kind: 'nonmetal' },
 };
 

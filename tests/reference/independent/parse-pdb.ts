@@ -211,7 +211,11 @@ function interpret(
     relativePermittivity: permittivity === undefined ? null : Number(permittivity),
     annotate: (fragments) =>
       fragments.map((indices) => annotate(indices, atoms, fragmentLines, fileKeys.get('dipole_unit') ?? 'D')),
-    defaultName: (indices) => atoms[indices[0]].residue,
+    // Residues joined by a declared bond carry the names of all, in file order.
+    defaultName: (indices) => {
+      const places = new Map(indices.map((i) => [`${atoms[i].chain}:${atoms[i].number}`, atoms[i].residue]));
+      return [...places.values()].join('+');
+    },
   };
 }
 
