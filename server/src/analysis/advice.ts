@@ -15,7 +15,7 @@ const ION_CONTACT_RATIO = 1.5;
 const SURELY_FAR = 3;
 
 /** The advice on a pair, the first rule that applies; `null` for parts of one molecule. */
-export function adviseOn(system: System, pair: Omit<Pair, 'advice'>, sharedProton: boolean): Advice | null {
+export function adviseOn(system: System, pair: Readonly<Pair>, sharedProton: boolean): Advice | null {
   const { moments, kTKJPerMol, isIon, settings } = system;
   const { first, second, contact, regime, basis, strengthKJPerMol, errorKJPerMol, energies } = pair;
   if (contact === 'bonded') return null;

@@ -46,7 +46,8 @@ export interface Pair {
   readonly regime: Regime | null;
   /** What the pair matters, kJ/mol: the larger of reference and point estimate in size; with ε_r = 1 where they touch. */
   readonly strengthKJPerMol: number;
-  readonly advice: Advice | null;
+  /** Set last, since it rests on all the rest; `null` for parts of one molecule. */
+  advice: Advice | null;
 }
 
 const IMAGE = imageResult();
@@ -81,15 +82,16 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
   const point = Math.abs(energies.pointDipole);
   const known = enclosed ? Math.abs(energies.coulomb) : Math.max(point || 0, Math.abs(reference) || 0);
   const strength = (known || 0) * (contact === 'touching' ? settings.relativePermittivity : 1);
-  const closest = { closest1: scan.closest1, closest2: scan.closest2, closestA: scan.closestA };
-  const pair: Omit<Pair, 'advice'> = {
+  const pair: Pair = {
     first: f,
     second: g,
     image,
     distanceA,
     u,
     energies,
-    ...closest,
+    closest1: scan.closest1,
+    closest2: scan.closest2,
+    closestA: scan.closestA,
     contactRatio: scan.contactRatio,
     contact,
     enclosed,
@@ -98,8 +100,10 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
     errorKJPerMol: error,
     regime,
     strengthKJPerMol: strength,
+    advice: null,
   };
-  return { ...pair, advice: adviseOn(system, pair, scan.sharedProton) };
+  pair.advice = adviseOn(system, pair, scan.sharedProton);
+  return pair;
 }
 
 /** Within a fragment only the Coulomb sum stands, where the charges are those in use. */

@@ -73,7 +73,10 @@ async function reportOf(
   const found = new FileFindings(file);
   for (let index = 0; index < file.frames.length; index++) {
     const progress = () => `${name}: frame ${index + 1} of ${file.frames.length}`;
-    for (const _ of found.pairsOfFrame(analysis.frame(index))) await pacer.pause(progress);
+    for (const _ of found.pairsOfFrame(analysis.frame(index))) {
+      const turn = pacer.pause(progress);
+      if (turn !== undefined) await turn;
+    }
     await pacer.pause(progress);
   }
   const findings = found.list().map((finding) => findingRecord(file.lines, finding));

@@ -28,7 +28,8 @@ export function csvReport(): PairReport {
           if (!titled) output.write(`file,frame,${fields.map(([title]) => title).join(',')}\n`);
           titled = true;
           output.write(`${quoted(name)},${frame.index + 1},${fields.map(([, field]) => quoted(field)).join(',')}\n`);
-          await pause();
+          const turn = pause();
+          if (turn !== undefined) await turn;
         }
       }
     },

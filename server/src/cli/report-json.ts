@@ -42,13 +42,15 @@ async function writeFrame(
   output.write(`${place === 0 ? '' : ','}\n${JSON.stringify(head).slice(0, -1)},"fragments":[`);
   for (let f = 0; f < frame.system.count; f++) {
     output.write(`${f === 0 ? '' : ','}\n${JSON.stringify(fragmentRecord(frame, f, nameOf))}`);
-    await pause();
+    const turn = pause();
+    if (turn !== undefined) await turn;
   }
   output.write('\n],"pairs":[');
   let count = 0;
   for (const pair of pairs) {
     output.write(`${count++ === 0 ? '' : ','}\n${JSON.stringify(pairRecord(frame.system, pair))}`);
-    await pause();
+    const turn = pause();
+    if (turn !== undefined) await turn;
   }
   output.write('\n]}');
 }

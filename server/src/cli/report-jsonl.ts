@@ -12,7 +12,8 @@ export function jsonLinesReport(): PairReport {
           output.write(
             `${JSON.stringify({ file: name, frame: frame.index + 1, ...pairRecord(frame.system, pair) })}\n`,
           );
-          await pause();
+          const turn = pause();
+          if (turn !== undefined) await turn;
         }
       }
     },

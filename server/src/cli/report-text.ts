@@ -38,7 +38,8 @@ export function textReport(options: PairsOptions): PairReport {
         rows.push(pairRow(record, nameOf, scale, frame.system.kTKJPerMol));
         const key = record.advice ?? 'none';
         advice.set(key, (advice.get(key) ?? 0) + 1);
-        await pause();
+        const turn = pause();
+        if (turn !== undefined) await turn;
       }
       output.write('\n');
       output.write(

@@ -1,7 +1,7 @@
 import type { FindingCode } from '../../base/catalogue';
 import type { Related } from '../../base/finding';
 import { NOTICEABLE_KT } from '../advice';
-import type { Pair } from '../pair';
+import { evaluatePair, type Pair } from '../pair';
 import type { Basis } from '../reference';
 import { type RuleContext, shown } from './context';
 
@@ -16,11 +16,18 @@ const BASIS_WORDS: Readonly<Record<Basis, string>> = {
   none: 'nothing',
 };
 
+/** A pair to speak of; it is evaluated again for its sentence, so that millions need not be kept whole. */
+interface Noted {
+  readonly first: number;
+  readonly second: number;
+  readonly strengthKJPerMol: number;
+}
+
 /** Collects the pairs for which the point dipole does not hold, and reports them by fragment. */
 export class NearField {
   readonly #context: RuleContext;
-  readonly #near = new Map<number, Pair[]>();
-  readonly #edge = new Map<number, Pair[]>();
+  readonly #near = new Map<number, Noted[]>();
+  readonly #edge = new Map<number, Noted[]>();
 
   constructor(context: RuleContext) {
     this.#context = context;
@@ -33,12 +40,13 @@ export class NearField {
     else if (pair.regime === 'edge') this.#keep(this.#edge, pair);
   }
 
-  #keep(lists: Map<number, Pair[]>, pair: Pair): void {
-    for (const f of [pair.first, pair.second]) {
+  #keep(lists: Map<number, Noted[]>, { first, second, strengthKJPerMol }: Pair): void {
+    const noted: Noted = { first, second, strengthKJPerMol };
+    for (const f of [first, second]) {
       if (f >= this.#context.ownFragments) continue;
       const list = lists.get(f);
-      if (list === undefined) lists.set(f, [pair]);
-      else list.push(pair);
+      if (list === undefined) lists.set(f, [noted]);
+      else list.push(noted);
     }
   }
 
@@ -49,7 +57,7 @@ export class NearField {
     this.#reportCode('edge-field', this.#edge);
   }
 
-  #reportCode(code: FindingCode, lists: ReadonlyMap<number, Pair[]>): void {
+  #reportCode(code: FindingCode, lists: ReadonlyMap<number, Noted[]>): void {
     const context = this.#context;
     if (lists.size > MOST_FRAGMENTS) {
       this.#reportFrame(code, lists);
@@ -62,14 +70,12 @@ export class NearField {
         code,
         span,
         () => this.#sentence(worst!, f),
-        () => ({
-          related: others.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, f)),
-        }),
+        () => ({ related: others.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, f)) }),
       );
     }
   }
 
-  #reportFrame(code: FindingCode, lists: ReadonlyMap<number, Pair[]>): void {
+  #reportFrame(code: FindingCode, lists: ReadonlyMap<number, Noted[]>): void {
     const context = this.#context;
     const worst = [...new Set([...lists.values()].flat())].sort(byStrength);
     const where = code === 'near-field' ? 'does not hold' : 'is at its edge';
@@ -82,14 +88,15 @@ export class NearField {
     );
   }
 
-  #related(pair: Pair, f: number): Related[] {
+  #related(pair: Noted, f: number): Related[] {
     const other = pair.first === f ? pair.second : pair.first;
     const span = this.#context.placeOf(other) ?? this.#context.placeOf(f);
     return span === null ? [] : [{ ...span, message: this.#sentence(pair, f) }];
   }
 
-  #sentence(pair: Pair, f: number): string {
+  #sentence({ first, second }: Noted, f: number): string {
     const context = this.#context;
+    const pair = evaluatePair(context.frame.system, first, second);
     const { kTKJPerMol } = context.frame.system;
     const other = pair.first === f ? pair.second : pair.first;
     const names = `${context.nameOf(f)} and ${context.nameOf(other)}, R = ${shown(pair.distanceA)} Å`;
@@ -107,7 +114,7 @@ export class NearField {
   }
 }
 
-function byStrength(a: Pair, b: Pair): number {
+function byStrength(a: Noted, b: Noted): number {
   return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
 }
 
