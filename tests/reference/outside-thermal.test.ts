@@ -69,19 +69,22 @@ describe('two dipoles: series and limits', () => {
     expect(Math.abs(-average.averageKT - energy - 8 * C8 * x ** 8)).toBeLessThan(1.2 * -C8 * x ** 8 + 1e-14 * energy);
   });
 
-  it.each([1e-8, 1e-6, 1e-4])('at x = %d <U> is Keesom\'s -2/3 x^2 kT and F half of it (Keesom 1921)', (x) => {
+  it.each([1e-8, 1e-6, 1e-4])("at x = %d <U> is Keesom's -2/3 x^2 kT and F half of it (Keesom 1921)", (x) => {
     const average = dipoleDipoleAverage(x);
     expectRelative(average.averageKT, (-2 / 3) * x * x, x * x + 1e-12);
     expectRelative(average.freeEnergyKT, (-1 / 3) * x * x, x * x + 1e-12);
     expectRelative(average.leadingKT, (-2 / 3) * x * x, 1e-15);
   });
 
-  it.each([1e2, 5e2, 1e4, 1e6, 1e9])('at x = %d the pair is locked: <U> is 2 kT above -2x kT, F above it by ln 6x^2', (x) => {
-    // Four harmonic degrees of freedom of kT/2 each (equipartition).
-    const average = dipoleDipoleAverage(x);
-    expect(Math.abs(average.averageKT + 2 * x - 2)).toBeLessThan(1 / x + 1e-15 * x);
-    expect(Math.abs(average.freeEnergyKT + 2 * x - Math.log(6 * x * x))).toBeLessThan(1 / x + 1e-15 * x);
-  });
+  it.each([1e2, 5e2, 1e4, 1e6, 1e9])(
+    'at x = %d the pair is locked: <U> is 2 kT above -2x kT, F above it by ln 6x^2',
+    (x) => {
+      // Four harmonic degrees of freedom of kT/2 each (equipartition).
+      const average = dipoleDipoleAverage(x);
+      expect(Math.abs(average.averageKT + 2 * x - 2)).toBeLessThan(1 / x + 1e-15 * x);
+      expect(Math.abs(average.freeEnergyKT + 2 * x - Math.log(6 * x * x))).toBeLessThan(1 / x + 1e-15 * x);
+    },
+  );
 
   const GRID = Array.from({ length: 221 }, (_, i) => 10 ** (-8 + i * 0.05));
 
@@ -94,7 +97,7 @@ describe('two dipoles: series and limits', () => {
     }
   });
 
-  it('-2x kT < <U> < F < 0 at every coupling (Jensen\'s inequality)', () => {
+  it("-2x kT < <U> < F < 0 at every coupling (Jensen's inequality)", () => {
     for (const x of GRID) {
       const { averageKT, freeEnergyKT, alignment } = dipoleDipoleAverage(x);
       expect(averageKT).toBeGreaterThan(-2 * x);

@@ -47,15 +47,18 @@ describe('fixed arrangements', () => {
   it.each([
     ['in line', 0.36, along(1), along(1), 'head-to-tail'],
     ['side by side, antiparallel', 0.29, across(1), across(-1), 'antiparallel'],
-  ] as const)('two dipoles of 1 D %s are bound by kT at 300 K up to %d nm (Israelachvili, ch. 4, from memory)', (_, nm, first, second, name) => {
-    const kT = 8.31446261815324e-3 * 300;
-    const settings = { temperatureK: 300 };
-    const nearer = pairOfPoints(first, second, 10 * (nm - 0.005), settings);
-    const farther = pairOfPoints(first, second, 10 * (nm + 0.005), settings);
-    expect(nearer.arrangement).toBe(name);
-    expect(known(nearer.energyKJPerMol.dipoleDipole)).toBeLessThan(-kT);
-    expect(known(farther.energyKJPerMol.dipoleDipole)).toBeGreaterThan(-kT);
-  });
+  ] as const)(
+    'two dipoles of 1 D %s are bound by kT at 300 K up to %d nm (Israelachvili, ch. 4, from memory)',
+    (_, nm, first, second, name) => {
+      const kT = 8.31446261815324e-3 * 300;
+      const settings = { temperatureK: 300 };
+      const nearer = pairOfPoints(first, second, 10 * (nm - 0.005), settings);
+      const farther = pairOfPoints(first, second, 10 * (nm + 0.005), settings);
+      expect(nearer.arrangement).toBe(name);
+      expect(known(nearer.energyKJPerMol.dipoleDipole)).toBeLessThan(-kT);
+      expect(known(farther.energyKJPerMol.dipoleDipole)).toBeGreaterThan(-kT);
+    },
+  );
 
   it('charge and charge 1 A apart: 1389.35 kJ/mol, 332.06 kcal/mol (common practice, CODATA)', () => {
     const energy = known(pairOfPoints({ chargeE: 1 }, { chargeE: 1 }, 1).energyKJPerMol.chargeCharge);
@@ -72,7 +75,7 @@ describe('fixed arrangements', () => {
 describe('thermal averages', () => {
   describe('two HF of 1.92 D, 400 pm apart, 298 K: 5.37e-21 J (question page at vespr.org)', () => {
     const { thermal } = pairOfPoints(along(1.92), along(1.92), 4, { temperatureK: 298 });
-    it('is Keesom\'s leading term', () => {
+    it("is Keesom's leading term", () => {
       expect(Math.abs((known(thermal.leadingKJPerMol) * JOULE_PER_KJ_MOL) / -5.37e-21 - 1)).toBeLessThan(2e-3);
     });
     it('is where the leading term no longer holds: the coupling is 1.400, the full average a seventh smaller', () => {
@@ -96,12 +99,15 @@ describe('thermal averages', () => {
     ['HCl', 1.03, 18.6],
     ['NH3', 1.5, 84],
     ['H2O', 1.84, 190],
-  ])('%s of %d D at 293 K: mean energy %d e-60 erg cm^6/R^6 (London 1937, Trans. Faraday Soc. 33, 8, from memory)', (_, sizeD, printed) => {
-    const distanceA = 11;
-    const { thermal } = pairOfPoints(along(sizeD), across(sizeD), distanceA, { temperatureK: 293 });
-    const coefficient = inErgCm6(-known(thermal.averageKJPerMol) * distanceA ** 6);
-    expect(Math.abs(coefficient / printed - 1)).toBeLessThan(0.02);
-  });
+  ])(
+    '%s of %d D at 293 K: mean energy %d e-60 erg cm^6/R^6 (London 1937, Trans. Faraday Soc. 33, 8, from memory)',
+    (_, sizeD, printed) => {
+      const distanceA = 11;
+      const { thermal } = pairOfPoints(along(sizeD), across(sizeD), distanceA, { temperatureK: 293 });
+      const coefficient = inErgCm6(-known(thermal.averageKJPerMol) * distanceA ** 6);
+      expect(Math.abs(coefficient / printed - 1)).toBeLessThan(0.02);
+    },
+  );
 
   it.each([
     ['Ne', 0, 0, 0.5],
@@ -112,21 +118,27 @@ describe('thermal averages', () => {
     ['CH3Cl', 1.87, 101, 0.6],
     ['NH3', 1.47, 38, 0.6],
     ['H2O', 1.85, 96, 0.6],
-  ])('%s of %d D: orientation column %d e-79 J m^6 (Israelachvili, table of van der Waals energies, from memory)', (_, sizeD, printed, room) => {
-    // The column is a free energy (a third, not two thirds), and agrees with its dipoles at 293 K rather than at 298 K.
-    const distanceA = 11;
-    const { thermal } = pairOfPoints(along(sizeD), along(sizeD), distanceA, { temperatureK: 293 });
-    const coefficient = inJouleM6(-known(thermal.freeEnergyKJPerMol) * distanceA ** 6);
-    expect(Math.abs(coefficient - printed)).toBeLessThanOrEqual(room);
-  });
+  ])(
+    '%s of %d D: orientation column %d e-79 J m^6 (Israelachvili, table of van der Waals energies, from memory)',
+    (_, sizeD, printed, room) => {
+      // The column is a free energy (a third, not two thirds), and agrees with its dipoles at 293 K rather than at 298 K.
+      const distanceA = 11;
+      const { thermal } = pairOfPoints(along(sizeD), along(sizeD), distanceA, { temperatureK: 293 });
+      const coefficient = inJouleM6(-known(thermal.freeEnergyKJPerMol) * distanceA ** 6);
+      expect(Math.abs(coefficient - printed)).toBeLessThanOrEqual(room);
+    },
+  );
 
   it.each([
     ['HCl–HI', 1.08, 0.38, 1],
     ['H2O–Ne', 1.85, 0, 0],
     ['H2O–CH4', 1.85, 0, 0],
-  ])('%s: orientation %d D with %d D gives %d e-79 J m^6 (the same table, unlike pairs)', (_, first, second, printed) => {
-    const { thermal } = pairOfPoints(along(first), along(second), 11, { temperatureK: 293 });
-    const coefficient = inJouleM6(-known(thermal.freeEnergyKJPerMol) * 11 ** 6);
-    expect(Math.abs(coefficient - printed)).toBeLessThanOrEqual(0.5);
-  });
+  ])(
+    '%s: orientation %d D with %d D gives %d e-79 J m^6 (the same table, unlike pairs)',
+    (_, first, second, printed) => {
+      const { thermal } = pairOfPoints(along(first), along(second), 11, { temperatureK: 293 });
+      const coefficient = inJouleM6(-known(thermal.freeEnergyKJPerMol) * 11 ** 6);
+      expect(Math.abs(coefficient - printed)).toBeLessThanOrEqual(0.5);
+    },
+  );
 });

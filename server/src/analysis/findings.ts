@@ -34,8 +34,8 @@ export class FileFindings {
     const context = new RuleContext(this.#file, frame, this.#findings, this.#said);
     reportElectronParity(context);
     reportResidues(context);
-    // Distances in the wrong unit would bring a finding for every atom; the unit is the one cause.
-    if (reportLengthUnit(context)) {
+    // Distances in the wrong unit would bring a finding for every atom, and fragments that overlap touch: one cause each.
+    if (reportLengthUnit(context) || frame.problems.count('fragments-overlap') > 0) {
       yield* pairsOf(frame.system);
       return;
     }
@@ -43,7 +43,8 @@ export class FileFindings {
     reportChargeSum(context);
     reportDipoleSum(context);
     reportDipolesAgainstCharges(context);
-    reportFragmentFacts(context);
+    // A fragment that could not be read whole is of no kind that anything should be said of.
+    if (!this.#hasErrors(frame)) reportFragmentFacts(context);
     reportSmallCell(context);
     const nearField = new NearField(context);
     const clashing = new Set<string>();
@@ -57,6 +58,13 @@ export class FileFindings {
     }
     reportJoined(context, clashing);
     nearField.report();
+  }
+
+  #hasErrors({ model, problems }: FrameAnalysis): boolean {
+    if (problems.list().some((problem) => problem.severity === 'error')) return true;
+    const { starts } = this.#file.lines;
+    const [from, to] = [starts[model.tree.firstLine]!, starts[model.tree.endLine]!];
+    return this.#file.problems.some(({ severity, start }) => severity === 'error' && start >= from && start < to);
   }
 
   /** Everything found so far, in the order of the text, without what the file does not want to hear. */

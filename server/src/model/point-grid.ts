@@ -30,8 +30,8 @@ export class NeighbourBuffer {
 const CELLS_PER_RADIUS = 2;
 const MOST_CELLS_PER_POINT = 4;
 /** Candidates a point may have on average before the points count as too dense to tell neighbours apart. */
-const MOST_CANDIDATES_PER_POINT = 5000;
-const ALWAYS_FEW_ENOUGH = 4e6;
+const MOST_CANDIDATES_PER_POINT = 1500;
+const ALWAYS_FEW_ENOUGH = 1e6;
 
 /**
  * Points sorted into cells of about half a search radius, so that the neighbours of one are found among a few. Works in any

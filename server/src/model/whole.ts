@@ -1,6 +1,6 @@
 import { AtomFlag, type AtomTable } from '../formats/tree';
 import { type Cell, imageResult, minimumImage } from './cell';
-import type { ClosePairs } from './close-pairs';
+import { bondLimitA, type ClosePairs } from './close-pairs';
 import type { FragmentSet } from './fragment-set';
 
 /** Positions with every fragment made whole across the periodic boundary. */
@@ -12,6 +12,8 @@ export interface WholePositions {
 
 /** A step between images of one atom longer than this shows an endless fragment, Å. */
 const IMAGE_STEP_A = 0.5;
+/** No covalent bond is longer, Å. */
+const LONGEST_BOND_A = 4;
 /** Fragments up to this size place an unbonded member beside its nearest placed one; larger ones beside the first. */
 const NEAREST_SEARCH_LIMIT = 200;
 
@@ -33,6 +35,7 @@ export function makeWhole(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs,
     placed[atom] = 1;
   };
   const isPlaceable = (atom: number) => (atoms.flags[atom]! & AtomFlag.noPosition) === 0;
+  markSelfBonded(atoms, set, pairs, cell, endless);
   for (let f = 0; f < set.count; f++) {
     const members = set.members.subarray(set.starts[f]!, set.starts[f + 1]!);
     const order: number[] = [];
@@ -80,6 +83,43 @@ export function makeWhole(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs,
     const d = [0, 1, 2].map((a) => positionA[3 * other + a]! - positionA[3 * atom + a]!);
     minimumImage(cell!, d[0]!, d[1]!, d[2]!, image);
     return Math.hypot(...d) > Math.hypot(...image.vectorA) + IMAGE_STEP_A;
+  }
+}
+
+/**
+ * Marks fragments in a cell so narrow that an atom is bonded to its own image, or to two images of one neighbour: the list of close
+ * pairs holds only the nearest image, so no ring of bonds would show it.
+ */
+function markSelfBonded(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, cell: Cell, endless: Uint8Array): void {
+  const { reducedA, periodic } = cell;
+  const steps: (readonly [number, number, number])[] = [];
+  for (const i of periodic[0] ? [-1, 0, 1] : [0]) {
+    for (const j of periodic[1] ? [-1, 0, 1] : [0]) {
+      for (const k of periodic[2] ? [-1, 0, 1] : [0]) {
+        if (i === 0 && j === 0 && k === 0) continue;
+        const shift = [0, 1, 2].map((a) => i * reducedA[a]! + j * reducedA[3 + a]! + k * reducedA[6 + a]!);
+        if (Math.hypot(...shift) < 2 * LONGEST_BOND_A) steps.push(shift as unknown as [number, number, number]);
+      }
+    }
+  }
+  if (steps.length === 0) return;
+  const bonds = (z1: number, z2: number, x: number, y: number, z: number) => Math.hypot(x, y, z) <= bondLimitA(z1, z2);
+  const image = imageResult();
+  for (let i = 0; i < atoms.count; i++) {
+    const f = set.ofAtom[i]!;
+    const z = atoms.element[i]!;
+    if (f >= 0 && z > 0 && steps.some((shift) => bonds(z, z, ...shift))) endless[f] = 1;
+  }
+  for (let k = 0; k < pairs.count; k++) {
+    const [i, j] = [pairs.first[k]!, pairs.second[k]!];
+    const f = set.ofAtom[i]!;
+    if (!pairs.bonded[k] || f < 0 || f !== set.ofAtom[j]) continue;
+    const d = [0, 1, 2].map((a) => atoms.positionA[3 * j + a]! - atoms.positionA[3 * i + a]!);
+    minimumImage(cell, d[0]!, d[1]!, d[2]!, image);
+    const [x, y, z] = image.vectorA as unknown as [number, number, number];
+    if (steps.some((shift) => bonds(atoms.element[i]!, atoms.element[j]!, x + shift[0], y + shift[1], z + shift[2]))) {
+      endless[f] = 1;
+    }
   }
 }
 

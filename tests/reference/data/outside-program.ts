@@ -1,12 +1,7 @@
 import { FileFindings } from '../../../server/src/analysis/findings';
 import { FileAnalysis, type FrameAnalysis } from '../../../server/src/analysis/frame-analysis';
 import { type AnalysisSettings, DEFAULT_SETTINGS } from '../../../server/src/analysis/settings';
-import {
-  type FragmentRecord,
-  fragmentRecord,
-  type PairRecord,
-  pairRecord,
-} from '../../../server/src/features/records';
+import { type FragmentRecord, fragmentRecord, type PairRecord, pairRecord } from '../../../server/src/features/records';
 import { parse } from '../../../server/src/formats/parse';
 import type { CoordinateTree, Language } from '../../../server/src/formats/tree';
 import { snapshotOf } from '../../../server/src/text/snapshot';

@@ -21,7 +21,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 3,
     centresA: 2.909,
     shortestA: 1.9516,
-    closest: { atoms: [3, 4], distanceA: 1.95159, ratio: 0.717498 },
+    closest: { atoms: [3, 4], distanceA: 1.951585, ratio: 0.717495 },
     atoms: [
       ['O', -1.551007, -0.11452, 0],
       ['H', -1.934259, 0.762503, 0],
@@ -36,7 +36,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 4,
     centresA: 3.2086,
     shortestA: 2.1493,
-    closest: { atoms: [1, 7], distanceA: 2.50424, ratio: 0.910634 },
+    closest: { atoms: [4, 7], distanceA: 2.14925, ratio: 0.895521 },
     atoms: [
       ['N', -1.578718, -0.046611, 0],
       ['H', -2.158621, 0.136396, -0.809565],
@@ -53,7 +53,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 5,
     centresA: 2.9926,
     shortestA: 1.6703,
-    closest: { atoms: [3, 10], distanceA: 1.67033, ratio: 0.614092 },
+    closest: { atoms: [3, 10], distanceA: 1.670324, ratio: 0.61409 },
     atoms: [
       ['C', -1.888896, -0.179692, 0],
       ['O', -1.49328, 1.073689, 0],
@@ -72,7 +72,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 5,
     centresA: 3.7178,
     shortestA: 3.1606,
-    closest: { atoms: [1, 10], distanceA: 3.50757, ratio: 1.209507 },
+    closest: { atoms: [1, 6], distanceA: 3.718322, ratio: 1.093624 },
     atoms: [
       ['C', 0, -0.00014, 1.859161],
       ['H', -0.888551, 0.51306, 1.494685],
@@ -91,7 +91,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 6,
     centresA: 4.4217,
     shortestA: 2.8318,
-    closest: { atoms: [1, 9], distanceA: 2.83182, ratio: 0.976489 },
+    closest: { atoms: [1, 9], distanceA: 2.831824, ratio: 0.976491 },
     atoms: [
       ['C', 0, -0.667578, -2.124659],
       ['C', 0, 0.667578, -2.124659],
@@ -110,7 +110,7 @@ export const S22_DIMERS: readonly Dimer[] = [
     split: 12,
     centresA: 3.7161,
     shortestA: 2.9764,
-    closest: { atoms: [5, 16], distanceA: 2.97636, ratio: 1.026331 },
+    closest: { atoms: [5, 16], distanceA: 2.976409, ratio: 1.026348 },
     atoms: [
       ['C', 1.393218, 0.036291, -0.63328],
       ['C', 0.728036, -1.188402, -0.633302],

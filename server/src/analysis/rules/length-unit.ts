@@ -18,7 +18,7 @@ export function reportLengthUnit(context: RuleContext): boolean {
   if (atoms.length < 2) return false;
   if (model.pairs.tooDense || typicalDistanceIsTiny(model.pairs, atoms.length)) {
     const scaled = scaledPairs(model, NANOMETRE_A);
-    if (!scaled.tooDense && scaled.bonded.includes(1)) {
+    if (!scaled.tooDense && scaled.bonded.includes(1) && !typicalDistanceIsTiny(scaled, atoms.length)) {
       context.findings.add(
         'unit-nanometre',
         context.headSpan(),
