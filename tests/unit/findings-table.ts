@@ -60,14 +60,22 @@ const withDipole = (dipole: string, unit = 'D') =>
 export const FINDING_CASES: readonly FindingCase[] = [
   { fact: 'an empty file holds no frame', text: '', expected: ['no-frame: '] },
   { fact: 'a text without atoms holds no frame', text: 'hello\nworld\n', expected: ['no-frame: hello'] },
-  { fact: 'NUL bytes are no text', text: 'PNG\u0000\u0001\u0002 \u0000\n', expected: ['not-text: PNG\u0000\u0001\u0002 \u0000'] },
+  {
+    fact: 'NUL bytes are no text',
+    text: 'PNG\u0000\u0001\u0002 \u0000\n',
+    expected: ['not-text: PNG\u0000\u0001\u0002 \u0000'],
+  },
   {
     fact: 'a count too large is said at the count',
     text: waters('').replace(/^6/, '7'),
     expected: ['count-wrong: 7'],
   },
   { fact: 'a count too small is said at the count', text: waters('').replace(/^6/, '4'), expected: ['count-wrong: 4'] },
-  { fact: 'a count that is no number is said at its line', text: waters('').replace(/^6/, 'six'), expected: ['count-wrong: six'] },
+  {
+    fact: 'a count that is no number is said at its line',
+    text: waters('').replace(/^6/, 'six'),
+    expected: ['count-wrong: six'],
+  },
   {
     fact: 'missing count and comment lines are said at the first atom',
     text: `${WATER.join('\n')}\n`,
@@ -88,7 +96,11 @@ export const FINDING_CASES: readonly FindingCase[] = [
     text: waters('').replace('H -0.757 0.586 8', 'H -0.757 0.586'),
     expected: ['field-missing: H -0.757 0.586'],
   },
-  { fact: 'an unknown element is underlined', text: waters('').replace('O 0 0 8', 'Ox 0 0 8'), expected: ['element-unknown: Ox'] },
+  {
+    fact: 'an unknown element is underlined',
+    text: waters('').replace('O 0 0 8', 'Ox 0 0 8'),
+    expected: ['element-unknown: Ox'],
+  },
   {
     fact: 'Properties that describe no atom line are underlined',
     text: xyz('Properties=species:S:1:pos:R:2', ...WATER),
@@ -105,8 +117,17 @@ export const FINDING_CASES: readonly FindingCase[] = [
     text: waters('fragment_charges="0 0 0"'),
     expected: ['array-length: "0 0 0"'],
   },
-  { fact: 'a value outside its range is underlined', text: waters('relative_permittivity=0.3'), expected: ['value-invalid: 0.3'] },
-  { fact: 'an unknown unit is underlined', text: waters('dipole_unit=debeye'), expected: ['unit-unknown: debeye'], atLeast: ['unit-unknown'] },
+  {
+    fact: 'a value outside its range is underlined',
+    text: waters('relative_permittivity=0.3'),
+    expected: ['value-invalid: 0.3'],
+  },
+  {
+    fact: 'an unknown unit is underlined',
+    text: waters('dipole_unit=debeye'),
+    expected: ['unit-unknown: debeye'],
+    atLeast: ['unit-unknown'],
+  },
   {
     fact: 'a selector that matches nothing is underlined',
     language: 'pdb',
@@ -118,7 +139,11 @@ export const FINDING_CASES: readonly FindingCase[] = [
     text: waters('').replace('kind_axes="H2O:O>H"', 'kind_axes="H2O:O>H CH4:C>H"'),
     expected: ['selector-unmatched: CH4'],
   },
-  { fact: 'a key given twice is underlined the second time', text: waters('temperature=300 temperature=310'), expected: ['key-repeated: temperature'] },
+  {
+    fact: 'a key given twice is underlined the second time',
+    text: waters('temperature=300 temperature=310'),
+    expected: ['key-repeated: temperature'],
+  },
   {
     fact: 'a key given on two REMARK lines of a selector names both lines',
     language: 'pdb',
@@ -145,8 +170,12 @@ export const FINDING_CASES: readonly FindingCase[] = [
     fact: 'two waters with oxygens 1.3 Å apart clash',
     text: xyz(
       `${KINDS} fragment_atoms="1-3 4-6"`,
-      'O 0 0 0', 'H 0.757 -0.586 0', 'H -0.757 -0.586 0',
-      'O 0 1.3 0', 'H 0.757 1.886 0', 'H -0.757 1.886 0',
+      'O 0 0 0',
+      'H 0.757 -0.586 0',
+      'H -0.757 -0.586 0',
+      'O 0 1.3 0',
+      'H 0.757 1.886 0',
+      'H -0.757 1.886 0',
     ),
     expected: ['clash: O 0 1.3 0'],
   },
@@ -167,16 +196,53 @@ export const FINDING_CASES: readonly FindingCase[] = [
   },
   {
     fact: 'a pair at the edge is information',
-    text: xyz(KINDS, 'O 0 0 0', 'H 0.757 0.586 0', 'H -0.757 0.586 0', 'O 0 3.6 0', 'H 0.757 4.186 0', 'H -0.757 4.186 0'),
+    text: xyz(
+      KINDS,
+      'O 0 0 0',
+      'H 0.757 0.586 0',
+      'H -0.757 0.586 0',
+      'O 0 3.6 0',
+      'H 0.757 4.186 0',
+      'H -0.757 4.186 0',
+    ),
     expected: ['edge-field: O 0 0 0', 'edge-field: O 0 3.6 0'],
   },
-  { fact: 'a dipole in a.u. called D is said', text: withDipole('0 0 -0.7825'), expected: ['dipole-unit: 0 0 -0.7825'] },
-  { fact: 'a dipole drawn as the chemists do is said', text: withDipole('0 0 1.989'), expected: ['dipole-reversed: 0 0 1.989'] },
-  { fact: 'a dipole of another orientation is said', text: withDipole('1.989 0 0'), expected: ['dipole-rotated: 1.989 0 0'] },
-  { fact: 'a dipole half as large again is said', text: withDipole('0 0 -3.1'), expected: ['dipole-mismatch: 0 0 -3.1'] },
-  { fact: 'a dipole 30 % off is information', text: withDipole('0 0 -2.59'), expected: ['dipole-deviation: 0 0 -2.59'] },
-  { fact: 'an odd multiplicity for an odd number of electrons is said', text: waters('charge=1 multiplicity=1'), expected: [], atLeast: ['electron-parity'] },
-  { fact: 'charges that miss the total are said', text: waters('fragment_charges="0 0" total_charge=1'), expected: ['charge-sum: 1'] },
+  {
+    fact: 'a dipole in a.u. called D is said',
+    text: withDipole('0 0 -0.7825'),
+    expected: ['dipole-unit: 0 0 -0.7825'],
+  },
+  {
+    fact: 'a dipole drawn as the chemists do is said',
+    text: withDipole('0 0 1.989'),
+    expected: ['dipole-reversed: 0 0 1.989'],
+  },
+  {
+    fact: 'a dipole of another orientation is said',
+    text: withDipole('1.989 0 0'),
+    expected: ['dipole-rotated: 1.989 0 0'],
+  },
+  {
+    fact: 'a dipole half as large again is said',
+    text: withDipole('0 0 -3.1'),
+    expected: ['dipole-mismatch: 0 0 -3.1'],
+  },
+  {
+    fact: 'a dipole 30 % off is information',
+    text: withDipole('0 0 -2.59'),
+    expected: ['dipole-deviation: 0 0 -2.59'],
+  },
+  {
+    fact: 'an odd multiplicity for an odd number of electrons is said',
+    text: waters('charge=1 multiplicity=1'),
+    expected: [],
+    atLeast: ['electron-parity'],
+  },
+  {
+    fact: 'charges that miss the total are said',
+    text: waters('fragment_charges="0 0" total_charge=1'),
+    expected: ['charge-sum: 1'],
+  },
   {
     fact: 'the dipole of the frame beside another sum is information',
     text: waters('dipole="0 0 1"'),
@@ -190,15 +256,25 @@ export const FINDING_CASES: readonly FindingCase[] = [
   },
   {
     fact: 'coordinates in nanometres are said once',
-    text: xyz('', 'O 0 0 0', 'H 0.0757 0.0586 0', 'H -0.0757 0.0586 0', 'O 0 0 0.8', 'H 0.0757 0.0586 0.8', 'H -0.0757 0.0586 0.8'),
+    text: xyz(
+      '',
+      'O 0 0 0',
+      'H 0.0757 0.0586 0',
+      'H -0.0757 0.0586 0',
+      'O 0 0 0.8',
+      'H 0.0757 0.0586 0.8',
+      'H -0.0757 0.0586 0.8',
+    ),
     expected: ['unit-nanometre: '],
   },
   {
     fact: 'a residue without a side-chain atom is said',
     language: 'pdb',
     text: pdb(
-      pdbAtom(1, 'N', 'ALA', 1, [0, 0, 0], 'N'), pdbAtom(2, 'CA', 'ALA', 1, [1.46, 0, 0], 'C'),
-      pdbAtom(3, 'C', 'ALA', 1, [2, 1.42, 0], 'C'), pdbAtom(4, 'O', 'ALA', 1, [1.25, 2.39, 0], 'O'),
+      pdbAtom(1, 'N', 'ALA', 1, [0, 0, 0], 'N'),
+      pdbAtom(2, 'CA', 'ALA', 1, [1.46, 0, 0], 'C'),
+      pdbAtom(3, 'C', 'ALA', 1, [2, 1.42, 0], 'C'),
+      pdbAtom(4, 'O', 'ALA', 1, [1.25, 2.39, 0], 'O'),
       pdbAtom(5, 'H', 'ALA', 1, [-0.5, -0.87, 0], 'H'),
     ),
     expected: [`atoms-missing: ${pdbAtom(1, 'N', 'ALA', 1, [0, 0, 0], 'N').trimEnd()}`],
@@ -208,12 +284,17 @@ export const FINDING_CASES: readonly FindingCase[] = [
     language: 'pdb',
     text: pdb(
       'REMARK  99 fragment=*:HOH:* dipole_size=1.855',
-      pdbAtom(1, 'O', 'HOH', 1, [0, 0, 0], 'O'), pdbAtom(2, 'O', 'HOH', 2, [0, 0, 8], 'O'),
+      pdbAtom(1, 'O', 'HOH', 1, [0, 0, 0], 'O'),
+      pdbAtom(2, 'O', 'HOH', 2, [0, 0, 8], 'O'),
     ),
     expected: [`hydrogens-missing: ${pdbAtom(1, 'O', 'HOH', 1, [0, 0, 0], 'O').trimEnd()}`],
   },
   { fact: 'a misspelt key is information', text: waters('temprature=300'), expected: ['key-misspelt: temprature'] },
-  { fact: 'a list that other readers reject is information', text: waters('fragment_charges=[0,0,]'), expected: ['value-unportable: [0,0,]'] },
+  {
+    fact: 'a list that other readers reject is information',
+    text: waters('fragment_charges=[0,0,]'),
+    expected: ['value-unportable: [0,0,]'],
+  },
   {
     fact: 'a kind without a dipole is information, once a kind',
     text: xyz('', ...WATER, ...FAR_WATER),
@@ -224,7 +305,11 @@ export const FINDING_CASES: readonly FindingCase[] = [
     text: xyz('Properties=species:S:1:pos:R:3:charge:R:1', 'O 0 0 0 -1.2', 'H 0.96 0 0 0.2'),
     expected: ['dipole-origin: O 0 0 0 -1.2'],
   },
-  { fact: 'a lone sodium without a charge is information', text: xyz(KINDS, ...WATER, 'Na 0 0 8'), expected: ['ion-charge-missing: Na 0 0 8'] },
+  {
+    fact: 'a lone sodium without a charge is information',
+    text: xyz(KINDS, ...WATER, 'Na 0 0 8'),
+    expected: ['ion-charge-missing: Na 0 0 8'],
+  },
   {
     fact: 'alternate locations left out are information',
     language: 'pdb',
@@ -255,6 +340,14 @@ export const FINDING_CASES: readonly FindingCase[] = [
     expected: ['fragment-endless: C 0 0 0'],
     atLeast: ['fragment-endless'],
   },
-  { fact: 'columns after z of a plain file are a hint', text: waters('').replace('O 0 0 8', 'O 0 0 8 0.5 7'), expected: ['extra-columns: 0.5 7'] },
-  { fact: 'atoms in no declared fragment are a hint', text: waters('fragment_atoms="1-3"'), expected: ['atoms-ungrouped: "1-3"'] },
+  {
+    fact: 'columns after z of a plain file are a hint',
+    text: waters('').replace('O 0 0 8', 'O 0 0 8 0.5 7'),
+    expected: ['extra-columns: 0.5 7'],
+  },
+  {
+    fact: 'atoms in no declared fragment are a hint',
+    text: waters('fragment_atoms="1-3"'),
+    expected: ['atoms-ungrouped: "1-3"'],
+  },
 ];

@@ -16,7 +16,10 @@ describe('each finding on its own line', () => {
 
   it('leaves no code of the catalogue without a case', () => {
     const shown = new Set(
-      FINDING_CASES.flatMap(({ expected, atLeast = [] }) => [...expected.map((line) => line.split(':')[0]), ...atLeast]),
+      FINDING_CASES.flatMap(({ expected, atLeast = [] }) => [
+        ...expected.map((line) => line.split(':')[0]),
+        ...atLeast,
+      ]),
     );
     expect(FINDING_CODES.filter((code) => !shown.has(code))).toEqual([]);
   });
@@ -47,7 +50,15 @@ describe('fixes', () => {
 
   it('exist for count, element, key, length, unit and direction', () => {
     const codes = new Set(fixable.map(({ finding }) => finding.code));
-    for (const code of ['count-wrong', 'element-unknown', 'key-misspelt', 'array-length', 'dipole-unit', 'dipole-reversed', 'dipole-rotated'] as const) {
+    for (const code of [
+      'count-wrong',
+      'element-unknown',
+      'key-misspelt',
+      'array-length',
+      'dipole-unit',
+      'dipole-reversed',
+      'dipole-rotated',
+    ] as const) {
       expect(codes).toContain(code);
     }
   });

@@ -32,7 +32,9 @@ function sourceFiles(folder: string): string[] {
 
 function importsOf(file: string): string[] {
   const text = readFileSync(file, 'utf8');
-  return [...text.matchAll(/^(?:import|export)\b[^;]*?from '([^']+)'|\bimport\('([^']+)'\)/gm)].map((m) => m[1] ?? m[2]!);
+  return [...text.matchAll(/^(?:import|export)\b[^;]*?from '([^']+)'|\bimport\('([^']+)'\)/gm)].map(
+    (m) => m[1] ?? m[2]!,
+  );
 }
 
 const files = sourceFiles(SOURCE);
@@ -50,7 +52,10 @@ describe('imports run one way', () => {
         const other = relative(SOURCE, resolve(dirname(join(SOURCE, name)), target)).split(sep)[0]!;
         expect([folder, ...folders], `${name} imports ${target}`).toContain(other);
       } else {
-        expect(packages.some((allowed) => target.startsWith(allowed)), `${name} imports ${target}`).toBe(true);
+        expect(
+          packages.some((allowed) => target.startsWith(allowed)),
+          `${name} imports ${target}`,
+        ).toBe(true);
       }
     }
   });

@@ -5,9 +5,9 @@ import { dipoleUnitEA, ENERGY_UNITS, energyUnitsPerKJPerMol } from '../../server
 
 /** Numbers with units: what each unit is worth, and what is refused. */
 
-const DEBYE_E_A = 0.20819433442462576;
 const BOHR_A = 0.529177210544;
 const E_C = 1.602176634e-19;
+const DEBYE_E_A = 1e-21 / 299792458 / (E_C * 1e-10);
 
 describe('a quantity', () => {
   test.each<[string, Dimension, number]>([
@@ -81,11 +81,9 @@ describe('a quantity', () => {
     ['1e999', 'lengthA', 'syntax'],
     ['1/0 nm', 'lengthA', 'syntax'],
     ['', 'lengthA', 'syntax'],
-    ['()', 'lengthA', 'syntax'],
     ['(1 nm', 'lengthA', 'syntax'],
     ['1 nm)', 'lengthA', 'syntax'],
     ['1 +', 'lengthA', 'syntax'],
-    ['* 2', 'lengthA', 'syntax'],
     ['1 , 2', 'lengthA', 'syntax'],
     ['1 nm; 2 nm', 'lengthA', 'syntax'],
     ['x = 1', 'lengthA', 'syntax'],
@@ -118,6 +116,8 @@ describe('a quantity', () => {
     '1:1e9',
     'pwDebye',
     '3!',
+    '()',
+    '* 2',
   ])('%s never reaches an evaluator', (text) => {
     for (const dimension of ['lengthA', 'dipoleEA', 'temperatureK', 'energyKJPerMol', 'volumeA3'] as const) {
       expect(readQuantity(text, dimension).ok).toBe(false);
@@ -130,7 +130,8 @@ describe('a quantity', () => {
     expect(readQuantity(`${'('.repeat(8)}1 nm${')'.repeat(8)}`, 'lengthA').ok).toBe(true);
     expect(readQuantity(`${'('.repeat(9)}1 nm${')'.repeat(9)}`, 'lengthA').ok).toBe(false);
     expect(readQuantity(`${'-'.repeat(70)}1 nm`, 'lengthA').ok).toBe(false);
-    expect(readQuantity(`1 nm${' * 1'.repeat(19)}`, 'lengthA').ok).toBe(false);
+    expect(readQuantity(`1 nm${'*1'.repeat(19)}`, 'lengthA').ok).toBe(true);
+    expect(readQuantity(`1 nm${'*1'.repeat(20)}`, 'lengthA').ok).toBe(false);
     expect(readQuantity('2^12 nm', 'lengthA')).toMatchObject({ ok: true });
     expect(readQuantity('2^13 nm', 'lengthA')).toMatchObject({ ok: false, kind: 'syntax' });
     expect(readQuantity('9^9^9 nm', 'lengthA').ok).toBe(false);
@@ -139,7 +140,12 @@ describe('a quantity', () => {
   });
 
   test('takes no more than milliseconds for the worst that is let in', () => {
-    const worst = ['1 nm^12/nm^11'.repeat(6), `${'(1+'.repeat(8)}1${')'.repeat(8)} nm`, '9^12^12 nm', 'm m m m m m m m m m m m'];
+    const worst = [
+      '1 nm^12/nm^11'.repeat(6),
+      `${'(1+'.repeat(8)}1${')'.repeat(8)} nm`,
+      '9^12^12 nm',
+      'm m m m m m m m m m m m',
+    ];
     for (const text of worst) {
       readQuantity(text, 'lengthA');
       const start = performance.now();

@@ -45,6 +45,9 @@ const LENIENT = pairTable((z1, z2) => {
   return hydrogen || isMetal(z1) || isMetal(z2) ? 1 : 0;
 });
 
+/** Contacts this near to each other are equal but for rounding, and the first by atom number stands. */
+const TIE = 1 - 1e-12;
+
 /** No hydrogen is shared over a longer distance, Å². */
 const SHARED_REACH2 = 1.5 * 1.5;
 
@@ -94,7 +97,7 @@ export function scanAtoms(
       const close = ratio2 < CLASH_RATIO * CLASH_RATIO;
       if (ratio2 >= best2 && !close) continue;
       if (ghost[i] || ghost[j] || near?.has(system.atomNumbers[j]!)) continue;
-      if (ratio2 < best2) {
+      if (ratio2 < best2 * TIE) {
         best2 = ratio2;
         closest1 = i;
         closest2 = j;

@@ -63,10 +63,9 @@ export async function dimersCommand(
   await mkdir(options.out, { recursive: true }).catch((error: NodeJS.ErrnoException) => {
     throw new UsageError(`${options.out}: cannot be made: ${error.message}`);
   });
-  for (const file of planned) {
-    await writeWhole(file);
-    process.stdout.write(`${file.path}\n`);
-  }
+  for (const file of planned) await writeWhole(file);
+  // Told when all is done: whoever stops listening must not stop the writing.
+  process.stdout.write(planned.map(({ path }) => `${path}\n`).join(''));
   const count = `${planned.length} file${planned.length === 1 ? '' : 's'}`;
   process.stderr.write(
     `polewise: ${count} written to ${options.out}${refused.length > 0 ? `, ${refused.length} refused` : ''}\n`,

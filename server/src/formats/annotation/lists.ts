@@ -34,7 +34,7 @@ export function listWords(snapshot: Snapshot, entry: Entry): Span[] {
   const end = entry.inner.end;
   let i = entry.inner.start;
   while (i < end) {
-    if (QUOTES.has(bytes[i]!) && entry.form === 'bracketed') {
+    if (QUOTES.has(bytes[i]!) && entry.form !== 'quoted') {
       const quote = bytes[i]!;
       const start = ++i;
       while (i < end && bytes[i] !== quote) i++;
