@@ -4,7 +4,7 @@ import { FileAnalysis, type FrameAnalysis } from '../../server/src/analysis/fram
 import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Finding } from '../../server/src/base/finding';
 import { parse } from '../../server/src/formats/parse';
-import { type AtomField, AtomFlag, type FrameTree } from '../../server/src/formats/tree';
+import type { FrameTree } from '../../server/src/formats/tree';
 import { DEBYE_E_A } from '../../server/src/physics/constants';
 import { snapshotOf } from '../../server/src/text/snapshot';
 
@@ -59,11 +59,6 @@ function analyse(content: string): { frames: FrameAnalysis[]; findings: Finding[
 
 const found = (content: string) =>
   analyse(content).findings.map(({ code, start, end }) => [code, content.slice(start, end)]);
-const residuesOf = (content: string) =>
-  only(content).residues!.map(({ chain, name, number, insertion, atoms }) => [
-    `${chain}:${name}:${number}${insertion}`,
-    atoms.length,
-  ]);
 const fragmentSizes = (content: string) => {
   const { fragments } = analyse(content).frames[0]!.model;
   return Array.from({ length: fragments.count }, (_, f) => fragments.starts[f + 1]! - fragments.starts[f]!);

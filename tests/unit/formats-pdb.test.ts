@@ -5,7 +5,6 @@ import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Finding } from '../../server/src/base/finding';
 import { parse } from '../../server/src/formats/parse';
 import { type AtomField, AtomFlag, type FrameTree } from '../../server/src/formats/tree';
-import { DEBYE_E_A } from '../../server/src/physics/constants';
 import { snapshotOf } from '../../server/src/text/snapshot';
 
 /** Every line ends with a line feed. */

@@ -5,7 +5,7 @@ import type { Pair } from '../analysis/pair';
 import type { AnalysisRequest } from '../analysis/settings';
 import type { Part } from '../analysis/system';
 import { FindingCollector } from '../base/finding';
-import type { FragmentName } from '../features/records';
+import { type FragmentName, type PairRecord, pairRecord } from '../features/records';
 import { parseSelector, selectorMatches } from '../formats/pdb/remarks';
 import type { CoordinateTree, Language } from '../formats/tree';
 import { atomsOf } from '../model/fragment-set';
@@ -136,6 +136,22 @@ export async function openForReport(
       return { frame, nameOf, pairs: wanted === null ? all : only(all, wanted) };
     },
   };
+}
+
+/** Hands every pair of every frame to a writer as plain data, pausing between them. */
+export async function eachPairRecord(
+  { frameNumbers, frameAt }: FileForReport,
+  pause: () => Promise<void> | undefined,
+  write: (frame: number, record: PairRecord) => void,
+): Promise<void> {
+  for (let place = 0; place < frameNumbers.length; place++) {
+    const { frame, pairs } = frameAt(place);
+    for (const pair of pairs) {
+      write(frame.index + 1, pairRecord(frame.system, pair));
+      const turn = pause();
+      if (turn !== undefined) await turn;
+    }
+  }
 }
 
 function* only(pairs: Iterable<Pair>, wanted: readonly boolean[]): Generator<Pair> {

@@ -1,5 +1,5 @@
-import { type PairRecord, pairRecord } from '../features/records';
-import type { PairReport } from './pairs-command';
+import type { PairRecord } from '../features/records';
+import { eachPairRecord, type PairReport } from './pairs-command';
 
 type Field = string | number | null;
 
@@ -20,18 +20,13 @@ export function csvReport(): PairReport {
   let titled = false;
   return {
     begin() {},
-    async writeFile(output, { name, frameNumbers, frameAt }, pause) {
-      for (let place = 0; place < frameNumbers.length; place++) {
-        const { frame, pairs } = frameAt(place);
-        for (const pair of pairs) {
-          const fields = fieldsOf(pairRecord(frame.system, pair));
-          if (!titled) output.write(`file,frame,${fields.map(([title]) => title).join(',')}\n`);
-          titled = true;
-          output.write(`${quoted(name)},${frame.index + 1},${fields.map(([, field]) => quoted(field)).join(',')}\n`);
-          const turn = pause();
-          if (turn !== undefined) await turn;
-        }
-      }
+    async writeFile(output, opened, pause) {
+      await eachPairRecord(opened, pause, (frame, record) => {
+        const fields = fieldsOf(record);
+        if (!titled) output.write(`file,frame,${fields.map(([title]) => title).join(',')}\n`);
+        titled = true;
+        output.write(`${quoted(opened.name)},${frame},${fields.map(([, field]) => quoted(field)).join(',')}\n`);
+      });
     },
     end() {},
   };

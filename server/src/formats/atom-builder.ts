@@ -63,19 +63,19 @@ export class AtomBuilder {
   /** The finished table; trimmed to size where much room is left. */
   build(): AtomTable {
     const n = this.count;
-    const fit = <T extends Uint8Array | Uint32Array | Int32Array | Float64Array>(array: T, size: number): T =>
+    const trimmed = <T extends Uint8Array | Uint32Array | Int32Array | Float64Array>(array: T, size: number): T =>
       (array.length > size * 1.25 + 16 ? array.slice(0, size) : array.subarray(0, size)) as T;
     return {
       count: n,
-      element: fit(this.element, n),
-      flags: fit(this.flags, n),
-      positionA: fit(this.positionA, 3 * n),
-      line: fit(this.line, n),
-      chargeE: this.chargeE && fit(this.chargeE, n),
-      dipoleEA: this.dipoleEA && fit(this.dipoleEA, 3 * n),
-      group: this.group && fit(this.group, n),
-      formalE: this.formalE && fit(this.formalE, n),
-      residue: this.residue && fit(this.residue, n),
+      element: trimmed(this.element, n),
+      flags: trimmed(this.flags, n),
+      positionA: trimmed(this.positionA, 3 * n),
+      line: trimmed(this.line, n),
+      chargeE: this.chargeE && trimmed(this.chargeE, n),
+      dipoleEA: this.dipoleEA && trimmed(this.dipoleEA, 3 * n),
+      group: this.group && trimmed(this.group, n),
+      formalE: this.formalE && trimmed(this.formalE, n),
+      residue: this.residue && trimmed(this.residue, n),
     };
   }
 }

@@ -7,9 +7,9 @@ import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
 import { type Axis, emptyNotes, type FragmentNotes, ValueReader } from './annotation';
+import { canonicalFormula } from './formula';
 import { rangesOf } from './fragment-list';
 import { atomsOf, type FragmentSet } from './fragment-set';
-import { canonicalFormula } from './kinds';
 
 /** Keys of the first frame that hold for a later one which does not give them itself. */
 const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];

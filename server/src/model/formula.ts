@@ -1,5 +1,5 @@
 import { AtomFlag, type AtomTable } from '../formats/tree';
-import { symbolOf } from '../physics/elements';
+import { atomicNumberOf, symbolOf } from '../physics/elements';
 
 /**
  * The formula of a set of atoms in the Hill system: carbon, hydrogen, then the rest by alphabet; all by alphabet without carbon.
@@ -16,9 +16,34 @@ export function hillFormula(atoms: AtomTable, members: ArrayLike<number>): strin
     const symbol = flags & AtomFlag.deuterium ? 'D' : flags & AtomFlag.tritium ? 'T' : symbolOf(z);
     counts.set(symbol, (counts.get(symbol) ?? 0) + 1);
   }
-  const symbols = [...counts.keys()].sort();
+  return counts.size === 0 ? 'X' : hillText(counts);
+}
+
+/** Element counts as text: carbon, hydrogen, then the rest by alphabet; all by alphabet without carbon. */
+function hillText(counts: ReadonlyMap<string, number>): string {
   const leading = counts.has('C') ? ['C', 'H'].filter((symbol) => counts.has(symbol)) : [];
-  const ordered = [...leading, ...symbols.filter((symbol) => !leading.includes(symbol))];
-  const text = ordered.map((symbol) => (counts.get(symbol) === 1 ? symbol : `${symbol}${counts.get(symbol)}`)).join('');
-  return text === '' ? 'X' : text;
+  const rest = [...counts.keys()].filter((symbol) => !leading.includes(symbol)).sort();
+  return [...leading, ...rest]
+    .map((symbol) => (counts.get(symbol) === 1 ? symbol : `${symbol}${counts.get(symbol)}`))
+    .join('');
+}
+
+const LONGEST_FORMULA = 60;
+
+/**
+ * Brings a formula into the Hill order that fragments are named by, so that `CH3OH` and `CH4O` name the same kind. `undefined` where
+ * it is no formula of elements and counts.
+ */
+export function canonicalFormula(formula: string): string | undefined {
+  if (formula.length > LONGEST_FORMULA || !/^(?:[A-Z][a-z]?\d{0,5})+$/.test(formula)) return undefined;
+  const counts = new Map<string, number>();
+  for (const [, letters, digits] of formula.matchAll(/([A-Z][a-z]?)(\d*)/g)) {
+    const isotope = letters === 'D' || letters === 'T';
+    const z = isotope ? 1 : atomicNumberOf(letters!);
+    const count = digits === '' ? 1 : Number(digits);
+    if (z === 0) return undefined;
+    const symbol = isotope ? letters! : symbolOf(z);
+    if (count > 0) counts.set(symbol, (counts.get(symbol) ?? 0) + count);
+  }
+  return hillText(counts);
 }
