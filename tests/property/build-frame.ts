@@ -68,7 +68,15 @@ export function analyse(text: string, settings: Partial<AnalysisSettings> = {}, 
   const request = { ...DEFAULT_REQUEST, settings: { ...DEFAULT_SETTINGS, ...settings } };
   const frame = new FileAnalysis(tree, request).frame(0);
   const pairs = [...pairsOf(frame.system)];
-  return { frame, pairs, records: pairs.map((pair) => pairRecord(frame.system, pair)) };
+  let records: PairRecord[] | undefined;
+  return {
+    frame,
+    pairs,
+    get records() {
+      records ??= pairs.map((pair) => pairRecord(frame.system, pair));
+      return records;
+    },
+  };
 }
 
 /** A cutoff that lets every pair of a test into the list. */

@@ -5,10 +5,10 @@ import {
   add,
   analyse,
   dot,
-  type Fragment,
   FAR_CUTOFF,
-  K_KJ_A,
+  type Fragment,
   frameText,
+  K_KJ_A,
   known,
   moved,
   pairOf,
@@ -66,13 +66,7 @@ function sameScalars(actual: PairRecord, expected: PairRecord): void {
   for (const key of Object.keys(expected.energyKJPerMol) as (keyof PairRecord['energyKJPerMol'])[]) {
     close(actual.energyKJPerMol[key], expected.energyKJPerMol[key], key);
   }
-  for (const key of [
-    'coupling',
-    'averageKJPerMol',
-    'freeEnergyKJPerMol',
-    'leadingKJPerMol',
-    'alignment',
-  ] as const) {
+  for (const key of ['coupling', 'averageKJPerMol', 'freeEnergyKJPerMol', 'leadingKJPerMol', 'alignment'] as const) {
     close(actual.thermal[key], expected.thermal[key], key);
   }
   close(actual.closest.distanceA, expected.closest.distanceA, 'closest');
@@ -231,14 +225,18 @@ describe('the dipole–dipole energy', () => {
 
   test('averages to zero over all orientations, its square to 2/3 of the locked energy squared', () => {
     // The six directions of the axes integrate polynomials of degree 3 on the sphere exactly.
-    const axes = [0, 1, 2].flatMap((k) => [1, -1].map((sign) => [0, 1, 2].map((a) => (a === k ? sign : 0)) as unknown as Vector));
+    const axes = [0, 1, 2].flatMap((k) =>
+      [1, -1].map((sign) => [0, 1, 2].map((a) => (a === k ? sign : 0)) as unknown as Vector),
+    );
     const at: Vector = [2, 3, 4.5];
     const locked = K_KJ_A / Math.hypot(...at) ** 3;
     const energies = axes.flatMap((m1) => axes.map((m2) => dipoleEnergy(m1, m2, at)));
     const mean = (power: number) => energies.reduce((sum, energy) => sum + energy ** power, 0) / energies.length;
     close(mean(1), 0, 'mean', 0, 1e-12);
     close(mean(2), (2 / 3) * locked ** 2, 'square', 1e-9);
-    const oneTurning = axes.map((m1) => dipoleEnergy(m1, [0.3, -0.2, 0.6], at)).reduce((sum, energy) => sum + energy, 0);
+    const oneTurning = axes
+      .map((m1) => dipoleEnergy(m1, [0.3, -0.2, 0.6], at))
+      .reduce((sum, energy) => sum + energy, 0);
     close(oneTurning, 0, 'one', 0, 1e-12);
   });
 

@@ -5,8 +5,8 @@ import {
   add,
   analyse,
   dot,
-  type Fragment,
   FAR_CUTOFF,
+  type Fragment,
   frameText,
   K_KJ_A,
   known,
@@ -55,30 +55,33 @@ describe('what the multipoles leave of the Coulomb sum', () => {
     ['a neutral fragment and an anion', 0, -1, 8, 16],
     ['two ions', 1, -2, 8, 16],
   ] as const;
-  test.each(kinds)('of %s (%d, %d) falls %d-fold after the dipoles and %d-fold after the quadrupoles each time R doubles', (_, q1, q2, afterDipoles, afterQuadrupoles) => {
-    let compared = 0;
-    forSeeds((random) => {
-      const [first, second] = [randomFragment(random, q1), randomFragment(random, q2)];
-      const u = randomDirection(random);
-      // The ratio tends to the power with corrections of order 1/R: two doublings, extrapolated.
-      const at = [40, 80, 160].map((r) => remainder(first, second, separation(first, second, u, r)));
-      for (const [k, factor] of [
-        [0, afterDipoles],
-        [1, afterQuadrupoles],
-      ] as const) {
-        const [a, b, c] = at.map((both) => both[k]) as [number, number, number];
-        // a = A/R^n + B/R^(n+1): subtracting what the next power would leave exposes the leading one.
-        const leading1 = 2 * factor * b - a;
-        const leading2 = 2 * factor * c - b;
-        // A coefficient near zero says nothing about its power.
-        if (Math.abs(leading2) < (0.05 * K_KJ_A) / 80 ** Math.log2(factor)) continue;
-        compared++;
-        expect(leading1 / leading2 / factor).toBeGreaterThan(0.9);
-        expect(leading1 / leading2 / factor).toBeLessThan(1.1);
-      }
-    });
-    expect(compared).toBeGreaterThan(RUNS.numRuns);
-  });
+  test.each(kinds)(
+    'of %s (%d, %d) falls %d-fold after the dipoles and %d-fold after the quadrupoles each time R doubles',
+    (_, q1, q2, afterDipoles, afterQuadrupoles) => {
+      let compared = 0;
+      forSeeds((random) => {
+        const [first, second] = [randomFragment(random, q1), randomFragment(random, q2)];
+        const u = randomDirection(random);
+        // The ratio tends to the power with corrections of order 1/R: two doublings, extrapolated.
+        const at = [40, 80, 160].map((r) => remainder(first, second, separation(first, second, u, r)));
+        for (const [k, factor] of [
+          [0, afterDipoles],
+          [1, afterQuadrupoles],
+        ] as const) {
+          const [a, b, c] = at.map((both) => both[k]) as [number, number, number];
+          // a = A/R^n + B/R^(n+1): subtracting what the next power would leave exposes the leading one.
+          const leading1 = 2 * factor * b - a;
+          const leading2 = 2 * factor * c - b;
+          // A coefficient near zero says nothing about its power.
+          if (Math.abs(leading2) < (0.05 * K_KJ_A) / 80 ** Math.log2(factor)) continue;
+          compared++;
+          expect(leading1 / leading2 / factor).toBeGreaterThan(0.9);
+          expect(leading1 / leading2 / factor).toBeLessThan(1.1);
+        }
+      });
+      expect(compared).toBeGreaterThan(RUNS.numRuns);
+    },
+  );
 
   test('is nothing for two single atoms, and the terms are exact for point moments', () => {
     const pair = pairOf(
@@ -183,8 +186,7 @@ describe('a finite two-charge dipole', () => {
         { symbol: 'F', at: add(middle, [-length / 2, 0, 0]), chargeE: -0.4 / length },
       ],
     });
-    const off = (length: number) =>
-      ratio(lopsided(ORIGIN, length), rod([R, 0, 0], [1, 0, 0], length)) - 1;
+    const off = (length: number) => ratio(lopsided(ORIGIN, length), rod([R, 0, 0], [1, 0, 0], length)) - 1;
     expect(off(0.02) / off(0.01)).toBeCloseTo(2, 1);
   });
 

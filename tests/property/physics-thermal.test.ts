@@ -125,7 +125,8 @@ describe.each(KINDS)('%s', (_, charge) => {
 
   test('join smoothly where the way of computing changes', () => {
     const at = (x: number) => {
-      const scale = charge === 0 ? Math.sqrt((x * R_KJ * 300 * 64) / K) : (x * R_KJ * 300 * 16) / (K * Math.abs(charge));
+      const scale =
+        charge === 0 ? Math.sqrt((x * R_KJ * 300 * 64) / K) : (x * R_KJ * 300 * 16) / (K * Math.abs(charge));
       const { averageKJPerMol, freeEnergyKJPerMol } = thermal(charge, 300, scale);
       return [known(averageKJPerMol), known(freeEnergyKJPerMol)] as const;
     };

@@ -1,7 +1,7 @@
 import { fileURLToPath } from 'node:url';
 import { Worker } from 'node:worker_threads';
 import { build } from 'esbuild';
-import { beforeAll, describe, expect, test } from 'vitest';
+import { beforeAll, describe, expect, test, vi } from 'vitest';
 
 /** What the whole pipeline says of a file. */
 interface Outcome {
@@ -14,7 +14,6 @@ interface Outcome {
   readonly messageUnits: number;
   readonly frames: number;
   readonly pairs: number;
-  readonly fragments: number;
   /** Most atoms that an annotated axis holds on one side. */
   readonly longestAxis: number;
   readonly mostRelated: number;
@@ -31,10 +30,9 @@ const text = snapshotOfBytes(workerData.bytes);
 const file = parse(text, workerData.language);
 const analysis = new FileAnalysis(file, DEFAULT_REQUEST);
 const gathered = new FileFindings(file);
-let pairs = 0, fragments = 0, longestAxis = 0;
+let pairs = 0, longestAxis = 0;
 for (let index = 0; index < file.frames.length; index++) {
   const frame = analysis.frame(index);
-  fragments += frame.model.fragments.count;
   for (const { axis } of frame.model.notes) {
     if (axis !== null) longestAxis = Math.max(longestAxis, axis.before.length, axis.after.length);
   }
@@ -51,15 +49,17 @@ parentPort.postMessage({
   outOfBounds: list.flatMap(edits).filter(({ start, end }) => !(start >= 0 && start <= end && end <= text.length)).length,
   messageUnits: list.reduce((sum, f) => sum + f.message.length + f.related.reduce((s, r) => s + r.message.length, 0), 0),
   frames: file.frames.length,
-  pairs, fragments, longestAxis,
+  pairs, longestAxis,
   mostRelated: list.reduce((most, finding) => Math.max(most, finding.related.length), 0),
 });
 `;
 
 /** Past this a case counts as hanging; the slowest sound one takes a few seconds. */
-const HANGS_AFTER_MS = 90_000;
+const HANGS_AFTER_MS = 60_000;
 const MOST_HEAP_MB = 2048;
 let code = '';
+
+vi.setConfig({ testTimeout: 2.5 * HANGS_AFTER_MS });
 
 beforeAll(async () => {
   const server = fileURLToPath(new URL('../../server/src', import.meta.url));
@@ -80,7 +80,8 @@ function run(content: string | Uint8Array, language: 'xyz' | 'pdb'): Promise<Out
     const worker = new Worker(code, {
       eval: true,
       workerData: { bytes, language },
-      resourceLimits: { maxOldGenerationSizeMb: MOST_HEAP_MB },
+      // The stack that a program's main thread has.
+      resourceLimits: { maxOldGenerationSizeMb: MOST_HEAP_MB, stackSizeMb: 1 },
     });
     const clock = setTimeout(() => {
       reject(new Error('The pipeline hangs.'));
@@ -137,7 +138,6 @@ describe('no coordinate file at all', () => {
     ['an empty file', '', 'no-frame'],
     ['a blank', ' ', 'no-frame'],
     ['one line', 'one line', 'no-frame'],
-    ['a count alone', '3', 'no-frame'],
     ['a byte order mark alone', Uint8Array.of(0xef, 0xbb, 0xbf), 'no-frame'],
     ['prose', lines(1000, (i) => `line ${i} of a story about nothing`), 'no-frame'],
     ['a million blank lines', '\n'.repeat(1e6), 'no-frame'],
@@ -161,6 +161,7 @@ describe('no coordinate file at all', () => {
 
 describe('counts and lines', () => {
   test.each([
+    ['a count alone', '3', { 'count-wrong': 1, 'no-frame': 1 }],
     ['a count of 10^12', '1000000000000\n\nHe 0 0 0\n', { 'count-wrong': 1 }],
     ['a count of a million digits', `${'9'.repeat(1e6)}\n\nHe 0 0 0\n`, { 'count-wrong': 1 }],
     ['half a frame', '4\n\nHe 0 0 0\nHe 0 0', { 'count-wrong': 1, 'field-missing': 1 }],
@@ -171,14 +172,11 @@ describe('counts and lines', () => {
     ['a coordinate of a million letters', xyz(`He 0 0 0\nHe ${'3x'.repeat(5e5)} 0 0\n`), { 'number-unreadable': 1 }],
     ['a symbol of a million letters', xyz(`He 0 0 0\n${'He'.repeat(5e5)} 5 0 0\n`), { 'element-unknown': 1 }],
     ['a million further fields', xyz(`He 0 0 0${' 1'.repeat(1e6)}\n`), { 'extra-columns': 1 }],
-    ['NaN and 1e400', xyz('He 0 0 0\nHe nan 0 0\nHe 0 1e400 0\n'), { 'number-unreadable': 2 }],
     ['NUL bytes beside atoms', xyz('He\0 0 0 0\nHe 5 0 0\n'), {}],
     ['100,000 unknown elements', xyz(grid(1e5, 'Qq')), { 'element-unknown': 100, 'no-frame': 1 }],
     ['100,000 unknown elements beside one atom', xyz(`He -9 0 0\n${grid(1e5, 'Qq')}`), { 'element-unknown': 100 }],
     ['20,000 frames that are cut short', '999999\n\nHe 0 0 0\n'.repeat(20_000), { 'count-wrong': 100 }],
     ['50,000 frames without atoms', `1\n\nHe 0 0 0\n${'0\n\n'.repeat(50_000)}`, {}],
-    ['a million blank lines before', `${'\n'.repeat(1e6)}1\n\nHe 0 0 0\n`, {}],
-    ['a million blank lines after', `1\n\nHe 0 0 0\n${'\n'.repeat(1e6)}`, {}],
     ['a million blank lines between frames', `1\n\nHe 0 0 0\n${'\n'.repeat(1e6)}1\n\nHe 0 0 0\n`, {}],
     ['a million blank lines between atoms', `2\n\nHe 0 0 0\n${'\n'.repeat(1e6)}He 0 0 5\n`, { 'field-missing': 100 }],
   ])('%s', async (_, content, expected) => {
@@ -205,40 +203,8 @@ describe('counts and lines', () => {
   });
 });
 
-describe('cells', () => {
-  const he2 = 'He 0 0 0\nHe 0 0 5\n';
-  const cell = (lattice: string, pbc = 'T T T') => xyz(he2, `Lattice="${lattice}" pbc="${pbc}"`);
-  test.each([
-    ['of size zero', cell('0 0 0 0 0 0 0 0 0'), 'cell-unusable'],
-    ['thin as a needle', cell('0.01 0 0 0 0.01 0 0 0 1000'), 'cell-unusable'],
-    ['skewed to a needle', cell('100 0 0 99.9 0.1 0 0 0 100'), 'cell-unusable'],
-    ['singular', cell('9 0 0 0 9 0 9 9 0'), 'cell-unusable'],
-    ['of two equal vectors', cell('9 0 0 9 0 0 0 0 9'), 'cell-unusable'],
-    ['huge', cell('1e300 0 0 0 1e300 0 0 0 1e300'), 'cell-unusable'],
-    ['not finite', cell('1e400 0 0 0 9 0 0 0 9'), 'number-unreadable'],
-    ['with one periodic direction of length zero', cell('0 0 0 0 9 0 0 0 9', 'T F F'), 'cell-unusable'],
-  ])('%s', async (_, content, expected) => {
-    expect((await inspect(content)).codes).toEqual({ [expected]: 1 });
-  });
-
-  test.each([
-    ['with one periodic direction and nothing else', cell('50 0 0 0 0 0 0 0 0', 'T F F'), 1],
-    ['skewed far, but wide', cell('50 0 0 5000 50 0 -900 7000 50'), 1],
-    ['left-handed', cell('0 50 0 50 0 0 0 0 50'), 1],
-  ])('%s is used', async (_, content, pairs) => {
-    const outcome = await inspect(content);
-    expect([outcome.codes, outcome.pairs]).toEqual([{}, pairs]);
-  });
-
-  test.each(['1e300', '-1e308', '1e15', '5e-324'])('coordinates of %s in a cell do no harm', async (value) => {
-    for (const comment of ['', 'Lattice="50 0 0 0 50 0 0 0 50"']) {
-      await inspect(xyz(`${he2}He ${value} 0 0\nHe 0 ${value} ${value}\n`, comment));
-    }
-  });
-});
-
 describe('crowds', () => {
-  test.each([10, 1000, 3000])('%i atoms at one point are said to be at one point', async (n) => {
+  test.each([10, 1000])('%i atoms at one point are said to be at one point', async (n) => {
     const { codes } = await inspect(xyz('C 0 0 0\n'.repeat(n)));
     expect(codes).toMatchObject({ 'atoms-coincident': Math.min(100, n - 1) });
     expect(codes).not.toHaveProperty('unit-nanometre');
@@ -272,4 +238,212 @@ describe('crowds', () => {
       expect([both.codes, both.pairs]).toEqual([near.codes, near.pairs]);
     },
   );
+});
+
+describe('annotation without measure', () => {
+  const he2 = 'He 0 0 0\nHe 0 0 5\n';
+  const many = (n: number, item: (i: number) => string, separator = ' ') =>
+    Array.from({ length: n }, (_, i) => item(i)).join(separator);
+  const water = (n: number) =>
+    lines(n, (i) => `O ${9 * (i % 20)} ${9 * Math.floor(i / 20)} 0`) +
+    lines(n, (i) => `H ${9 * (i % 20)} ${9 * Math.floor(i / 20)} 0.96`) +
+    lines(n, (i) => `H ${9 * (i % 20)} ${9 * Math.floor(i / 20)} -0.96`);
+  test.each([
+    [
+      'a list of a million numbers for two fragments',
+      xyz(he2, `fragment_charges="${'0 '.repeat(1e6)}"`),
+      { 'array-length': 1 },
+    ],
+    [
+      'a list of a million numbers that fits nothing',
+      xyz(he2, `Lattice="${'9 '.repeat(1e6)}" dipole="${'0 '.repeat(1e6)}"`),
+      { 'array-length': 2 },
+    ],
+    [
+      'a list of 100,000 numbers that cannot be read',
+      xyz(grid(1e5, 'He', 20), `fragment_charges="${'x '.repeat(1e5)}"`),
+      { 'number-unreadable': 100 },
+    ],
+    ['nesting 100,000 deep', xyz(he2, `fragment_dipoles=${'['.repeat(1e5)}0, 0, 0, 0, 0, 0${']'.repeat(1e5)}`), {}],
+    ['nesting 100,000 deep and never closed', xyz(he2, `fragment_dipoles=${'[{'.repeat(5e4)}0 0 0 0 0 0`), {}],
+    [
+      'parentheses 100,000 deep in a quantity',
+      xyz(he2, `temperature="${'('.repeat(1e5)}300 K"`),
+      { 'value-invalid': 1 },
+    ],
+    [
+      '100,000 foreign keys',
+      xyz(
+        he2,
+        many(1e5, (i) => `foreign_key_${i}=${i}`),
+      ),
+      {},
+    ],
+    [
+      '100,000 misspelt keys',
+      xyz(
+        he2,
+        many(1e5, (i) => `fragment_atom${i % 10}=1`),
+      ),
+      { 'key-misspelt': 100 },
+    ],
+    ['one key 100,000 times', xyz(he2, 'total_charge=0 '.repeat(1e5)), { 'key-repeated': 100 }],
+    ['a range to 999,999,999,999', xyz(he2, 'fragment_atoms="1-999999999999"'), { 'value-invalid': 1 }],
+    [
+      '100,000 overlapping ranges',
+      xyz(grid(5000, 'He', 20), `fragment_atoms="${'1-5000 '.repeat(1e5)}"`),
+      { 'fragments-overlap': 100 },
+    ],
+    [
+      '100,000 kinds that do not occur',
+      xyz(he2, `kind_dipole_sizes="${many(1e5, (i) => `C${(i % 99000) + 1}H:0`)}"`),
+      { 'selector-unmatched': 100 },
+    ],
+    ['100,000 times the same kind', xyz(grid(20_000, 'He', 20), `kind_dipole_sizes="${'He:0 '.repeat(1e5)}"`), {}],
+    ['100,000 words to silence', xyz(he2, `silence="${many(1e5, (i) => `code-${i}`)}"`), {}],
+    ['1000 flags of 19,000 digits', xyz(he2, `pbc="${'1'.repeat(19_000)}x" `.repeat(1000)), { 'key-repeated': 100 }],
+    ['a column width of 10^9', xyz(he2, 'Properties=species:S:1:pos:R:3:more:R:1000000000'), { 'columns-off': 1 }],
+    ['300,000 columns', xyz(he2, `Properties=species:S:1:pos:R:3${':a:R:1'.repeat(3e5)}`), { 'columns-off': 1 }],
+    ['a name of a million letters', xyz(`${he2}He 0 0 6\n`, `fragment_names="b ${'n'.repeat(1e6)} c"`), { clash: 1 }],
+    [
+      '100,000 groups',
+      xyz(
+        lines(1e5, (i) => `He ${20 * i} 0 0 g${i}`),
+        'Properties=species:S:1:pos:R:3:fragment:S:1',
+      ),
+      {},
+    ],
+  ])('%s', async (_, content, expected) => {
+    expect((await inspect(content)).codes).toMatchObject(expected);
+  });
+
+  test.each([
+    [
+      'an axis by ranges',
+      xyz(grid(5000), `fragment_atoms="1-5000" fragment_dipole_sizes=1 fragment_axes="${'1-5000,'.repeat(5000)}1>2"`),
+      5001,
+    ],
+    ['an axis by symbols', xyz(water(200), `kind_dipole_sizes="H2O:1.8" kind_axes="H2O:${'O,'.repeat(1e5)}O>H"`), 10],
+  ])('%s that repeats itself does not fill the memory', async (_, content, most) => {
+    expect((await inspect(content)).longestAxis).toBeLessThanOrEqual(most);
+  });
+
+  test('how many more findings there are is said once and right', async () => {
+    const frame = xyz(grid(200, 'He', 20), `fragment_charges="${'x '.repeat(200)}"`);
+    const { codes, messages } = await inspect(frame + frame);
+    expect(codes).toMatchObject({ 'number-unreadable': 100 });
+    const said = messages.flatMap((message) => message.match(/\d+ more like this/g) ?? []);
+    expect(said).toEqual(['300 more like this']);
+  });
+});
+
+describe('PDB files without measure', () => {
+  const remark = (words: string) => `REMARK  99 ${words}\n`;
+  const box = lines(5000, (i) => pdbAtom(i));
+  const conect = (...serials: number[]) => `CONECT${serials.map((serial) => String(serial).padStart(5)).join('')}`;
+  /** One residue of many atoms with names of their own. */
+  const giant = (n: number, residue: string, number: number, shift: number) =>
+    lines(n, (i) => pdbAtom(i, residue, number, 5 * (i % 40) + shift).replace(' HE ', i.toString(36).padStart(4, '.')));
+  test.each([
+    [
+      '10,000 selectors',
+      lines(1e4, (i) => remark(`fragment=A:UNK:${i} charge=0`).trim()) + lines(1e4, (i) => pdbAtom(i)),
+      {},
+    ],
+    [
+      '50,000 selectors that match nothing',
+      lines(5e4, (i) => remark(`fragment=B:UNK:${i} charge=0`).trim()) + box,
+      { 'selector-unmatched': 100 },
+    ],
+    [
+      'the same selector 50,000 times',
+      remark('fragment=*:UNK:* charge=0').repeat(5e4) + lines(500, (i) => pdbAtom(i)),
+      { 'key-repeated': 100 },
+    ],
+    [
+      'a selector with 20,000 foreign keys',
+      remark(`fragment=*:*:* charge=0 ${Array.from({ length: 2e4 }, (_, i) => `k${i}=1`).join(' ')}`) +
+        lines(200, (i) => pdbAtom(i)),
+      {},
+    ],
+    [
+      'a selector of a million letters',
+      remark(`fragment=A:${'U'.repeat(1e6)}:1`) + pdbAtom(1),
+      { 'selector-unmatched': 1 },
+    ],
+    [
+      '100,000 CONECT lines',
+      box + lines(1e5, (i) => conect(i % 5000, (i + 1) % 5000, (i + 2) % 5000, (i + 3) % 5000, (i + 4) % 5000)),
+      {},
+    ],
+    [
+      '20,000 CONECT lines for 2000 models',
+      lines(2000, (i) => `MODEL\n${pdbAtom(1, 'UNK', 1, i)}`) + `${conect(1, 2, 3, 4, 5)}\n`.repeat(2e4),
+      {},
+    ],
+    [
+      '10,000 annotations for 2000 models',
+      remark('fragment=*:UNK:* foreign=0 charge=0').repeat(1e4) +
+        lines(2000, (i) => `MODEL\n${pdbAtom(1, 'UNK', 1, i)}`),
+      { 'key-repeated': 100 },
+    ],
+    ['a residue of 50,000 atoms', giant(50_000, 'BIG', 1, 0), {}],
+    ['a residue of 50,000 atoms with one name', lines(50_000, (i) => pdbAtom(i, 'BIG', 1)), {}],
+    [
+      'two residues of 20,000 atoms that CONECT joins 20,000 times',
+      giant(2e4, 'BIG', 1, 0) +
+        giant(2e4, 'BIG', 2, 2.5).replaceAll(
+          /^ATOM {2}([ \d]{5})/gm,
+          (_, serial: string) => `ATOM  ${String(Number(serial) + 2e4).padStart(5)}`,
+        ) +
+        lines(2e4, (i) => conect(i, i + 2e4, i + 2e4, i + 2e4, i + 2e4)),
+      {},
+    ],
+    [
+      'an axis of 100,000 names',
+      remark(`fragment=*:*:* dipole_size=1 axis=${'HE,'.repeat(1e5)}HE>HE`) + lines(200, (i) => pdbAtom(i)),
+      {},
+    ],
+  ])('%s', async (_, content, expected) => {
+    const { codes, longestAxis } = await inspect(content, 'pdb');
+    expect(codes).toMatchObject(expected);
+    expect(longestAxis).toBeLessThanOrEqual(10);
+  });
+});
+
+describe('fragments without measure', () => {
+  const COLUMNS = 'Properties=species:S:1:pos:R:3:charge:R:1:fragment:I:1';
+  test.each([
+    [
+      '20,000 long fragments far from one another',
+      xyz(
+        lines(2e4, (i) => `He ${1000 * i} 0 0 0 ${i}\nHe ${1000 * i} 25 0 0 ${i}`),
+        COLUMNS,
+      ),
+      {},
+    ],
+    [
+      'two fragments of 20,000 atoms',
+      xyz(
+        lines(4e4, (i) => `He ${5 * (i % 30)} ${5 * (Math.floor(i / 30) % 30)} ${5 * Math.floor(i / 900)} 0 ${i % 2}`),
+        COLUMNS,
+      ),
+      {},
+    ],
+    [
+      '4000 charged fragments about one centre',
+      xyz(
+        lines(4000, (i) => `He ${12 + 3 * i} 0 0 1 ${i}\nHe ${-12 - 3 * i} 0 0 -1 ${i}`),
+        COLUMNS,
+      ),
+      { 'near-field': 1 },
+    ],
+    [
+      '1000 hydrogens of one fragment beside 1000 oxygens of another',
+      xyz(`${'H 0 0 0 0 1\n'.repeat(1000)}${'O 0 0 1.3 0 2\n'.repeat(1000)}`, COLUMNS),
+      {},
+    ],
+  ])('%s', async (_, content, expected) => {
+    expect((await inspect(content)).codes).toMatchObject(expected);
+  });
 });

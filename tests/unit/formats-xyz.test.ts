@@ -376,3 +376,35 @@ describe('where findings stand', () => {
     ]);
   });
 });
+
+describe('cells', () => {
+  const cell = (lattice: string, pbc: string) => text('2', `Lattice="${lattice}" pbc="${pbc}"`, 'He 0 0 0', 'He 0 0 5');
+  test.each([
+    ['of size zero', '0 0 0 0 0 0 0 0 0', 'T T T'],
+    ['thin as a needle', '0.01 0 0 0 0.01 0 0 0 1000', 'T T T'],
+    ['skewed to a needle', '100 0 0 99.9 0.1 0 0 0 100', 'T T T'],
+    ['singular', '9 0 0 0 9 0 9 9 0', 'T T T'],
+    ['of two equal vectors', '9 0 0 9 0 0 0 0 9', 'T T T'],
+    ['huge', '1e300 0 0 0 1e300 0 0 0 1e300', 'T T T'],
+    ['with one periodic direction of length zero', '0 0 0 0 9 0 0 0 9', 'T F F'],
+  ])('%s cannot be used', (_, lattice, pbc) => {
+    expect(found(cell(lattice, pbc))).toEqual([['cell-unusable', `"${lattice}"`]]);
+  });
+
+  test.each([
+    ['with one periodic direction and nothing else', '50 0 0 0 0 0 0 0 0', 'T F F'],
+    ['without a periodic direction', '0 0 0 0 0 0 0 0 0', 'F F F'],
+    ['skewed far, but wide', '50 0 0 5000 50 0 -900 7000 50', 'T T T'],
+    ['left-handed', '0 50 0 50 0 0 0 0 50', 'T T T'],
+  ])('%s can be used', (_, lattice, pbc) => {
+    expect(found(cell(lattice, pbc))).toEqual([]);
+    expect(analyse(cell(lattice, pbc)).frames[0]!.system.count).toBe(2);
+  });
+
+  test.each(['1e300', '-1e308', '1e15', '5e-324'])('coordinates of %s in a cell do no harm', (value) => {
+    for (const comment of ['', 'Lattice="50 0 0 0 50 0 0 0 50"']) {
+      const lines = [`He ${value} 0 0`, `He 0 ${value} ${value}`];
+      expect(() => analyse(text('4', comment, 'He 0 0 0', 'He 0 0 5', ...lines))).not.toThrow();
+    }
+  });
+});

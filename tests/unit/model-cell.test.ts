@@ -144,13 +144,14 @@ describe('the minimum image', () => {
 
   test('keeps the written difference where it is as short as any', () => {
     const cell = createCell([10, 0, 0, 0, 10, 0, 0, 0, 10], [true, true, true]) as Cell;
-    for (const d of [
+    const kept: Vector[] = [
       [5, 0, 0],
       [-5, 0, 0],
       [5, -5, 5],
       [0, 0, 0],
       [1, 2, -3],
-    ] as const) {
+    ];
+    for (const d of kept) {
       minimumImage(cell, ...d, out);
       expect(Array.from(out.vectorA)).toEqual([...d]);
       expect(Array.from(out.image)).toEqual([0, 0, 0]);

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import { FileAnalysis } from '../../server/src/analysis/frame-analysis';
+import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import { parse } from '../../server/src/formats/parse';
 import { snapshotOf } from '../../server/src/text/snapshot';
 import { analyse } from '../property/build-frame';
@@ -9,7 +9,8 @@ import { analyse } from '../property/build-frame';
 
 type Row = readonly [symbol: string, x: number, y: number, z: number];
 
-const xyz = (rows: readonly Row[], comment = '') => [rows.length, comment, ...rows.map((r) => r.join(' ')), ''].join('\n');
+const xyz = (rows: readonly Row[], comment = '') =>
+  [rows.length, comment, ...rows.map((r) => r.join(' ')), ''].join('\n');
 
 function fragmentsOf(rows: readonly Row[], comment = ''): number[] {
   return Array.from(analyse(xyz(rows, comment)).frame.model.fragments.ofAtom);
@@ -63,23 +64,63 @@ describe('one molecule', () => {
     ['H', -1.7, 0, -0.82],
   ];
   test.each<[string, Row[]]>([
-    ['F2', [['F', 0, 0, 0], ['F', 1.412, 0, 0]]],
-    ['H2', [['H', 0, 0, 0], ['H', 0.741, 0, 0]]],
+    [
+      'F2',
+      [
+        ['F', 0, 0, 0],
+        ['F', 1.412, 0, 0],
+      ],
+    ],
+    [
+      'H2',
+      [
+        ['H', 0, 0, 0],
+        ['H', 0.741, 0, 0],
+      ],
+    ],
     ['N2O4', n2o4()],
     ['FOOF', foof()],
-    ['I3-', [['I', 0, 0, 0], ['I', 2.92, 0, 0], ['I', -2.92, 0, 0]]],
-    ['asymmetric I3-', [['I', 0, 0, 0], ['I', 2.83, 0, 0], ['I', -3.03, 0, 0]]],
+    [
+      'I3-',
+      [
+        ['I', 0, 0, 0],
+        ['I', 2.92, 0, 0],
+        ['I', -2.92, 0, 0],
+      ],
+    ],
+    [
+      'asymmetric I3-',
+      [
+        ['I', 0, 0, 0],
+        ['I', 2.83, 0, 0],
+        ['I', -3.03, 0, 0],
+      ],
+    ],
     ['Zundel H5O2+', zundel],
-    ['FHF-', [['F', -1.145, 0, 0], ['H', 0, 0, 0], ['F', 1.145, 0, 0]]],
+    [
+      'FHF-',
+      [
+        ['F', -1.145, 0, 0],
+        ['H', 0, 0, 0],
+        ['F', 1.145, 0, 0],
+      ],
+    ],
     ['D2O', water(0).map(([symbol, x, y, z]) => [symbol === 'H' ? 'D' : symbol, x, y, z])],
-    ['Zn(NH3) without hydrogens, 2.0 Å', [['Zn', 0, 0, 0], ['N', 2.0, 0, 0]]],
+    [
+      'Zn(NH3) without hydrogens, 2.0 Å',
+      [
+        ['Zn', 0, 0, 0],
+        ['N', 2.0, 0, 0],
+      ],
+    ],
   ])('%s', (_, rows) => {
     expect(new Set(fragmentsOf(rows))).toEqual(new Set([0]));
   });
 
   test('of a proton moved in H5O2+ while the longer side is within 10 % of the shorter', () => {
     // O–O 2.4 Å: 1.145 and 1.255 differ by 9.6 %, 1.14 and 1.26 by 10.5 %; the longest O–H bond is 1.37 Å.
-    const at = (x: number): Row[] => zundel.map(([symbol, ...r], k): Row => (k === 0 ? ['H', x, 0, 0] : [symbol, ...r]));
+    const at = (x: number): Row[] =>
+      zundel.map(([symbol, ...r], k): Row => (k === 0 ? ['H', x, 0, 0] : [symbol, ...r]));
     expect(new Set(fragmentsOf(at(0.055))).size).toBe(1);
     expect(new Set(fragmentsOf(at(0.06))).size).toBe(2);
   });
@@ -88,13 +129,51 @@ describe('one molecule', () => {
 describe('two molecules', () => {
   test.each<[string, Row[], number]>([
     ['Na+ and water', [['Na', -2.3, 0, 0], ...water(0)], 1],
-    ['Na and Cl', [['Na', 0, 0, 0], ['Cl', 2.361, 0, 0]], 1],
-    ['Ca and O at 1.82 Å', [['Ca', 0, 0, 0], ['O', 1.82, 0, 0]], 1],
-    ['two zinc atoms', [['Zn', 0, 0, 0], ['Zn', 2.4, 0, 0]], 1],
-    ['a halogen bond N···I of 2.7 Å', [['N', 0, 0, 0], ['I', 2.7, 0, 0], ['I', 5.45, 0, 0]], 1],
+    [
+      'Na and Cl',
+      [
+        ['Na', 0, 0, 0],
+        ['Cl', 2.361, 0, 0],
+      ],
+      1,
+    ],
+    [
+      'Ca and O at 1.82 Å',
+      [
+        ['Ca', 0, 0, 0],
+        ['O', 1.82, 0, 0],
+      ],
+      1,
+    ],
+    [
+      'two zinc atoms',
+      [
+        ['Zn', 0, 0, 0],
+        ['Zn', 2.4, 0, 0],
+      ],
+      1,
+    ],
+    [
+      'a halogen bond N···I of 2.7 Å',
+      [
+        ['N', 0, 0, 0],
+        ['I', 2.7, 0, 0],
+        ['I', 5.45, 0, 0],
+      ],
+      1,
+    ],
     ['a water dimer, H···O 1.95', [...water(0, 52.2), ...water(0.958 + 1.95)], 3],
     ['a short hydrogen bond, O–H 1.0 and H···O 1.35', [...water(0, 52.2, 1.0), ...water(2.35)], 3],
-    ['two hydrogen molecules 1.6 Å apart', [['H', 0, 0, 0], ['H', 0.741, 0, 0], ['H', 2.341, 0, 0], ['H', 3.082, 0, 0]], 2],
+    [
+      'two hydrogen molecules 1.6 Å apart',
+      [
+        ['H', 0, 0, 0],
+        ['H', 0.741, 0, 0],
+        ['H', 2.341, 0, 0],
+        ['H', 3.082, 0, 0],
+      ],
+      2,
+    ],
   ])('%s', (_, rows, size) => {
     expect(fragmentsOf(rows)).toEqual(rows.map((_row, k) => (k < size ? 0 : 1)));
   });
@@ -120,7 +199,11 @@ describe('limits of a bond', () => {
     ['Fe', 'N', 1.32 + 0.71 + 0.3],
     ['C', 'H', 0.76 + 0.31 + 0.4],
   ])('%s–%s is %d Å', (a, b, limit) => {
-    const apart = (d: number) => fragmentsOf([[a, 0, 0, 0], [b, d, 0, 0]]);
+    const apart = (d: number) =>
+      fragmentsOf([
+        [a, 0, 0, 0],
+        [b, d, 0, 0],
+      ]);
     expect(apart(limit - 1e-6)).toEqual([0, 0]);
     expect(apart(limit + 1e-6)).toEqual([0, 1]);
   });
@@ -133,16 +216,52 @@ describe('ghosts', () => {
   });
 
   test('beyond 1 Å from every atom belong to no fragment, and never join two', () => {
-    expect(fragmentsOf([['Ar', 0, 0, 0], ['X', 1.01, 0, 0]])).toEqual([0, -1]);
-    expect(fragmentsOf([['Ar', 0, 0, 0], ['X', 0.9, 0, 0], ['Ar', 3.6, 0, 0]])).toEqual([0, 0, 1]);
-    expect(fragmentsOf([['He', 0, 0, 0], ['Gh', 0.8, 0, 0], ['He', 1.5, 0, 0]])).toEqual([0, 1, 1]);
+    expect(
+      fragmentsOf([
+        ['Ar', 0, 0, 0],
+        ['X', 1.01, 0, 0],
+      ]),
+    ).toEqual([0, -1]);
+    expect(
+      fragmentsOf([
+        ['Ar', 0, 0, 0],
+        ['X', 0.9, 0, 0],
+        ['Ar', 3.6, 0, 0],
+      ]),
+    ).toEqual([0, 0, 1]);
+    expect(
+      fragmentsOf([
+        ['He', 0, 0, 0],
+        ['Gh', 0.8, 0, 0],
+        ['He', 1.5, 0, 0],
+      ]),
+    ).toEqual([0, 1, 1]);
   });
 
   test('have no mass: the mass centre is that of the atoms', () => {
-    const { moments } = analyse(xyz([['Ar', 0, 0, 0], ['X', 0.9, 0, 0]])).frame;
+    const { moments } = analyse(
+      xyz([
+        ['Ar', 0, 0, 0],
+        ['X', 0.9, 0, 0],
+      ]),
+    ).frame;
     expect(Array.from(moments.centreA)).toEqual([0, 0, 0]);
     expect(moments.extentA[0]).toBe(0);
   });
+});
+
+test('an atom with a ghost beside it is still a single atom: extent 0, dipole 0, a basis for its pairs', () => {
+  const { frame, records } = analyse(
+    xyz([
+      ['Ar', 0, 0, 0],
+      ['X', 0.9, 0, 0],
+      ['Ar', 6, 0, 0],
+    ]),
+  );
+  expect(frame.moments.extentA[0]).toBe(0);
+  expect(frame.moments.dipoleSource).toEqual(['atom', 'atom']);
+  expect(frame.moments.dipoleNormEA[0]).toBe(0);
+  expect(records[0]).toMatchObject({ regime: 'far', advice: 'accept' });
 });
 
 test('heavy water has its own masses: the centre of HDO lies nearer to D', () => {
@@ -154,7 +273,8 @@ test('heavy water has its own masses: the centre of HDO lies nearer to D', () =>
 });
 
 describe('later frames', () => {
-  const declared = 'fragment_atoms="1,4 2-3" fragment_names="first second" kind_dipole_sizes="He2:1.2" kind_axes="He2:He>He"';
+  const declared =
+    'fragment_atoms="1,4 2-3" fragment_names="first second" kind_dipole_sizes="He2:1.2" kind_axes="He2:He>He"';
   const he = (z: number): Row[] => [
     ['He', 0, 0, z],
     ['Ne', 4, 0, z],
@@ -180,7 +300,11 @@ describe('later frames', () => {
   test('inherit a fragment column with its words', () => {
     const rows = ['Ar 0 0 0 host', 'Ar 4 0 0 guest', 'Ar 8 0 0 host'];
     const first = ['3', 'Properties=species:S:1:pos:R:3:fragment:S:1', ...rows, ''].join('\n');
-    const plain = xyz([['Ar', 0, 0, 1], ['Ar', 4, 0, 1], ['Ar', 8, 0, 1]]);
+    const plain = xyz([
+      ['Ar', 0, 0, 1],
+      ['Ar', 4, 0, 1],
+      ['Ar', 8, 0, 1],
+    ]);
     const { model } = frames(first, plain).frame(1);
     expect(Array.from(model.fragments.ofAtom)).toEqual([0, 1, 0]);
     expect(model.names).toEqual(['host', 'guest']);

@@ -9,7 +9,9 @@ import { type Fragment, K_KJ_A, known, pairOf, point, type Site, type Vector } f
 
 const O: Vector = [0, 0, 0];
 
-function atoms(...sites: (readonly [symbol: string, x: number, y: number, z: number, chargeE?: number])[]): Site[] {
+type Row = readonly [symbol: string, x: number, y: number, z: number, chargeE?: number | undefined];
+
+function atoms(...sites: Row[]): Site[] {
   return sites.map(([symbol, x, y, z, chargeE]) => ({
     symbol,
     at: [x, y, z] as const,
@@ -133,11 +135,7 @@ describe('without a basis (two atoms or more, no charges, dipole zero or unknown
 
 describe('the basis', () => {
   const bent = (x: number, charges: readonly (number | undefined)[], dipoleEA?: Vector): Fragment => ({
-    sites: atoms(
-      ['O', x, 0, 0, charges[0]],
-      ['H', x, 0.76, 0.59, charges[1]],
-      ['H', x, -0.76, 0.59, charges[2]],
-    ),
+    sites: atoms(['O', x, 0, 0, charges[0]], ['H', x, 0.76, 0.59, charges[1]], ['H', x, -0.76, 0.59, charges[2]]),
     ...(dipoleEA === undefined ? {} : { dipoleEA }),
   });
   const none = [undefined, undefined, undefined];
@@ -150,7 +148,12 @@ describe('the basis', () => {
     ['fitted: another direction within the plane', bent(0, own, [0, 0.3, 0.3]), bent(8, own), 'fitted'],
     ['fitted: a net charge that is not the column', { ...bent(0, own), chargeE: 1 }, bent(8, own), 'fitted'],
     ['fitted: no columns, dipoles in the plane', bent(0, none, [0, 0, 0.4]), bent(8, none, [0, 0.4, 0]), 'fitted'],
-    ['extent: no columns, one dipole out of its plane', bent(0, none, [0.4, 0, 0]), bent(8, none, [0, 0.4, 0]), 'extent'],
+    [
+      'extent: no columns, one dipole out of its plane',
+      bent(0, none, [0.4, 0, 0]),
+      bent(8, none, [0, 0.4, 0]),
+      'extent',
+    ],
     ['extent: a column, and a dipole out of its plane', bent(0, own, [0.4, 0, 0]), bent(8, own), 'extent'],
     ['none: no columns and a zero dipole', bent(0, none, O), bent(8, none, [0, 0.4, 0]), 'none'],
     ['none: no columns and no dipole', bent(0, none), bent(8, none, [0, 0.4, 0]), 'none'],

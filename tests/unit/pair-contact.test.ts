@@ -45,7 +45,12 @@ describe('two single atoms clash', () => {
   test('with opposite charges below 0.75 of the covalent radii only, with like or no charges by the strict rule', () => {
     const at = (x: number, q1: number, q2: number) => pairOf(single('C', 0, q1), single('C', x, q2)).contact;
     expect([at(1.5, 1, -1), at(1.145, -1, 1), at(1.135, 1, -1)]).toEqual(['touching', 'touching', 'clash']);
-    expect([at(1.5, 1, 1), at(1.5, 0, 0), at(1.5, 1, 0), at(1.5, 0.1, -1)]).toEqual(['clash', 'clash', 'clash', 'clash']);
+    expect([at(1.5, 1, 1), at(1.5, 0, 0), at(1.5, 1, 0), at(1.5, 0.1, -1)]).toEqual([
+      'clash',
+      'clash',
+      'clash',
+      'clash',
+    ]);
   });
 
   test('in two fragments where any pair clashes, though another is the closest by ratio', () => {
@@ -162,7 +167,7 @@ describe('bonded pairs of a PDB model', () => {
     expect(bonded).toMatchObject({ regime: null, advice: null, validBeyondA: null, referenceKJPerMol: null });
     // Atoms up to three bonds apart make no contact: of the rest, none of C, CA, O with N, CA, C is left but four bonds or more.
     const [i, j] = bonded.closest.atoms!;
-    const bonds = (a: number, b: number) => ({ 1: 2, 2: 1, 3: 0, 4: 1 })[a]! + 1 + ({ 5: 0, 6: 1, 7: 2, 8: 3 })[b]!;
+    const bonds = (a: number, b: number) => ({ 1: 2, 2: 1, 3: 0, 4: 1 })[a]! + 1 + { 5: 0, 6: 1, 7: 2, 8: 3 }[b]!;
     expect(bonds(i!, j!)).toBeGreaterThan(3);
   });
 
@@ -199,7 +204,10 @@ describe('bonded pairs of a PDB model', () => {
     const link = 'LINK         C   GLY A   3                 N   GLY A   1     1555   1555  1.33';
     const { frame, records } = analyse(pdb(PEPTIDE, link), {}, 'pdb');
     expect(frame.model.fragments.count).toBe(3);
-    expect(records.find((pair) => pair.first === 1 && pair.second === 3)).toMatchObject({ contact: 'bonded', advice: null });
+    expect(records.find((pair) => pair.first === 1 && pair.second === 3)).toMatchObject({
+      contact: 'bonded',
+      advice: null,
+    });
   });
 
   test('two residues at a covalent distance that are no polymer neighbours are not bonded', () => {

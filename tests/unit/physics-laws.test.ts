@@ -148,7 +148,7 @@ interface Fit {
   readonly charges: readonly number[];
 }
 
-function fit(sites: readonly Vector[], start: readonly number[], net: number, dipole: Vector, centre: Vector): Fit {
+function fitted(sites: readonly Vector[], start: readonly number[], net: number, dipole: Vector, centre: Vector): Fit {
   const charges = Float64Array.from(start);
   const fits = fitCharges(sites.length, Float64Array.from(sites.flat()), charges, net, [...dipole], [...centre]);
   return { fits, charges: Array.from(charges) };
@@ -174,7 +174,7 @@ describe('fitted charges', () => {
       const sites = [...corners, ...Array.from({ length: Math.floor(8 * random()) }, site)];
       const start = sites.map(() => 2 * random() - 1);
       const [net, dipole, centre] = [Math.round(4 * random() - 2), site(), site()];
-      const { fits, charges } = fit(sites, start, net, dipole, centre);
+      const { fits, charges } = fitted(sites, start, net, dipole, centre);
       expect(fits).toBe(true);
       expect(Math.abs(charges.reduce((sum, q) => sum + q, 0) - net)).toBeLessThan(1e-12);
       const got = dipoleOf(sites, charges, centre);
@@ -190,7 +190,7 @@ describe('fitted charges', () => {
   test('stay as they are where they have charge and dipole already', () => {
     const sites: Vector[] = [site(), site(), site(), site(), site()];
     const start = [0.4, -0.3, 0.2, -0.5, 0.7];
-    const { fits, charges } = fit(sites, start, 0.5, dipoleOf(sites, start, [1, 2, 3]), [1, 2, 3]);
+    const { fits, charges } = fitted(sites, start, 0.5, dipoleOf(sites, start, [1, 2, 3]), [1, 2, 3]);
     expect(fits).toBe(true);
     for (const [i, q] of charges.entries()) expect(q).toBeCloseTo(start[i]!, 13);
   });
@@ -212,16 +212,16 @@ describe('fitted charges', () => {
   ];
   test.each(impossible)('are impossible for %s, and nothing is changed then', (_, sites, dipole, net) => {
     const start = sites.map((_site, i) => 0.1 * i);
-    expect(fit(sites, start, net, dipole, [0, 0, 0])).toEqual({ fits: false, charges: start });
+    expect(fitted(sites, start, net, dipole, [0, 0, 0])).toEqual({ fits: false, charges: start });
   });
 
   test('exist for a dipole in the plane, on the axis, and for a bare charge on one atom', () => {
-    expect(fit(flat, [0, 0, 0], 0, [0, 0.39, 0], [0, 0.066, 0]).fits).toBe(true);
-    expect(fit(line, [0, 0], 1, [0, 0, 0.2], [0, 0, 0.5])).toEqual({
+    expect(fitted(flat, [0, 0, 0], 0, [0, 0.39, 0], [0, 0.066, 0]).fits).toBe(true);
+    expect(fitted(line, [0, 0], 1, [0, 0, 0.2], [0, 0, 0.5])).toEqual({
       fits: true,
       charges: [expect.closeTo(0.41666666666666663, 12), expect.closeTo(0.5833333333333334, 12)],
     });
-    expect(fit([[4, 5, 6]], [0], -1, [0, 0, 0], [4, 5, 6])).toEqual({ fits: true, charges: [-1] });
+    expect(fitted([[4, 5, 6]], [0], -1, [0, 0, 0], [4, 5, 6])).toEqual({ fits: true, charges: [-1] });
   });
 
   test('miss no more than 2 % or 0.02 D of the dipole where the atoms are flat but for rounding', () => {
@@ -229,7 +229,7 @@ describe('fitted charges', () => {
       const rounding = () => 10 ** (4 * random() - 5) * (random() - 0.5);
       const sites = Array.from({ length: 6 }, (): Vector => [2 * random(), 2 * random(), rounding()]);
       const dipole: Vector = [random(), random(), 0.05 * (random() - 0.5)];
-      const { fits, charges } = fit(sites, [0, 0, 0, 0, 0, 0], 0, dipole, [0, 0, 0]);
+      const { fits, charges } = fitted(sites, [0, 0, 0, 0, 0, 0], 0, dipole, [0, 0, 0]);
       if (!fits) continue;
       const off = Math.hypot(...add(dipoleOf(sites, charges, [0, 0, 0]), dipole, -1));
       expect(off).toBeLessThan(Math.max(0.02 * Math.hypot(...dipole), 0.02 * 0.2082) * 1.001);
@@ -240,8 +240,8 @@ describe('fitted charges', () => {
   test('turn with the fragment', () => {
     const turned = (v: Vector): Vector => [v[1], v[2], v[0]];
     const [plain, other] = [
-      fit(flat, [0, 0, 0], 0, [0.1, 0.3, 0], [0, 0, 0]),
-      fit(flat.map(turned), [0, 0, 0], 0, turned([0.1, 0.3, 0]), [0, 0, 0]),
+      fitted(flat, [0, 0, 0], 0, [0.1, 0.3, 0], [0, 0, 0]),
+      fitted(flat.map(turned), [0, 0, 0], 0, turned([0.1, 0.3, 0]), [0, 0, 0]),
     ];
     for (const [i, q] of plain.charges.entries()) expect(other.charges[i]).toBeCloseTo(q, 12);
   });

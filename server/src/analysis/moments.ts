@@ -19,6 +19,8 @@ export type ChargeSource = (typeof CHARGE_SOURCES)[number];
  */
 export interface Moments {
   readonly count: number;
+  /** 1 for a single atom (ghosts aside), whose charge is an exact point charge. */
+  readonly isAtom: Uint8Array;
   readonly centreA: Float64Array;
   /** Distance from the centre to the farthest atom. */
   readonly extentA: Float64Array;
@@ -36,9 +38,10 @@ export interface Moments {
   readonly polarizabilityA3: Float64Array;
 }
 
-interface FragmentMoments {
+interface FragmentPlace {
   centre: [number, number, number];
   extent: number;
+  isAtom: boolean;
 }
 
 /** Computes the moments of every fragment; unusable ones keep NaN. Linear in the atoms. */
@@ -50,6 +53,7 @@ export function computeMoments(model: FrameModel, centre: Centre): Moments {
   const dipoleSource: DipoleSource[] = [];
   const moments = {
     count: n,
+    isAtom: new Uint8Array(n),
     centreA: unknown(3 * n),
     extentA: unknown(n),
     chargeE: unknown(n),
@@ -70,6 +74,7 @@ export function computeMoments(model: FrameModel, centre: Centre): Moments {
     if (usable[f]) {
       moments.centreA.set(place.centre, 3 * f);
       moments.extentA[f] = place.extent;
+      moments.isAtom[f] = place.isAtom ? 1 : 0;
       addColumnMoments(model, members, place.centre, f, moments);
     }
     const charge = netCharge(model, members, note, moments.columnChargeE[f]!);
@@ -77,8 +82,7 @@ export function computeMoments(model: FrameModel, centre: Centre): Moments {
     chargeSource.push(charge.source);
     dipoleSource.push(usable[f] ? chooseDipole(model, members, note, f, moments) : 'none');
     // An atom without charges of its own beside it has no quadrupole about itself.
-    const isAtom = members.length === 1;
-    if (isAtom && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
+    if (moments.isAtom[f] && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
       moments.quadrupoleEA2.fill(0, 6 * f, 6 * f + 6);
     }
   }
@@ -92,7 +96,7 @@ export function atomMassU(element: number, flags: number): number {
   return flags & AtomFlag.tritium ? TRITIUM_MASS_U : ATOMIC_WEIGHT_U[element]!;
 }
 
-function placeFragment(model: FrameModel, members: Int32Array, centre: Centre): FragmentMoments {
+function placeFragment(model: FrameModel, members: Int32Array, centre: Centre): FragmentPlace {
   const { atoms } = model.tree;
   const weigh = (weightOf: (atom: number) => number): [number, number, number] | null => {
     let total = 0;
@@ -121,7 +125,7 @@ function placeFragment(model: FrameModel, members: Int32Array, centre: Centre): 
     extent2 = Math.max(extent2, dx * dx + dy * dy + dz * dz);
   }
   const isAtom = members.filter(isReal).length === 1 || members.length === 1;
-  return { centre: point, extent: isAtom ? 0 : Math.sqrt(extent2) };
+  return { centre: point, extent: isAtom ? 0 : Math.sqrt(extent2), isAtom };
 }
 
 /** Sums over the charge and atomic-dipole columns; what a missing or unreadable entry spoils stays NaN. */
@@ -194,7 +198,7 @@ function chooseDipole(
   members: Int32Array,
   note: FragmentNotes,
   f: number,
-  out: { dipoleEA: Float64Array; dipoleNormEA: Float64Array; columnDipoleEA: Float64Array },
+  out: { isAtom: Uint8Array; dipoleEA: Float64Array; dipoleNormEA: Float64Array; columnDipoleEA: Float64Array },
 ): DipoleSource {
   const set = (x: number, y: number, z: number) => {
     const size = Math.sqrt(x * x + y * y + z * z);
@@ -216,13 +220,15 @@ function chooseDipole(
     out.dipoleNormEA[f] = size < ZERO_DIPOLE_EA ? 0 : size;
     return axis === null ? 'annotated' : 'axis';
   }
-  if (members.length === 1 && model.tree.atoms.dipoleEA === null) {
+  const { chargeE, dipoleEA } = model.tree.atoms;
+  // Ghosts beside an atom may carry charge.
+  if (out.isAtom[f] && dipoleEA === null && (members.length === 1 || chargeE === null)) {
     set(0, 0, 0);
     return 'atom';
   }
   if (!Number.isNaN(fromColumn[0]!)) {
     set(fromColumn[0]!, fromColumn[1]!, fromColumn[2]!);
-    return model.tree.atoms.chargeE === null ? 'annotated' : 'charges';
+    return chargeE === null ? 'annotated' : 'charges';
   }
   return 'none';
 }

@@ -103,8 +103,6 @@ function coulombAlong(
 /** Step of the inward search, as a ratio of distances. */
 const STEP = 1.02;
 const SHORTEST_START_A = 1;
-/** The search begins at least this far out, where only the slowest terms are left, Å. */
-const SHORTEST_OUTER_A = 64;
 const FARTHEST_A = 1e5;
 
 /**
@@ -133,8 +131,7 @@ export function validBeyond(
     return Number.isNaN(value) ? Number.NEGATIVE_INFINITY : value;
   };
   const first = Math.max(start, 1e-3);
-  let outer = Math.max(SHORTEST_OUTER_A, 16 * first);
-  while (outer < FARTHEST_A && !(margin(outer) > 0 && margin(1.5 * outer) > 0 && margin(2 * outer) > 0)) outer *= 2;
+  const outer = Math.max(2 * first, surelyValidBeyond(system, f, g, basis));
   let r = outer;
   let here = margin(r);
   let beyond = here;
@@ -151,7 +148,75 @@ export function validBeyond(
     here = next;
     r = inner;
   }
-  return start;
+  // The last step has no neighbour that would show a dip.
+  const edge = Math.min(first * STEP, outer);
+  const bottom = lowest(margin, first, edge);
+  return margin(bottom) < 0 ? bisect(margin, bottom, edge) : start;
+}
+
+/**
+ * A separation beyond which the error stays below 0.1 kT whatever the arrangement. With 1/|R + d| = Σ (d/R)ⁿPₙ/R and |d| ≤ s, all that
+ * the point dipole leaves out is at most k Σ|q₁| Σ|q₂| s²/(R²(R − s)); to this comes what charges and dipoles in use differ by from
+ * those of the reference.
+ */
+function surelyValidBeyond(system: System, f: number, g: number, basis: Basis): number {
+  const [side1, side2] = [f, g].map((h) => spreadOf(system, h, basis)) as [Spread, Spread];
+  const s = side1.reachA + side2.reachA;
+  const k = system.couplingKJA;
+  const bound = (r: number) =>
+    k *
+    ((side1.absoluteE * side2.absoluteE * s * s) / (r * r * (r - s)) +
+      (side1.absoluteE * side2.strayE + side2.absoluteE * side1.strayE) / r +
+      (side1.absoluteE * side2.strayEA + side2.absoluteE * side1.strayEA) / (r * r) +
+      (2 * (side1.dipoleEA * side2.strayEA + side2.dipoleEA * side1.strayEA)) / (r * r * r));
+  let r = Math.max(2 * s, SHORTEST_START_A);
+  while (r < FARTHEST_A && !(bound(r) < NEGLIGIBLE_KT * system.kTKJPerMol)) r *= 1.25;
+  return r;
+}
+
+/** How far the reference of one fragment can stray from its point moments. */
+interface Spread {
+  /** Sum of the sizes of its charges, and at least its net charge. */
+  readonly absoluteE: number;
+  /** Farthest charge from the centre. */
+  readonly reachA: number;
+  readonly dipoleEA: number;
+  /** Difference of net charge and dipole between reference and use. */
+  readonly strayE: number;
+  readonly strayEA: number;
+}
+
+function spreadOf(system: System, f: number, basis: Basis): Spread {
+  const { chargeE, dipoleEA, extentA } = system.moments;
+  const size = Math.hypot(dipoleEA[3 * f]!, dipoleEA[3 * f + 1]!, dipoleEA[3 * f + 2]!);
+  const net = Math.abs(chargeE[f]!);
+  if (basis === 'extent') {
+    const a = extentA[f]!;
+    const ends = a > 0 ? (2 * size) / a : 0;
+    // Half the extent, and a quarter by which the midpoint moves.
+    return { absoluteE: net + ends, reachA: 0.75 * a, dipoleEA: size, strayE: 0, strayEA: 0 };
+  }
+  const charges = basis === 'charges' ? system.columnE : system.fittedE;
+  let absolute = 0;
+  let sum = 0;
+  let reach = 0;
+  const own = [0, 0, 0];
+  for (let i = system.starts[f]!; i < system.starts[f + 1]!; i++) {
+    const q = charges[i]!;
+    const r = [0, 1, 2].map((a) => system.localA[3 * i + a]!);
+    absolute += Math.abs(q);
+    sum += q;
+    if (q !== 0) reach = Math.max(reach, Math.hypot(...r));
+    for (let a = 0; a < 3; a++) own[a]! += q * r[a]!;
+  }
+  const strayEA = Math.hypot(...own.map((value, a) => value - dipoleEA[3 * f + a]!));
+  return {
+    absoluteE: Math.max(absolute, net),
+    reachA: reach,
+    dipoleEA: size,
+    strayE: Math.abs(sum - chargeE[f]!),
+    strayEA,
+  };
 }
 
 /** Where a function is lowest between two points, by golden section. */

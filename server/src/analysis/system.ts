@@ -140,21 +140,20 @@ function describeCharges(
   const { chargeE, columnChargeE, columnDipoleEA, dipoleEA } = moments;
   const from = starts[f]!;
   const to = starts[f + 1]!;
-  const isAtom = to - from === 1;
   const hasColumn = !Number.isNaN(columnChargeE[f]!);
   const dipole: [number, number, number] = [dipoleEA[3 * f]!, dipoleEA[3 * f + 1]!, dipoleEA[3 * f + 2]!];
   const norm = Math.hypot(...dipole);
   flags.hasColumn[f] = hasColumn ? 1 : 0;
   flags.isIon[f] = Math.abs(chargeE[f]!) > ION_CHARGE_E ? 1 : 0;
   // NaN compares as unknown, which tells as little as zero.
-  flags.featureless[f] = !isAtom && !hasColumn && !(norm >= ZERO_DIPOLE_EA) ? 1 : 0;
+  flags.featureless[f] = !moments.isAtom[f] && !hasColumn && !(norm >= ZERO_DIPOLE_EA) ? 1 : 0;
   if (hasColumn) {
     const off = Math.hypot(...dipole.map((value, a) => value - columnDipoleEA[3 * f + a]!));
     const matches = off <= Math.max(OWN_SHARE * norm, OWN_DIPOLE_EA);
     flags.ownCharges[f] = matches && Math.abs(chargeE[f]! - columnChargeE[f]!) <= OWN_CHARGE_E ? 1 : 0;
   } else fittedE.fill(0, from, to);
   if (Number.isNaN(norm) || flags.featureless[f]) return;
-  // Ghosts keep the charge of their column and take no part in the change, unless they are all there is.
+  // Ghosts are charge sites only where a charge column makes them so.
   const movable: number[] = [];
   for (let k = from; k < to; k++) if (!ghost[k] || hasColumn) movable.push(k);
   const positions = new Float64Array(3 * movable.length);
@@ -180,6 +179,7 @@ function joinMoments(all: readonly Moments[]): Moments {
   };
   return {
     count: all.reduce((sum, moments) => sum + moments.count, 0),
+    isAtom: Uint8Array.from(all.flatMap((m) => [...m.isAtom])),
     centreA: join((m) => m.centreA),
     extentA: join((m) => m.extentA),
     chargeE: join((m) => m.chargeE),

@@ -34,6 +34,7 @@ export function annotateXyz(
     // What was wrong with these keys has been said at the first frame.
     const silent = new XyzBinder(new ValueReader(text, new FindingCollector()), frame, set, formulas, notes);
     silent.bind(first.entries, (key) => INHERITED_KEYS.includes(key) && !own.has(key));
+    if (set.origin === 'column' && frame.groups === null) silent.nameByGroups(first);
   }
   return notes;
 }
@@ -67,9 +68,7 @@ class XyzBinder {
       const entry = entryOf(key);
       if (entry !== undefined) this.#distribute(entry, perFragment, assign);
     };
-    if (this.#frame.groups?.areWords) {
-      for (const [f, note] of this.#notes.entries()) note.name = this.#groupName(f);
-    }
+    if (wanted('fragment')) this.nameByGroups(this.#frame);
     const names = entryOf('fragment_names');
     if (names !== undefined) this.#bindNames(names);
     each('fragment_charges', 1, (f, [item]) => {
@@ -107,10 +106,13 @@ class XyzBinder {
     }
   }
 
-  #groupName(fragment: number): string | null {
-    const group = this.#frame.atoms.group![atomsOf(this.#set, fragment)[0]!]!;
-    const name = this.#frame.groups!.names[group]!;
-    return /^[+-]?\d+$/.test(name) ? null : name;
+  /** Takes the words of a fragment column as names, where there are none yet. */
+  nameByGroups({ groups, atoms }: FrameTree): void {
+    if (!groups?.areWords) return;
+    for (const [f, note] of this.#notes.entries()) {
+      const name = groups.names[atoms.group![atomsOf(this.#set, f)[0]!]!]!;
+      if (!/^[+-]?\d+$/.test(name)) note.name ??= name;
+    }
   }
 
   #bindNames(entry: Entry): void {

@@ -41,7 +41,7 @@ function closeLimitA(z1: number, z2: number): number {
   const covalent = COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!;
   const clash = Math.max(CLASH_RATIO * (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!), CLASH_COVALENT * (covalent || 0));
   const bond = bondLimitA(z1, z2);
-  return bond > clash ? bond : clash;
+  return Number.isNaN(bond) ? clash : Math.max(bond, clash);
 }
 
 /** Whether an element can share a proton with another: N, O, F. */

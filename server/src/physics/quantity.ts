@@ -264,6 +264,7 @@ class QuantityParser {
       if (this.#tokens[this.#at++] !== ')') throw new QuantityError('syntax', 'A parenthesis is not closed.');
       return value;
     }
+    if (!/^[A-Za-zÅ°]/.test(token)) throw new QuantityError('syntax', `"${token}" is out of place.`);
     const name = token === 'a.u.' || token === 'au' ? this.#atomic : UNIT_WORDS.get(token);
     if (name === undefined || name === null)
       throw new QuantityError('unit', `"${token}" is no unit that can be used here.`);

@@ -1,6 +1,6 @@
 /**
  * One version of a text, immutable: its UTF-16 code units mirrored as one byte each, so that a byte offset is a UTF-16 offset
- * and scanners never touch a string. Code units above 0x7E become 0x80; where one matters (names, messages) the string is cut.
+ * and scanners never touch a string. Code units above 0x7F become 0x80; where one matters (names, messages) the string is cut.
  */
 export interface Snapshot {
   /** One byte a code unit, followed by {@link PADDING} line feeds so that scanners may look ahead. */
@@ -57,7 +57,7 @@ function mirror(text: string): Uint8Array {
   if (written !== length || !isAscii(bytes, length)) {
     for (let i = 0; i < length; i++) {
       const unit = text.charCodeAt(i);
-      bytes[i] = unit < NOT_ASCII ? unit : NOT_ASCII;
+      bytes[i] = Math.min(unit, NOT_ASCII);
     }
   }
   bytes.fill(LINE_FEED, length);
