@@ -191,10 +191,9 @@ function spreadOf(system: System, f: number, basis: Basis): Spread {
   const size = Math.hypot(dipoleEA[3 * f]!, dipoleEA[3 * f + 1]!, dipoleEA[3 * f + 2]!);
   const net = Math.abs(chargeE[f]!);
   if (basis === 'extent') {
-    const a = extentA[f]!;
-    const ends = a > 0 ? (2 * size) / a : 0;
-    // Half the extent, and a quarter by which the midpoint moves.
-    return { absoluteE: net + ends, reachA: 0.75 * a, dipoleEA: size, strayE: 0, strayEA: 0 };
+    // A point dipole strays no farther than one of an ångström; else half the extent, and a quarter by which the midpoint moves.
+    const a = extentA[f]! || 1;
+    return { absoluteE: net + (2 * size) / a, reachA: 0.75 * a, dipoleEA: size, strayE: 0, strayEA: 0 };
   }
   const charges = basis === 'charges' ? system.columnE : system.fittedE;
   let absolute = 0;
