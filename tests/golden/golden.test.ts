@@ -21,7 +21,10 @@ const COMMANDS: readonly (readonly [suffix: string, args: (file: string) => stri
 
 function run(args: readonly string[]): string {
   try {
-    return execFileSync('node', ['server/dist/cli.cjs', ...args], { encoding: 'utf8', stdio: ['ignore', 'pipe', 'pipe'] });
+    return execFileSync('node', ['server/dist/cli.cjs', ...args], {
+      encoding: 'utf8',
+      stdio: ['ignore', 'pipe', 'pipe'],
+    });
   } catch (error) {
     // Status 1 is what findings are for.
     const { status, stdout } = error as { status: number; stdout: string };

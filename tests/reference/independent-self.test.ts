@@ -404,7 +404,7 @@ describe('PDB', () => {
       ['inner', 0, 'assumed', 'annotated'],
       ['HOH', 0, 'assumed', 'axis'],
       ['CL', -1, 'formal', 'atom'],
-      ['HOH', 2, 'formal', 'annotated'],
+      ['HOH+ZN', 2, 'formal', 'annotated'],
     ]);
     expect(frame.fragments[5]).toMatchObject({ atoms: [11, 12], dipoleD: null });
     close(frame.fragments[5].dipoleNormD!, 1.855, 1e-12);

@@ -16,7 +16,11 @@ export interface Analysed {
 }
 
 /** Parses a text, analyses all frames, and takes all pairs and findings. */
-export function analyse(text: string, language: Language = 'xyz', request: AnalysisRequest = DEFAULT_REQUEST): Analysed {
+export function analyse(
+  text: string,
+  language: Language = 'xyz',
+  request: AnalysisRequest = DEFAULT_REQUEST,
+): Analysed {
   const tree = parse(snapshotOf(text), language);
   const file = new FileAnalysis(tree, request);
   const findings = new FileFindings(tree);
@@ -33,5 +37,8 @@ export function underlined(text: string, findings: readonly Finding[]): string[]
 /** The text after the edits of a finding's fix. */
 export function applyFix(text: string, finding: Finding): string {
   const edits = [...(finding.fix?.edits ?? [])].sort((a, b) => b.start - a.start);
-  return edits.reduce((result, { start, end, text: piece }) => result.slice(0, start) + piece + result.slice(end), text);
+  return edits.reduce(
+    (result, { start, end, text: piece }) => result.slice(0, start) + piece + result.slice(end),
+    text,
+  );
 }

@@ -8,7 +8,7 @@ const SOURCE = resolve('server/src');
 const MAY_IMPORT: Readonly<Record<string, { folders: readonly string[]; packages: readonly string[] }>> = {
   base: { folders: [], packages: [] },
   physics: { folders: ['base'], packages: ['mathjs'] },
-  text: { folders: ['base', 'physics'], packages: [] },
+  text: { folders: ['base'], packages: [] },
   formats: { folders: ['base', 'physics', 'text'], packages: [] },
   model: { folders: ['base', 'physics', 'text', 'formats'], packages: [] },
   analysis: { folders: ['base', 'physics', 'text', 'formats', 'model'], packages: [] },

@@ -69,6 +69,11 @@ export class FileFindings {
 
   /** Everything found so far, in the order of the text, without what the file does not want to hear. */
   list(): Finding[] {
-    return this.#findings.list().filter((entry) => !this.#silenced.has(entry.code));
+    return this.#findings
+      .list()
+      .filter((entry) => !this.#silenced.has(entry.code))
+      .map(({ more, ...entry }) =>
+        more === undefined ? entry : { ...entry, message: `${entry.message} (${more} more like this are not listed.)` },
+      );
   }
 }

@@ -1,4 +1,3 @@
-import { imageResult, minimumImage } from '../model/cell';
 import { NeighbourBuffer, PointGrid } from '../model/point-grid';
 import type { System } from './system';
 
@@ -6,34 +5,32 @@ import type { System } from './system';
 const ION_CUTOFFS = 3;
 /** Contacts are found whatever the cutoff: no two atoms touch over a longer distance, Å. */
 const CONTACT_REACH_A = 7;
-/** Fragments of a larger extent are looked through one by one, so that they do not widen the search for all others, Å. */
-const BIG_EXTENT_A = 10;
+/** Each tier holds fragments of up to twice the extent of the one before, so that large ones do not widen the search for small. */
+const FIRST_TIER_EXTENT_A = 4;
 
-/** Finds the partners of each fragment within the cutoff; linear in the fragments while these are small. */
+interface Tier {
+  readonly grid: PointGrid;
+  readonly largestA: number;
+}
+
+/** Finds the partners of each fragment within the cutoff with cells, whatever the mixture of sizes. */
 export class Partners {
   readonly #system: System;
-  readonly #all: Int32Array;
-  readonly #big: Int32Array;
-  readonly #small: PointGrid;
-  readonly #ions: PointGrid;
-  readonly #smallExtentA: number;
-  readonly #ionExtentA: number;
+  readonly #tiers: readonly Tier[];
+  /** Ions once more: they see each other three times as far. */
+  readonly #ionTiers: readonly Tier[];
   readonly #buffer = new NeighbourBuffer();
 
   constructor(system: System) {
     this.#system = system;
-    const { extentA, centreA } = system.moments;
     const all = Int32Array.from({ length: system.count }, (_, f) => f).filter((f) => system.usable[f] === 1);
-    const small = all.filter((f) => extentA[f]! <= BIG_EXTENT_A);
-    const ions = all.filter((f) => system.isIon[f] === 1);
-    const largest = (members: Int32Array) => members.reduce((most, f) => Math.max(most, extentA[f]!), 0);
-    this.#all = all;
-    this.#big = all.filter((f) => extentA[f]! > BIG_EXTENT_A);
-    this.#smallExtentA = largest(small);
-    this.#ionExtentA = largest(ions);
-    const reach = Math.max(system.settings.cutoffA, CONTACT_REACH_A);
-    this.#small = new PointGrid(centreA, small, reach + 2 * this.#smallExtentA, system.cell);
-    this.#ions = new PointGrid(centreA, ions, ION_CUTOFFS * reach + 2 * this.#ionExtentA, system.cell);
+    const reach = reachOf(system);
+    this.#tiers = tiersOf(system, all, reach);
+    this.#ionTiers = tiersOf(
+      system,
+      all.filter((f) => system.isIon[f] === 1),
+      ION_CUTOFFS * reach,
+    );
   }
 
   /**
@@ -42,47 +39,60 @@ export class Partners {
    */
   of(f: number, onlyAfter: boolean): number[] {
     const system = this.#system;
-    if (!system.usable[f]) return [];
-    const { extentA } = system.moments;
-    const { cutoffA } = system.settings;
-    const reach = Math.max(cutoffA, CONTACT_REACH_A);
     const found: number[] = [];
+    if (!system.usable[f]) return found;
+    const { extentA } = system.moments;
+    const reach = reachOf(system) + extentA[f]!;
     const ion = system.isIon[f] === 1;
-    const isBig = extentA[f]! > BIG_EXTENT_A;
-    const candidates = isBig ? this.#all : this.#big;
-    for (const g of candidates) {
-      if (onlyAfter ? g <= f : g === f) continue;
-      if (ion && system.isIon[g]) continue;
-      if (centreDistance(system, f, g) <= reach + extentA[f]! + extentA[g]!) found.push(g);
-    }
-    if (!isBig) {
-      this.#collect(this.#small, f, reach + extentA[f]! + this.#smallExtentA, onlyAfter, (g, d) => {
-        if (!(ion && system.isIon[g]) && d <= reach + extentA[f]! + extentA[g]!) found.push(g);
-      });
-    }
+    this.#collect(this.#tiers, f, reach, onlyAfter, (g, d) => {
+      if (!(ion && system.isIon[g]) && d <= reach + extentA[g]!) found.push(g);
+    });
     if (ion) {
-      const ionReach = ION_CUTOFFS * reach;
-      this.#collect(this.#ions, f, ionReach + extentA[f]! + this.#ionExtentA, onlyAfter, (g, d) => {
-        if (d <= ionReach + extentA[f]! + extentA[g]!) found.push(g);
+      const ionReach = ION_CUTOFFS * reachOf(system) + extentA[f]!;
+      this.#collect(this.#ionTiers, f, ionReach, onlyAfter, (g, d) => {
+        if (d <= ionReach + extentA[g]!) found.push(g);
       });
     }
     return found.sort((a, b) => a - b);
   }
 
   #collect(
-    grid: PointGrid,
+    tiers: readonly Tier[],
     f: number,
-    radiusA: number,
+    reachA: number,
     onlyAfter: boolean,
     visit: (g: number, d: number) => void,
   ): void {
     const buffer = this.#buffer;
-    grid.gather(f, radiusA, onlyAfter, buffer);
-    for (let k = 0; k < buffer.count; k++) {
-      const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
-      visit(buffer.index[k]!, d);
+    for (const { grid, largestA } of tiers) {
+      grid.gather(f, reachA + largestA, onlyAfter, buffer);
+      for (let k = 0; k < buffer.count; k++) {
+        const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
+        visit(buffer.index[k]!, d);
+      }
     }
   }
+}
+
+function reachOf(system: System): number {
+  return Math.max(system.settings.cutoffA, CONTACT_REACH_A);
+}
+
+function tiersOf(system: System, members: Int32Array, reachA: number): Tier[] {
+  const { extentA, centreA } = system.moments;
+  const tierOf = (f: number) => Math.max(0, Math.ceil(Math.log2(extentA[f]! / FIRST_TIER_EXTENT_A)));
+  const byTier = new Map<number, number[]>();
+  for (const f of members) {
+    const tier = tierOf(f);
+    const list = byTier.get(tier);
+    if (list === undefined) byTier.set(tier, [f]);
+    else list.push(f);
+  }
+  return [...byTier.values()].map((list) => {
+    const largestA = list.reduce((most, f) => Math.max(most, extentA[f]!), 0);
+    const grid = new PointGrid(centreA, Int32Array.from(list), reachA + 2 * largestA, system.cell);
+    return { grid, largestA };
+  });
 }
 
 /** Whether a pair belongs to the list by its distance alone. */
@@ -90,14 +100,4 @@ export function isWithinCutoff(system: System, f: number, g: number, distanceA: 
   const { extentA } = system.moments;
   const cutoff = system.settings.cutoffA * (system.isIon[f] && system.isIon[g] ? ION_CUTOFFS : 1);
   return distanceA - extentA[f]! - extentA[g]! <= cutoff;
-}
-
-const IMAGE = imageResult();
-
-function centreDistance(system: System, f: number, g: number): number {
-  const { centreA } = system.moments;
-  const d = [0, 1, 2].map((a) => centreA[3 * g + a]! - centreA[3 * f + a]!) as [number, number, number];
-  if (system.cell === null) return Math.hypot(...d);
-  minimumImage(system.cell, ...d, IMAGE);
-  return Math.hypot(...IMAGE.vectorA);
 }

@@ -85,8 +85,9 @@ export const CATALOGUE = {
   'selector-unmatched': {
     severity: 'error',
     title: 'Selector matches nothing',
-    meaning: 'A REMARK annotation selects a fragment (chain:residue:number) that the file does not hold.',
-    remedy: 'Correct the chain, residue name or number; `*` matches any, `_` a blank chain.',
+    meaning:
+      'A REMARK annotation selects a fragment (chain:residue:number), or a kind_* key a composition, that is not there.',
+    remedy: 'Name what the file holds; in a selector `*` matches any part and `_` a blank chain.',
   },
   'key-repeated': {
     severity: 'error',
@@ -137,7 +138,7 @@ export const CATALOGUE = {
     severity: 'warning',
     title: 'Point dipole does not hold',
     meaning:
-      'The pair interacts noticeably (more than half of kT) and the point-dipole estimate differs from the reference by more than twice the tolerance.',
+      'The pair interacts noticeably (more than half of kT), and the point-dipole estimate differs from the reference by more than twice what is allowed: the tolerance (20 %) of the reference, or 0.1 kT where that is more.',
     remedy: 'Do not trust the point-dipole number; compute this pair.',
   },
   'dipole-unit': {
@@ -220,7 +221,7 @@ export const CATALOGUE = {
   'key-misspelt': {
     severity: 'information',
     title: 'Key misspelt',
-    meaning: 'An unknown key is one or two letters from one of ours. It is ignored.',
+    meaning: 'An unknown key, or a finding in `silence`, is one or two letters from one of ours. It is ignored.',
     remedy: 'Correct the key.',
   },
   'value-unportable': {
@@ -234,14 +235,21 @@ export const CATALOGUE = {
     severity: 'information',
     title: 'Point dipole at its edge',
     meaning:
-      'The point-dipole estimate differs from the reference by more than the tolerance, but less than twice of it.',
+      'The point-dipole estimate differs from the reference by more than what is allowed (the tolerance of the reference, or 0.1 kT where that is more), but by less than twice of it.',
     remedy: 'Use the number with care.',
   },
   'dipole-missing': {
     severity: 'information',
     title: 'No dipole',
     meaning: 'Nothing says what the dipole of this kind of fragment is, so its pairs have no estimate.',
-    remedy: 'Give fragment_dipoles, or kind_dipole_sizes with kind_axes, or a charge column.',
+    remedy: 'Give its dipole as a vector, or as a size with an axis, or give atomic charges.',
+  },
+  'dipole-direction': {
+    severity: 'information',
+    title: 'Dipole without a direction',
+    meaning:
+      'The size of a dipole is given, and neither an axis, whose atoms are all there, nor charges tell its direction. Only the thermal average can be given.',
+    remedy: 'Give an axis that names atoms of the fragment.',
   },
   'dipole-origin': {
     severity: 'information',

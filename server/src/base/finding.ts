@@ -25,6 +25,8 @@ export interface Finding extends Span {
   readonly message: string;
   readonly related: readonly Related[];
   readonly fix?: Fix;
+  /** How many more of its code were met and only counted, on the last one kept. */
+  readonly more?: number;
 }
 
 /** What a site adds to the catalogue's entry. */
@@ -33,13 +35,16 @@ export interface FindingDetail {
   readonly fix?: Fix;
 }
 
+/** A reason quotes pieces of the file; one that runs on is cut. */
+const LONGEST_REASON = 600;
+
 /** Makes a finding: `reason` says what was seen, the catalogue adds what to do. */
 export function finding(code: FindingCode, span: Span, reason: string, detail: FindingDetail = {}): Finding {
   const entry = CATALOGUE[code];
   return {
     code,
     severity: entry.severity,
-    message: `${reason} ${entry.remedy}`,
+    message: `${reason.length > LONGEST_REASON ? `${reason.slice(0, LONGEST_REASON)}…` : reason} ${entry.remedy}`,
     start: span.start,
     end: span.end,
     related: detail.related ?? [],
@@ -65,8 +70,10 @@ export class FindingCollector {
     if (this.#admits(code, span)) this.#kept.push(finding(code, span, reason(), detail?.()));
   }
 
-  push(entry: Finding): void {
+  /** Takes over a finding of another collector, with what that one only counted. */
+  push({ more = 0, ...entry }: Finding): void {
     if (this.#admits(entry.code, entry)) this.#kept.push(entry);
+    if (more > 0) this.#counts.set(entry.code, this.count(entry.code) + more);
   }
 
   #admits(code: FindingCode, { start, end }: Span): boolean {
@@ -89,9 +96,8 @@ export class FindingCollector {
     const list = [...this.#kept];
     for (const [code, count] of this.#counts) {
       const index = this.#last.get(code);
-      if (count <= KEPT_PER_CODE || index === undefined) continue;
-      const entry = list[index]!;
-      list[index] = { ...entry, message: `${entry.message} (${count - KEPT_PER_CODE} more like this are not listed.)` };
+      const kept = list.filter((entry) => entry.code === code).length;
+      if (count > kept && index !== undefined) list[index] = { ...list[index]!, more: count - kept };
     }
     return sortFindings(list);
   }

@@ -60,9 +60,10 @@ export async function dimersCommand(
   pacer.done();
   for (const line of refused) process.stderr.write(`polewise: ${line}\n`);
   if (!options.force) await refuseToOverwrite(planned);
-  await mkdir(options.out, { recursive: true }).catch((error: NodeJS.ErrnoException) => {
-    throw new UsageError(`${options.out}: cannot be made: ${error.message}`);
-  });
+  if (planned.length > 0)
+    await mkdir(options.out, { recursive: true }).catch((error: NodeJS.ErrnoException) => {
+      throw new UsageError(`${options.out}: cannot be made: ${error.message}`);
+    });
   for (const file of planned) await writeWhole(file);
   // Told when all is done: whoever stops listening must not stop the writing.
   process.stdout.write(planned.map(({ path }) => `${path}\n`).join(''));

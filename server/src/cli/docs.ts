@@ -20,8 +20,8 @@ function findingsSection(): string {
 }
 
 function mediaSection(): string {
-  return MEDIA.map(({ name, relativePermittivity, temperatureK }) => {
-    return `${name} ${relativePermittivity}${temperatureK === null ? '' : ` (${temperatureK} K)`}`;
+  return MEDIA.map(({ name, otherNames, relativePermittivity, temperatureK }) => {
+    return `${[name, ...otherNames].join(', ')} ${relativePermittivity}${temperatureK === null ? '' : ` (${temperatureK} K)`}`;
   }).join(' · ');
 }
 

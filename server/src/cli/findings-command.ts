@@ -1,9 +1,11 @@
 import { FileFindings } from '../analysis/findings';
 import { FileAnalysis } from '../analysis/frame-analysis';
 import type { AnalysisRequest } from '../analysis/settings';
+import type { Part } from '../analysis/system';
 import { SEVERITIES, type Severity } from '../base/catalogue';
 import { type FindingRecord, findingRecord } from '../features/records';
 import type { CoordinateTree, Language } from '../formats/tree';
+import { readCompanion } from './companion';
 import { readCoordinates, UsageError } from './input';
 import { Output, Pacer } from './output';
 import { sarifLog } from './sarif';
@@ -12,6 +14,7 @@ export interface FindingsOptions {
   readonly format: 'text' | 'json' | 'sarif';
   readonly failOn: Exclude<Severity, 'hint'>;
   readonly language?: Language;
+  readonly with?: string;
 }
 
 /** The findings of one file. */
@@ -31,11 +34,12 @@ export async function findingsCommand(
   const output = new Output();
   const pacer = new Pacer();
   const reports: FileReport[] = [];
+  const companion = options.with === undefined ? null : await readCompanion(options.with, request);
   let failed = false;
   for (const name of files) {
     try {
       const file = await readCoordinates(name, options.language);
-      const report = await reportOf(name, file, request, pacer);
+      const report = await reportOf(name, file, request, companion, pacer);
       reports.push(report);
       if (options.format === 'text')
         for (const finding of report.findings) output.write(`${textLine(name, finding)}\n`);
@@ -49,7 +53,7 @@ export async function findingsCommand(
     }
   }
   pacer.done();
-  if (options.format === 'text') output.write(`${summary(reports)}\n`);
+  if (options.format === 'text') output.write(reports.length === 0 ? '' : `${summary(reports)}\n`);
   else if (options.format === 'sarif') output.write(`${JSON.stringify(sarifLog(reports), null, 2)}\n`);
   else if (files.length > 1 || reports.length > 0) {
     const data = reports.map((report) => ({ schema: 'polewise/findings/1', ...report }));
@@ -67,9 +71,10 @@ async function reportOf(
   name: string,
   file: CoordinateTree,
   request: AnalysisRequest,
+  companion: Part | null,
   pacer: Pacer,
 ): Promise<FileReport> {
-  const analysis = new FileAnalysis(file, request);
+  const analysis = new FileAnalysis(file, request, companion);
   const found = new FileFindings(file);
   for (let index = 0; index < file.frames.length; index++) {
     const progress = () => `${name}: frame ${index + 1} of ${file.frames.length}`;

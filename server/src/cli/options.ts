@@ -25,6 +25,15 @@ export function positive(dimension: Dimension, what: string): (text: string) => 
   };
 }
 
+/** A share such as `0.2` or `20%`, above 0 and up to 1. */
+function share(text: string): number {
+  const percent = /^(.*\d)\s*%$/.exec(text.trim());
+  const result = readQuantity(percent?.[1] ?? text, 'number');
+  const value = result.ok ? result.value / (percent === null ? 1 : 100) : Number.NaN;
+  if (value > 0 && value <= 1) return value;
+  throw new InvalidArgumentError('It is a share above 0 and up to 1, such as 0.2 or 20%.');
+}
+
 function permittivity(text: string): number {
   const medium = findMedium(text);
   if (medium !== undefined) return medium.relativePermittivity;
@@ -37,25 +46,28 @@ function permittivity(text: string): number {
 export function withAnalysisFlags(command: Command): Command {
   return command
     .addOption(
-      new Option('--temperature <T>', 'temperature, K or with a unit such as "25 degC"').argParser(
+      new Option('--temperature <T>', 'temperature, K or with a unit such as "25 degC" (default 298.15)').argParser(
         positive('temperatureK', 'The temperature'),
       ),
     )
     .addOption(
-      new Option('--permittivity <value>', 'relative permittivity, a number or a medium such as water').argParser(
-        permittivity,
-      ),
+      new Option(
+        '--permittivity <value>',
+        'relative permittivity, a number or a medium such as water (default 1)',
+      ).argParser(permittivity),
     )
-    .addOption(new Option('--centre <which>', 'the point that stands for a fragment').choices(CENTRES))
+    .addOption(new Option('--centre <which>', 'the point that stands for a fragment (default mass)').choices(CENTRES))
     .addOption(
-      new Option('--tolerance <share>', 'share of the reference by which the point dipole may be off').argParser(
-        positive('number', 'The tolerance'),
-      ),
+      new Option(
+        '--tolerance <share>',
+        'share of the reference by which the point dipole may be off (default 0.2)',
+      ).argParser(share),
     )
     .addOption(
-      new Option('--cutoff <distance>', 'between the surfaces of two fragments, Å or with a unit').argParser(
-        positive('lengthA', 'The cutoff'),
-      ),
+      new Option(
+        '--cutoff <distance>',
+        'between the extents of two fragments, Å or with a unit (default 12)',
+      ).argParser(positive('lengthA', 'The cutoff')),
     )
     .option('--periodic', 'use the cell of the file even where the format by itself does not')
     .addOption(new Option('--language <format>', 'format of the files').choices(['xyz', 'pdb']));

@@ -1,16 +1,15 @@
 import { FileFindings } from '../analysis/findings';
 import { FileAnalysis, type FrameAnalysis } from '../analysis/frame-analysis';
-import { computeMoments } from '../analysis/moments';
 import type { Pair } from '../analysis/pair';
 import type { AnalysisRequest } from '../analysis/settings';
 import type { Part } from '../analysis/system';
-import { FindingCollector } from '../base/finding';
 import { type FragmentName, type PairRecord, pairRecord } from '../features/records';
 import { parseSelector, selectorMatches } from '../formats/pdb/remarks';
 import type { CoordinateTree, Language } from '../formats/tree';
 import { atomsOf } from '../model/fragment-set';
-import { buildFrameModel, type FrameModel } from '../model/frame-model';
+import type { FrameModel } from '../model/frame-model';
 import type { EnergyUnit } from '../physics/units';
+import { readCompanion } from './companion';
 import { readCoordinates, UsageError } from './input';
 import { Output, Pacer } from './output';
 import { csvReport } from './report-csv';
@@ -185,13 +184,4 @@ function focusOf(
     });
   }
   return fragments.map((f) => nameOf(f).name === focus || nameOf(f).label === focus);
-}
-
-/** The first frame of the file whose fragments join every frame. */
-export async function readCompanion(name: string, request: AnalysisRequest): Promise<Part> {
-  const file = await readCoordinates(name, undefined);
-  const tree = file.frames[0];
-  if (tree === undefined) throw new UsageError(`${name}: holds no frame`);
-  const model = buildFrameModel(file, tree, null, false, new FindingCollector());
-  return { model, moments: computeMoments(model, request.settings.centre) };
 }

@@ -2,11 +2,12 @@ import { Command, CommanderError, InvalidArgumentError, Option } from 'commander
 import type { Advice } from '../analysis/advice';
 import { DEFAULT_ENERGY_UNIT } from '../analysis/settings';
 import { ENERGY_UNITS } from '../physics/units';
+import { readCompanion } from './companion';
 import { type DimersOptions, dimersCommand } from './dimers-command';
 import { type FindingsOptions, findingsCommand } from './findings-command';
 import { UsageError } from './input';
 import { type AnalysisFlags, positive, requestOf, withAnalysisFlags } from './options';
-import { type PairsOptions, pairsCommand, readCompanion } from './pairs-command';
+import { type PairsOptions, pairsCommand } from './pairs-command';
 import { VERSION } from './version';
 
 const ADVICE: readonly Advice[] = ['accept', 'review', 'compute', 'repair'];
@@ -28,7 +29,11 @@ function withFrameFlags(command: Command): Command {
   return command
     .addOption(new Option('--frame <N>', 'frame number, or all').argParser(frameNumber).default('all'))
     .option('--focus <selector>', 'only pairs with this fragment: a number, a name, or chain:residue:number')
-    .option('--with <file>', 'a file whose fragments join every frame, such as a receptor');
+    .addOption(withFlag());
+}
+
+function withFlag(): Option {
+  return new Option('--with <file>', 'a file whose fragments join every frame, such as a receptor');
 }
 
 type Status = { value: number };
@@ -49,6 +54,7 @@ function buildProgram(status: Status): Command {
         .choices(['error', 'warning', 'information'])
         .default('error'),
     )
+    .addOption(withFlag())
     .action(async (files: string[], options: AnalysisFlags & FindingsOptions) => {
       status.value = await findingsCommand(files, requestOf(options), options);
     });

@@ -15,6 +15,7 @@ import { type Column, textTable } from './table';
 
 const MOST_FRAGMENTS = 30;
 const NOTHING = '–';
+const PARTIAL = '*';
 
 const CAUTIONS =
   'Estimates for triage, no substitute for a quantum calculation. Hydrogen bonds, charge transfer and exchange are in none of these\n' +
@@ -43,9 +44,13 @@ export function textReport(options: PairsOptions): PairReport {
       }
       output.write('\n');
       output.write(
-        rows.length === 0 ? `  No pairs within ${frame.settings.cutoffA} Å.\n` : textTable(pairColumns(options), rows),
+        rows.length === 0
+          ? `  No pairs within ${frame.settings.cutoffA} Å.\n`
+          : `  Energies in ${options.unit}\n${textTable(PAIR_COLUMNS, rows)}`,
       );
-      output.write(`\n${footText(opened, rows.length, advice)}${CAUTIONS}`);
+      const partial = rows.some((row) => row.some((cell) => cell.endsWith(PARTIAL)));
+      if (partial) output.write(`  ${PARTIAL} of the charges alone: a dipole is unknown\n`);
+      output.write(`\n${footText(opened, options.with, rows.length, advice)}${CAUTIONS}`);
     },
     end() {},
   };
@@ -56,9 +61,9 @@ function headText({ name, file, frameNumbers }: FileForReport, frame: FrameAnaly
   const total = file.frames.length;
   const follow = frameNumbers.length - 1;
   const facts = [
-    `${model.tree.atoms.count} atoms`,
-    `${system.count} fragments`,
-    `${settings.temperatureK} K (kT = ${system.kTKJPerMol.toFixed(3)} kJ/mol)`,
+    plural(model.tree.atoms.count, 'atom'),
+    plural(system.count, 'fragment'),
+    `${Number(settings.temperatureK.toFixed(2))} K (kT = ${system.kTKJPerMol.toFixed(3)} kJ/mol)`,
     `relative permittivity ${settings.relativePermittivity}`,
     `centre of ${settings.centre === 'nuclear-charge' ? 'nuclear charge' : settings.centre}`,
     ...(model.cell === null ? [] : ['periodic']),
@@ -96,30 +101,32 @@ function fragmentTable(frame: FrameAnalysis, nameOf: (f: number) => FragmentName
   return textTable(columns, rows) + (more > 0 ? `  … and ${more} more fragments\n` : '');
 }
 
-function pairColumns({ unit }: PairsOptions): Column[] {
-  return [
-    { title: 'pair', align: 'left' },
-    { title: 'R/Å', align: 'right' },
-    { title: 'θ₁/°', align: 'right' },
-    { title: 'θ₂/°', align: 'right' },
-    { title: 'φ/°', align: 'right' },
-    { title: 'arrangement', align: 'left' },
-    { title: `point dipole/${unit}`, align: 'right' },
-    { title: 'reference', align: 'right' },
-    { title: 'basis', align: 'left' },
-    { title: 'error', align: 'right' },
-    { title: '|E|/kT', align: 'right' },
-    { title: 'rotating', align: 'right' },
-    { title: 'motion', align: 'left' },
-    { title: 'contact', align: 'left' },
-    { title: 'regime', align: 'left' },
-    { title: 'advice', align: 'left' },
-  ];
-}
+const PAIR_COLUMNS: readonly Column[] = [
+  { title: 'pair', align: 'left' },
+  { title: 'R/Å', align: 'right' },
+  { title: 'θ₁/°', align: 'right' },
+  { title: 'θ₂/°', align: 'right' },
+  { title: 'φ/°', align: 'right' },
+  { title: 'arrangement', align: 'left' },
+  { title: 'point', align: 'right' },
+  { title: 'reference', align: 'right' },
+  { title: 'basis', align: 'left' },
+  { title: 'error', align: 'right' },
+  { title: '|E|/kT', align: 'right' },
+  { title: 'rotating', align: 'right' },
+  { title: 'motion', align: 'left' },
+  { title: 'contact', align: 'left' },
+  { title: 'regime', align: 'left' },
+  { title: 'advice', align: 'left' },
+];
 
 function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale: number, kTKJPerMol: number): string[] {
   const energy = (value: Maybe) => (value === null ? NOTHING : shownEnergy(value * scale));
-  const matters = record.referenceKJPerMol ?? record.energyKJPerMol.pointDipole ?? record.energyKJPerMol.coulomb;
+  const { pointDipole, chargeCharge, coulomb } = record.energyKJPerMol;
+  // Two ions whose dipoles are unknown: what their charges do is known, and is most of it.
+  const partial = pointDipole === null && chargeCharge !== null && chargeCharge !== 0 ? chargeCharge : null;
+  const mark = partial === null ? '' : PARTIAL;
+  const matters = record.referenceKJPerMol ?? pointDipole ?? coulomb ?? partial;
   return [
     `${record.first}–${record.second} ${nameOf(record.first - 1).name}·${nameOf(record.second - 1).name}`,
     fixed(record.distanceA, 2),
@@ -127,17 +134,21 @@ function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale:
     fixed(record.theta2Deg, 0),
     fixed(record.phiDeg, 0),
     record.arrangement ?? NOTHING,
-    energy(record.energyKJPerMol.pointDipole),
+    energy(pointDipole ?? partial) + mark,
     energy(record.referenceKJPerMol),
     record.basis === 'none' ? NOTHING : record.basis,
     record.relativeError === null ? NOTHING : percent(record.relativeError),
-    matters === null ? NOTHING : fixed(Math.abs(matters) / kTKJPerMol, 1),
+    matters === null ? NOTHING : fixed(Math.abs(matters) / kTKJPerMol, 1) + mark,
     energy(record.thermal.averageKJPerMol),
     record.thermal.motion ?? NOTHING,
     record.contact,
     record.regime ?? NOTHING,
     record.advice ?? NOTHING,
   ];
+}
+
+function plural(count: number, what: string): string {
+  return `${count} ${what}${count === 1 ? '' : 's'}`;
 }
 
 function percent(share: number): string {
@@ -159,12 +170,20 @@ function shownEnergy(value: number): string {
 
 const ADVICE_ORDER: readonly (Advice | 'none')[] = ['repair', 'compute', 'review', 'accept', 'none'];
 
-function footText(opened: FileForReport, pairs: number, advice: ReadonlyMap<Advice | 'none', number>): string {
+function footText(
+  opened: FileForReport,
+  companion: string | undefined,
+  pairs: number,
+  advice: ReadonlyMap<Advice | 'none', number>,
+): string {
   const counts = ADVICE_ORDER.filter((key) => advice.has(key)).map((key) =>
     key === 'none' ? `${advice.get(key)} within one molecule` : `${advice.get(key)} to ${key}`,
   );
   const records = opened.findings.list().map((finding) => findingRecord(opened.file.lines, finding));
   const found = countsInWords(countBySeverity(records));
-  const findings = found === '' ? '' : `Findings: ${found}; see polewise findings ${opened.name}\n`;
+  const findings =
+    found === ''
+      ? ''
+      : `Findings: ${found}; see polewise findings${companion === undefined ? '' : ` --with ${companion}`} ${opened.name}\n`;
   return `${pairs} pair${pairs === 1 ? '' : 's'}${counts.length === 0 ? '' : `: ${counts.join(', ')}`}\n${findings}`;
 }

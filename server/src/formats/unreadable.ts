@@ -29,7 +29,10 @@ export function finishTree(tree: Omit<CoordinateTree, 'problems'>, problems: Fin
   problems.add('no-frame', span, () =>
     text.length === 0 ? 'The file is empty.' : 'No line of the file reads as an atom.',
   );
-  return { ...tree, frames: tree.frames.filter((frame) => frame.atoms.count > 0), problems: problems.list() };
+  const frames = tree.frames.filter((frame) => frame.atoms.count > 0);
+  // Without a single atom line a count that is not kept is no cause of its own.
+  const list = problems.list().filter((problem) => frames.length > 0 || problem.code !== 'count-wrong');
+  return { ...tree, frames, problems: list };
 }
 
 function isReadable(flags: number): boolean {

@@ -1,8 +1,9 @@
 import type { FindingCollector } from '../base/finding';
 import type { Entry } from '../formats/annotation/entries';
+import { SELECTED_KEYS } from '../formats/annotation/keys';
 import { listItems, valueText } from '../formats/annotation/lists';
 import { selectorMatches, selectorWeight } from '../formats/pdb/remarks';
-import type { FrameTree, RemarkAnnotation } from '../formats/tree';
+import type { FrameTree, RemarkAnnotation, Residue } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
@@ -26,25 +27,61 @@ export function annotatePdb(
     .flatMap((remark) => remark.entries)
     .find((entry) => entry.key === 'dipole_unit');
   const fileUnit = fileUnitEntry === undefined ? 'D' : reader.dipoleUnit(fileUnitEntry);
-  const selected = remarks
-    .filter((remark) => remark.selector !== null)
-    .map((remark, order) => ({ remark, order, weight: selectorWeight(remark.selector!) }))
-    .sort((a, b) => b.weight - a.weight || a.order - b.order);
+  const selected = new SelectedRemarks(remarks);
   return Array.from({ length: set.count }, (_, f) => {
     const note = emptyNotes();
-    if (selected.length === 0) return note;
-    const residues = residuesOf(frame, set, f);
-    const entries: Entry[] = [];
-    for (const { remark } of selected) {
-      if (!residues.some((residue) => selectorMatches(remark.selector!, residue))) continue;
-      for (const entry of remark.entries) {
-        if (!entries.some((earlier) => earlier.key === entry.key)) entries.push(entry);
-      }
-    }
-    bindFragment(reader, frame, set, f, entries, fileUnit, note);
+    if (selected.isEmpty) return note;
+    bindFragment(reader, frame, set, f, selected.entriesOf(residuesOf(frame, set, f)), fileUnit, note);
     return note;
   });
 }
+
+/** An axis names a few atoms; what names more is no axis. */
+const MOST_AXIS_NAMES = 200;
+
+/** Annotation lines with a selector, found by the residue number they ask for. */
+class SelectedRemarks {
+  readonly isEmpty: boolean;
+  readonly #byNumber = new Map<number | null, RankedRemark[]>();
+
+  constructor(remarks: readonly RemarkAnnotation[]) {
+    const ranked = remarks
+      .filter((remark) => remark.selector !== null)
+      .map((remark, order) => ({ remark, order, weight: selectorWeight(remark.selector!) }));
+    this.isEmpty = ranked.length === 0;
+    for (const entry of ranked) {
+      const { number } = entry.remark.selector!;
+      const list = this.#byNumber.get(number);
+      if (list === undefined) this.#byNumber.set(number, [entry]);
+      else list.push(entry);
+    }
+  }
+
+  /** Our keys that hold for a fragment of these residues; of two that give the same key, the more exact, then the first. */
+  entriesOf(residues: readonly Residue[]): Entry[] {
+    const matching = new Set<RankedRemark>();
+    for (const residue of residues) {
+      for (const list of [this.#byNumber.get(residue.number), this.#byNumber.get(null)]) {
+        for (const entry of list ?? []) if (selectorMatches(entry.remark.selector!, residue)) matching.add(entry);
+      }
+    }
+    const byKey = new Map<string, Entry>();
+    for (const { remark } of [...matching].sort((a, b) => b.weight - a.weight || a.order - b.order)) {
+      for (const entry of remark.entries) {
+        if (OUR_KEYS.has(entry.key) && !byKey.has(entry.key)) byKey.set(entry.key, entry);
+      }
+    }
+    return [...byKey.values()];
+  }
+}
+
+interface RankedRemark {
+  readonly remark: RemarkAnnotation;
+  readonly order: number;
+  readonly weight: number;
+}
+
+const OUR_KEYS: ReadonlySet<string> = new Set(SELECTED_KEYS);
 
 function residuesOf(frame: FrameTree, set: FragmentSet, f: number) {
   const indices = new Set(Array.from(atomsOf(set, f), (atom) => frame.atoms.residue![atom]!));
@@ -112,8 +149,12 @@ function bindFragment(
 function axisByNames(reader: ValueReader, frame: FrameTree, set: FragmentSet, f: number, entry: Entry): Axis | null {
   const sides = valueText(reader.text, entry)
     .split('>')
-    .map((side) => side.split(',').map((name) => name.trim()));
-  if (sides.length !== 2 || sides.some((names) => names.some((name) => name === ''))) {
+    .map((side) => [...new Set(side.split(',').map((name) => name.trim()))]);
+  if (
+    sides.length !== 2 ||
+    sides.some((names) => names.length > MOST_AXIS_NAMES) ||
+    sides.some((names) => names.some((name) => name === ''))
+  ) {
     return reader.invalid(entry.value, `"${reader.shown(entry.inner)}" is no axis; write atom names as in O>H1,H2.`);
   }
   const members = residuesOf(frame, set, f).flatMap((residue) =>

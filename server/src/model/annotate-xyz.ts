@@ -8,8 +8,13 @@ import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
 import { type Axis, emptyNotes, type FragmentNotes, ValueReader } from './annotation';
 import { canonicalFormula } from './formula';
-import { rangesOf } from './fragment-list';
+import { atomsInRanges, rangesOf } from './fragment-list';
 import { atomsOf, type FragmentSet } from './fragment-set';
+
+/** Longer lists are not completed by a fix. */
+const MOST_FIXED_ENTRIES = 1000;
+/** An axis names a few atoms; what names more is no axis. */
+const MOST_AXIS_NAMES = 200;
 
 /** Keys of the first frame that hold for a later one which does not give them itself. */
 const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
@@ -45,6 +50,7 @@ class XyzBinder {
   readonly #set: FragmentSet;
   readonly #formulas: readonly string[];
   readonly #notes: FragmentNotes[];
+  #byFormula: Map<string, number[]> | null = null;
 
   constructor(
     reader: ValueReader,
@@ -111,7 +117,7 @@ class XyzBinder {
     if (!groups?.areWords) return;
     for (const [f, note] of this.#notes.entries()) {
       const name = groups.names[atoms.group![atomsOf(this.#set, f)[0]!]!]!;
-      if (!/^[+-]?\d+$/.test(name)) note.name ??= name;
+      if (!/^(?:[+-]?\d+)?$/.test(name)) note.name ??= name;
     }
   }
 
@@ -142,7 +148,7 @@ class XyzBinder {
         const fragments = `${this.#set.count} fragment${this.#set.count === 1 ? '' : 's'}`;
         return `${entry.key} has ${items.length} entries, and ${fragments} need ${needed}${each}.`;
       },
-      () => ({ fix: lengthFix(entry, items, needed) }),
+      () => (needed > MOST_FIXED_ENTRIES ? {} : { fix: lengthFix(this.#reader.text, entry, items, needed) }),
     );
     return false;
   }
@@ -173,18 +179,27 @@ class XyzBinder {
         continue;
       }
       const value = { start: group.start + colon + 1, end: group.end };
-      let matches = 0;
-      for (let f = 0; f < this.#set.count; f++) {
-        if (this.#formulas[f] !== formula) continue;
-        matches++;
-        assign(f, value);
-      }
-      if (matches === 0) {
+      const matches = this.#ofKind(formula);
+      for (const f of matches) assign(f, value);
+      if (matches.length === 0) {
         problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {
           return `No fragment of the frame has the composition ${formula}.`;
         });
       }
     }
+  }
+
+  /** Fragments of a composition. */
+  #ofKind(formula: string): readonly number[] {
+    if (this.#byFormula === null) {
+      this.#byFormula = new Map();
+      for (const [f, kind] of this.#formulas.entries()) {
+        const list = this.#byFormula.get(kind);
+        if (list === undefined) this.#byFormula.set(kind, [f]);
+        else list.push(f);
+      }
+    }
+    return this.#byFormula.get(formula) ?? [];
   }
 
   #axisByNumbers(group: Span): Axis | null {
@@ -196,17 +211,22 @@ class XyzBinder {
     const read = (start: number, end: number) => {
       const ranges = rangesOf(text, { start, end });
       if (ranges.some(({ from, to }) => !(from >= 1 && to >= from && to <= count))) return [];
-      return ranges.flatMap(({ from, to }) => Array.from({ length: to - from + 1 }, (_, k) => from - 1 + k));
+      return atomsInRanges(ranges);
     };
     const before = mark < 0 ? [] : read(group.start, group.start + mark);
     const after = mark < 0 ? [] : read(group.start + mark + 1, group.end);
     if (before.length > 0 && after.length > 0) return { before, after, span: group };
+    if (/^[\d,-]+>[\d,-]+$/.test(words)) {
+      return this.#reader.invalid(group, `The axis "${this.#reader.shown(group)}" names atoms outside 1 to ${count}.`);
+    }
     return this.#reader.invalid(group, `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`);
   }
 
   #axisBySymbols(f: number, value: Span): Axis | null {
     const words = this.#reader.text.slice(value.start, value.end);
-    const sides = words.split('>').map((side) => this.#atomsNamed(f, side.split(',')));
+    const names = words.split('>').map((side) => new Set(side.split(',')));
+    const few = names.every((side) => side.size <= MOST_AXIS_NAMES);
+    const sides = few ? names.map((side) => this.#atomsNamed(f, side)) : [];
     if (sides.length === 2 && sides[0]!.length > 0 && sides[1]!.length > 0) {
       return { before: sides[0]!, after: sides[1]!, span: value };
     }
@@ -217,9 +237,9 @@ class XyzBinder {
   }
 
   /** Atoms of a fragment by element symbol, or by the label that stands in the file. */
-  #atomsNamed(f: number, names: readonly string[]): number[] {
+  #atomsNamed(f: number, names: ReadonlySet<string>): number[] {
     const members = [...atomsOf(this.#set, f)];
-    return names.flatMap((name) => {
+    return [...names].flatMap((name) => {
       const z = atomicNumberOf(name.trim());
       if (z > 0) return members.filter((atom) => this.#frame.atoms.element[atom] === z);
       return members.filter((atom) => {
@@ -230,8 +250,13 @@ class XyzBinder {
   }
 }
 
-/** Fills a list up with `nan`, or takes away what is too much. */
-function lengthFix(entry: Entry, items: readonly Span[], needed: number) {
+/** Fills a list up with `nan`, or takes away what is too much; a bare value needs quotes to become a list. */
+function lengthFix(source: Snapshot, entry: Entry, items: readonly Span[], needed: number) {
+  if (entry.form === 'bare') {
+    const words = items.slice(0, needed).map(({ start, end }) => source.slice(start, end));
+    while (words.length < needed) words.push('nan');
+    return { title: `Give ${needed} entries`, edits: [{ ...entry.value, text: `"${words.join(' ')}"` }] };
+  }
   if (items.length > needed) {
     const start = needed === 0 ? entry.inner.start : items[needed - 1]!.end;
     return {

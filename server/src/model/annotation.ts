@@ -1,6 +1,8 @@
+import { FINDING_CODES, isFindingCode } from '../base/catalogue';
 import type { FindingCollector } from '../base/finding';
 import type { Span } from '../base/span';
 import type { Entry } from '../formats/annotation/entries';
+import { likelyKey } from '../formats/annotation/keys';
 import { itemNumber, listItems, valueText } from '../formats/annotation/lists';
 import { findMedium } from '../physics/media';
 import { type Dimension, readQuantity } from '../physics/quantity';
@@ -169,10 +171,28 @@ export class ValueReader {
         : null,
       dipoleEA: dipole ? this.#frameDipole(dipole) : null,
       periodic: periodic ? this.#flag(periodic) : null,
-      silence: new Set(
-        silence ? listItems(this.text, silence).map((item) => this.text.slice(item.start, item.end)) : [],
-      ),
+      silence: silence ? this.#silence(silence) : new Set(),
     };
+  }
+
+  #silence(entry: Entry): Set<string> {
+    const codes = new Set<string>();
+    for (const item of listItems(this.text, entry)) {
+      const code = this.text.slice(item.start, item.end);
+      if (isFindingCode(code)) {
+        codes.add(code);
+        continue;
+      }
+      const meant = likelyKey(code, FINDING_CODES);
+      this.problems.add(
+        'key-misspelt',
+        item,
+        () =>
+          `"${this.shown(item)}" in silence is no finding${meant === undefined ? '' : `; did you mean "${meant}"?`}.`,
+        () => (meant === undefined ? {} : { fix: { title: `Replace by ${meant}`, edits: [{ ...item, text: meant }] } }),
+      );
+    }
+    return codes;
   }
 
   #placed(entry: Entry, what: string, allowed: (value: number) => boolean): Placed<number> | null {

@@ -1,5 +1,5 @@
 import { AtomFlag, type AtomTable } from '../formats/tree';
-import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, VDW_RADIUS_A } from '../physics/elements';
+import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, MAX_ATOMIC_NUMBER, VDW_RADIUS_A } from '../physics/elements';
 import type { Cell } from './cell';
 import { NeighbourBuffer, PointGrid } from './point-grid';
 
@@ -44,6 +44,11 @@ function closeLimitA(z1: number, z2: number): number {
   return Number.isNaN(bond) ? clash : Math.max(bond, clash);
 }
 
+const SIZE = MAX_ATOMIC_NUMBER + 1;
+const CLOSE_LIMITS_A = Float64Array.from({ length: SIZE * SIZE }, (_, k) =>
+  closeLimitA(Math.floor(k / SIZE), k % SIZE),
+);
+
 /** Whether an element can share a proton with another: N, O, F. */
 export function sharesProton(z: number): boolean {
   return z === 7 || z === 8 || z === 9;
@@ -65,16 +70,8 @@ export function solidAtoms(atoms: AtomTable): Int32Array {
 export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): ClosePairs {
   const solid = solidAtoms(atoms);
   const present = [...new Set(Array.from(solid, (i) => atoms.element[i]!))];
-  const size = 119;
-  const limits = new Float64Array(size * size);
   let radius = 0.1;
-  for (const z1 of present) {
-    for (const z2 of present) {
-      const limit = closeLimitA(z1, z2);
-      limits[size * z1 + z2] = limit;
-      radius = Math.max(radius, limit);
-    }
-  }
+  for (const z1 of present) for (const z2 of present) radius = Math.max(radius, CLOSE_LIMITS_A[SIZE * z1 + z2]!);
   const grid = new PointGrid(positionA, solid, radius, cell);
   if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
   const first: number[] = [];
@@ -87,7 +84,7 @@ export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: 
     for (let k = 0; k < buffer.count; k++) {
       const j = buffer.index[k]!;
       const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
-      if (d > limits[size * atoms.element[i]! + atoms.element[j]!]!) continue;
+      if (d > CLOSE_LIMITS_A[SIZE * atoms.element[i]! + atoms.element[j]!]!) continue;
       // Kept in order of j: few partners, so an insertion is cheapest.
       let at = first.length;
       while (at > begin && second[at - 1]! > j) {

@@ -22,6 +22,7 @@ export function readFragmentAtoms(
 ): Int32Array {
   const count = frame.atoms.count;
   const labels = new Int32Array(count).fill(-1);
+  const free = new FreeList(count);
   let label = 0;
   for (const group of listGroups(text, entry)) {
     for (const { span, from, to } of rangesOf(text, group)) {
@@ -32,14 +33,16 @@ export function readFragmentAtoms(
         });
         continue;
       }
-      let overlaps = 0;
-      for (let atom = from - 1; atom < to; atom++) {
-        if (labels[atom]! >= 0) overlaps ||= atom + 1;
-        else labels[atom] = label;
+      let taken = -1;
+      let expected = from - 1;
+      for (let atom = free.next(expected); atom < to; atom = free.next(atom)) {
+        if (taken < 0 && atom > expected) taken = expected;
+        expected = atom + 1;
+        labels[atom] = label;
+        free.take(atom);
       }
-      if (overlaps > 0) {
-        problems.add('fragments-overlap', span, () => `Atom ${overlaps} is listed already.`);
-      }
+      if (taken < 0 && expected < to) taken = expected;
+      if (taken >= 0) problems.add('fragments-overlap', span, () => `Atom ${taken + 1} is listed already.`);
     }
     label++;
   }
@@ -56,6 +59,41 @@ export function readFragmentAtoms(
     });
   }
   return labels;
+}
+
+/** Which of the first `count` numbers are not taken yet; skips over taken ones in almost constant time. */
+class FreeList {
+  readonly #next: Int32Array;
+
+  constructor(count: number) {
+    this.#next = Int32Array.from({ length: count + 1 }, (_, i) => i);
+  }
+
+  /** The first free number from `i` on, or the count where there is none. */
+  next(i: number): number {
+    const next = this.#next;
+    let at = i;
+    while (next[at] !== at) {
+      next[at] = next[next[at]!]!;
+      at = next[at]!;
+    }
+    return at;
+  }
+
+  take(i: number): void {
+    this.#next[i] = i + 1;
+  }
+}
+
+/** The atom indices that ranges of atom numbers cover, each once, ascending. */
+export function atomsInRanges(ranges: readonly { from: number; to: number }[]): number[] {
+  const atoms: number[] = [];
+  let next = 0;
+  for (const { from, to } of [...ranges].sort((a, b) => a.from - b.from)) {
+    for (let atom = Math.max(next, from - 1); atom < to; atom++) atoms.push(atom);
+    next = Math.max(next, to);
+  }
+  return atoms;
 }
 
 /** The numbers and ranges of one group; NaN-like −1 where one is unreadable. */

@@ -58,8 +58,10 @@ export function buildFrameModel(
     ? noFragments(tree.atoms.count)
     : formFragments(text, tree, pairs, cell, heir?.fragments ?? null, problems);
   const formulas = Array.from({ length: fragments.count }, (_, f) => hillFormula(tree.atoms, atomsOf(fragments, f)));
-  const notes =
-    file.language === 'pdb'
+  // Without fragments the lists of the annotation have nothing to fit.
+  const notes = pairs.tooDense
+    ? []
+    : file.language === 'pdb'
       ? annotatePdb(text, tree, fragments, file.remarks, problems)
       : annotateXyz(text, tree, fragments, formulas, heir?.tree ?? null, problems);
   const { positionA, endless } = makeWhole(tree.atoms, fragments, pairs, cell);

@@ -51,7 +51,27 @@ function bondLabels(frame: FrameTree, pairs: ClosePairs, cell: Cell | null, take
     labels[i] = outside || (taken !== null && taken[i]! >= 0) ? -1 : sets.find(i);
   }
   attachGhosts(frame, cell, labels);
+  attachUnreadable(frame, labels, taken);
   return labels;
+}
+
+/**
+ * Puts an atom that could not be read into the fragment of the atom written before it (or the first after it): files list molecules
+ * together, and a fragment with a hole must show no numbers.
+ */
+function attachUnreadable(frame: FrameTree, labels: Int32Array, taken: Int32Array | null): void {
+  const { flags, count } = frame.atoms;
+  const unreadable = AtomFlag.unknownElement | AtomFlag.noPosition;
+  let before = -1;
+  for (let i = 0; i < count; i++) {
+    if (labels[i]! >= 0) before = labels[i]!;
+    else if (flags[i]! & unreadable && !(taken !== null && taken[i]! >= 0)) labels[i] = before;
+  }
+  let after = -1;
+  for (let i = count - 1; i >= 0; i--) {
+    if (labels[i]! >= 0) after = labels[i]!;
+    else if (flags[i]! & unreadable && !(taken !== null && taken[i]! >= 0)) labels[i] = after;
+  }
 }
 
 function attachGhosts(frame: FrameTree, cell: Cell | null, labels: Int32Array): void {

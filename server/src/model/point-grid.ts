@@ -42,7 +42,10 @@ export class PointGrid {
   readonly #cell: Cell | null;
   readonly #points: Float64Array;
   readonly #counts: [number, number, number] = [1, 1, 1];
-  readonly #reach: [number, number, number] = [0, 0, 0];
+  /** Size of a cell along each direction, Å. */
+  readonly #cellA: [number, number, number] = [1, 1, 1];
+  /** Along a direction with wide gaps: the occupied slabs, and the place each takes once the gaps are closed up. */
+  readonly #slabs: (Slabs | null)[] = [null, null, null];
   readonly #origin: [number, number, number] = [0, 0, 0];
   readonly #scale: [number, number, number] = [1, 1, 1];
   readonly #starts: Int32Array;
@@ -76,7 +79,10 @@ export class PointGrid {
       crowding += starts[c + 1]! * starts[c + 1]!;
       starts[c + 1]! += starts[c]!;
     }
-    const stencil = this.#reach.reduce((product, r, k) => product * Math.min(2 * r + 1, this.#counts[k]!), 1);
+    const stencil = [0, 1, 2].reduce(
+      (product, k) => product * Math.min(2 * this.#reachOf(k, radiusA) + 1, this.#counts[k]!),
+      1,
+    );
     this.tooDense = crowding * stencil > Math.max(ALWAYS_FEW_ENOUGH, MOST_CANDIDATES_PER_POINT * inside.length);
     this.#starts = starts;
     this.#order = new Int32Array(inside.length);
@@ -102,52 +108,81 @@ export class PointGrid {
   #layOut(inside: Int32Array): void {
     const target = this.radiusA / CELLS_PER_RADIUS;
     for (let k = 0; k < 3; k++) {
-      const periodic = this.#cell?.periodic[k] ?? false;
-      let low = 0;
-      let extent = 1;
-      if (!periodic) {
-        low = Number.POSITIVE_INFINITY;
-        let high = Number.NEGATIVE_INFINITY;
-        for (const i of inside) {
-          const f = this.#fraction(i, k);
-          if (f < low) low = f;
-          if (f > high) high = f;
-        }
-        if (!(high >= low)) {
-          low = 0;
-          high = 0;
-        }
-        extent = Math.max(high - low, 1e-9);
+      if (this.#cell?.periodic[k]) {
+        const width = this.#cell.widthsA[k]!;
+        this.#counts[k] = Math.max(1, Math.floor(width / target));
+        this.#cellA[k] = width / this.#counts[k]!;
+        this.#scale[k] = this.#counts[k]!;
+        continue;
       }
-      const width = periodic ? this.#cell!.widthsA[k]! : extent;
-      this.#origin[k] = low;
-      this.#counts[k] = Math.max(1, Math.min(Math.floor(width / target), 1 << 20));
-      this.#scale[k] = extent;
+      let low = Number.POSITIVE_INFINITY;
+      let high = Number.NEGATIVE_INFINITY;
+      for (const i of inside) {
+        const f = this.#fraction(i, k);
+        if (f < low) low = f;
+        if (f > high) high = f;
+      }
+      this.#origin[k] = high >= low ? low : 0;
+      this.#counts[k] = high > low ? Math.floor((high - low) / target) + 1 : 1;
+      this.#cellA[k] = target;
+      this.#scale[k] = 1 / target;
     }
     const most = Math.max(64, MOST_CELLS_PER_POINT * inside.length);
-    while (this.#counts[0] * this.#counts[1] * this.#counts[2] > most) {
+    if (this.#total() > most) for (let k = 0; k < 3; k++) this.#closeGaps(inside, k);
+    // What is still too many cells is spread evenly: a coarser grid does.
+    while (this.#total() > most) {
       const k = this.#counts.indexOf(Math.max(...this.#counts)) as 0 | 1 | 2;
-      this.#counts[k] = Math.max(1, this.#counts[k] >> 1);
-    }
-    for (let k = 0; k < 3; k++) {
-      const periodic = this.#cell?.periodic[k] ?? false;
-      const width = periodic ? this.#cell!.widthsA[k]! : this.#scale[k]!;
-      this.#reach[k] = Math.ceil(this.radiusA / (width / this.#counts[k]!) - 1e-12);
-      this.#scale[k] = this.#counts[k]! / this.#scale[k]!;
+      this.#counts[k] = Math.max(1, (this.#counts[k] + 1) >> 1);
+      this.#cellA[k] *= 2;
+      this.#scale[k] /= 2;
+      if (this.#slabs[k]) this.#closeGaps(inside, k);
+      else if (this.#cell?.periodic[k]) {
+        this.#cellA[k] = this.#cell.widthsA[k]! / this.#counts[k];
+        this.#scale[k] = this.#counts[k];
+      }
     }
   }
 
+  #total(): number {
+    return this.#counts[0] * this.#counts[1] * this.#counts[2];
+  }
+
+  /** Closes up stretches without any point along one direction, so that one far atom does not make the grid coarse for all. */
+  #closeGaps(inside: Int32Array, k: number): void {
+    if (this.#cell?.periodic[k]) return;
+    const occupied = new Set<number>();
+    for (const i of inside) occupied.add(this.#raw(i, k));
+    const raws = Float64Array.from(occupied).sort();
+    const places = new Int32Array(raws.length);
+    const widest = this.#reachOf(k, this.radiusA) + 1;
+    for (let n = 1; n < raws.length; n++) places[n] = places[n - 1]! + Math.min(raws[n]! - raws[n - 1]!, widest);
+    this.#slabs[k] = { raws, places };
+    this.#counts[k] = places.length === 0 ? 1 : places[places.length - 1]! + 1;
+  }
+
+  #reachOf(k: number, radiusA: number): number {
+    return Math.ceil(radiusA / this.#cellA[k]! - 1e-12);
+  }
+
+  /** Number of the slab that a point lies in along one direction, gaps and all; periodic ones count from 0. */
+  #raw(i: number, k: number): number {
+    const f = this.#fraction(i, k);
+    const along = this.#cell?.periodic[k] ? f - Math.floor(f) : f - this.#origin[k]!;
+    return Math.floor(along * this.#scale[k]!);
+  }
+
+  /** Finds the cell of a member. */
   #locate(i: number): void {
     for (let k = 0; k < 3; k++) {
-      const count = this.#counts[k]!;
-      let f = this.#fraction(i, k);
-      if (this.#cell?.periodic[k]) f -= Math.floor(f);
-      this.#place[k] = Math.max(0, Math.min(count - 1, Math.floor((f - this.#origin[k]!) * this.#scale[k]!)));
+      const raw = this.#raw(i, k);
+      const slabs = this.#slabs[k];
+      const place = slabs ? slabs.places[firstFrom(slabs.raws, raw)]! : raw;
+      this.#place[k] = Math.max(0, Math.min(this.#counts[k]! - 1, place));
     }
   }
 
   /**
-   * Finds all points within `radiusA` (at most the grid's radius) of point `i`, itself left out, at their minimum image. With
+   * Finds all points within `radiusA` of point `i` (a member or not), itself left out, at their minimum image. With
    * `onlyAfter`, only those of a larger index.
    */
   gather(i: number, radiusA: number, onlyAfter: boolean, out: NeighbourBuffer): void {
@@ -156,12 +191,10 @@ export class PointGrid {
     const y = this.#points[3 * i + 1]!;
     const z = this.#points[3 * i + 2]!;
     if (!Number.isFinite(x + y + z)) return;
-    this.#locate(i);
     const [nx, ny] = this.#counts;
-    const [px, py, pz] = this.#place;
-    const [fromX, toX] = this.#range(0, px);
-    const [fromY, toY] = this.#range(1, py);
-    const [fromZ, toZ] = this.#range(2, pz);
+    const [fromX, toX] = this.#range(0, i, radiusA);
+    const [fromY, toY] = this.#range(1, i, radiusA);
+    const [fromZ, toZ] = this.#range(2, i, radiusA);
     const radius2 = radiusA * radiusA;
     for (let cz = fromZ; cz <= toZ; cz++) {
       const wz = this.#wrap(2, cz);
@@ -211,16 +244,42 @@ export class PointGrid {
     }
   }
 
-  /** Cells to look at along one direction: all of them once where the reach would wrap onto itself. */
-  #range(k: 0 | 1 | 2, place: number): [number, number] {
+  /** Cells to look at around a point along one direction: all of them once where the reach would wrap onto itself. */
+  #range(k: 0 | 1 | 2, i: number, radiusA: number): [number, number] {
     const count = this.#counts[k];
-    const reach = this.#reach[k];
-    if (this.#cell?.periodic[k]) return 2 * reach + 1 >= count ? [0, count - 1] : [place - reach, place + reach];
-    return [Math.max(0, place - reach), Math.min(count - 1, place + reach)];
+    const reach = this.#reachOf(k, radiusA);
+    const raw = this.#raw(i, k);
+    if (this.#cell?.periodic[k]) {
+      const place = Math.max(0, Math.min(count - 1, raw));
+      return 2 * reach + 1 >= count ? [0, count - 1] : [place - reach, place + reach];
+    }
+    const slabs = this.#slabs[k];
+    if (!slabs) return [Math.max(0, raw - reach), Math.min(count - 1, raw + reach)];
+    const from = firstFrom(slabs.raws, raw - reach);
+    const to = firstFrom(slabs.raws, raw + reach + 1) - 1;
+    return from > to ? [0, -1] : [slabs.places[from]!, slabs.places[to]!];
   }
 
   #wrap(k: 0 | 1 | 2, place: number): number {
     const count = this.#counts[k];
     return place < 0 ? place + count : place >= count ? place - count : place;
   }
+}
+
+/** The occupied slabs of one direction, ascending, and the places they are moved to. */
+interface Slabs {
+  readonly raws: Float64Array;
+  readonly places: Int32Array;
+}
+
+/** Index of the first entry of an ascending list that is not below a value. */
+function firstFrom(list: Float64Array, value: number): number {
+  let low = 0;
+  let high = list.length;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (list[middle]! < value) low = middle + 1;
+    else high = middle;
+  }
+  return low;
 }

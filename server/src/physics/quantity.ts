@@ -155,7 +155,9 @@ export function readQuantity(text: string, dimension: Dimension, bareUnit = 1): 
 }
 
 function plainNumber(text: string): number {
-  return /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[eEdD][+-]?\d+)?$/.test(text) ? Number(text.replace(/[dD]/, 'e')) : Number.NaN;
+  return /^[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eEdD][+-]?\d+)?$/.test(text)
+    ? Number(text.replace(/[dD]/, 'e'))
+    : Number.NaN;
 }
 
 class QuantityError extends Error {

@@ -4,6 +4,8 @@ import type { CoordinateTree } from '../../formats/tree';
 import { atomsOf } from '../../model/fragment-set';
 import type { FrameAnalysis } from '../frame-analysis';
 
+const LONGEST_NAME = 60;
+
 /** What a rule looks at: one frame of a file, where to put findings, and what has been said in earlier frames. */
 export class RuleContext {
   readonly file: CoordinateTree;
@@ -34,7 +36,8 @@ export class RuleContext {
   nameOf(fragment: number): string {
     const { names, labels } = this.frame.model;
     if (fragment >= this.ownFragments) return `fragment ${fragment + 1} (of the other file)`;
-    return labels[fragment] !== '' ? labels[fragment]! : `${names[fragment]} (fragment ${fragment + 1})`;
+    const cut = (text: string) => (text.length > LONGEST_NAME ? `${text.slice(0, LONGEST_NAME)}…` : text);
+    return labels[fragment] !== '' ? cut(labels[fragment]!) : `${cut(names[fragment]!)} (fragment ${fragment + 1})`;
   }
 
   /** The first atom line of a fragment; `null` for one of a companion file. */

@@ -55,7 +55,10 @@ function compare(context: RuleContext, f: number, annotated: Vector, column: Vec
       'dipole-unit',
       span,
       () => `${sizes}, the same direction and a factor of ${shown(ratio)}.`,
-      () => ({ fix: { title: `Convert to ${written.unit}`, edits: scaled(context, written, 1 / factor) } }),
+      () => {
+        const edits = scaled(context, written, 1 / factor);
+        return edits.length === 0 ? {} : { fix: { title: `Convert to ${written.unit}`, edits } };
+      },
     );
   } else if (angle >= 180 - OPPOSITE_DEG) {
     context.findings.add(
@@ -86,9 +89,9 @@ function debye(sizeEA: number): string {
 function scaled(context: RuleContext, written: WrittenDipole, factor: number): TextEdit[] {
   return written.items.flatMap(({ start, end }) => {
     const text = context.file.text.slice(start, end);
-    const value = Number(text);
+    const value = Number(text.replace(/[dD]/, 'e'));
     if (!Number.isFinite(value) || value === 0) return [];
-    const digits = Math.max(4, text.replace(/[eE].*$/, '').replace(/^[-+0.]+|[^0-9]/g, '').length);
+    const digits = Math.max(4, text.replace(/[eEdD].*$/, '').replace(/^[-+0.]+|[^0-9]/g, '').length);
     return [{ start, end, text: String(Number((value * factor).toPrecision(Math.min(digits, 15)))) }];
   });
 }
@@ -100,7 +103,7 @@ function reversal(context: RuleContext, f: number, written: WrittenDipole): { fi
   if (written.items.length === 3) {
     const edits = written.items.flatMap(({ start, end }): TextEdit[] => {
       const item = text.slice(start, end);
-      if (Number(item) === 0) return [];
+      if (Number(item.replace(/[dD]/, 'e')) === 0) return [];
       if (item.startsWith('-')) return [{ start, end: start + 1, text: '' }];
       return [{ start, end: item.startsWith('+') ? start + 1 : start, text: '-' }];
     });

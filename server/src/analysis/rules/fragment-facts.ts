@@ -1,3 +1,4 @@
+import { atomsOf } from '../../model/fragment-set';
 import { elementName } from '../../physics/elements';
 import { likelyLoneCharge } from '../moments';
 import { ION_CHARGE_E } from '../settings';
@@ -19,7 +20,14 @@ export function reportFragmentFacts(context: RuleContext): void {
     }
     if (!usable[f]) continue;
     if (moments.dipoleSource[f] === 'none' && fragments.count > 1 && context.isNews(`dipole ${kind}`)) {
-      context.findings.add('dipole-missing', context.placeOf(f)!, () => `Nothing gives the dipole of ${kind}.`);
+      context.findings.add('dipole-missing', context.placeOf(f)!, () => {
+        return `Nothing gives the dipole of ${model.labels[f] === '' ? kind : context.nameOf(f)}.`;
+      });
+    }
+    if (lacksDirection(context, f) && context.isNews(`direction ${kind}`)) {
+      context.findings.add('dipole-direction', context.placeOf(f)!, () => {
+        return `The dipole of ${context.nameOf(f)} has a size and no direction.`;
+      });
     }
     const known = !Number.isNaN(moments.dipoleNormEA[f]!) && moments.dipoleSource[f] !== 'atom';
     if (known && Math.abs(moments.chargeE[f]!) > ION_CHARGE_E && context.isNews(`origin ${kind}`)) {
@@ -39,6 +47,15 @@ export function reportFragmentFacts(context: RuleContext): void {
       );
     }
   }
+}
+
+/** Whether a dipole has a size alone; a residue without hydrogens is told of those, which is the cause. */
+function lacksDirection({ frame }: RuleContext, f: number): boolean {
+  const { moments, model } = frame;
+  if (!(moments.dipoleNormEA[f]! > 0) || !Number.isNaN(moments.dipoleEA[3 * f]!)) return false;
+  return (
+    model.tree.residues === null || atomsOf(model.fragments, f).some((atom) => model.tree.atoms.element[atom] === 1)
+  );
 }
 
 /** Reports a cell narrower than twice the cutoff, once a file. */

@@ -28,6 +28,8 @@ export class NearField {
   readonly #context: RuleContext;
   readonly #near = new Map<number, Noted[]>();
   readonly #edge = new Map<number, Noted[]>();
+  #nearPairs = 0;
+  #edgePairs = 0;
 
   constructor(context: RuleContext) {
     this.#context = context;
@@ -36,8 +38,13 @@ export class NearField {
   add(pair: Pair): void {
     const { kTKJPerMol } = this.#context.frame.system;
     if (pair.contact === 'clash' || pair.contact === 'bonded') return;
-    if (pair.regime === 'near' && pair.strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) this.#keep(this.#near, pair);
-    else if (pair.regime === 'edge') this.#keep(this.#edge, pair);
+    if (pair.regime === 'near' && pair.strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) {
+      this.#nearPairs++;
+      this.#keep(this.#near, pair);
+    } else if (pair.regime === 'edge') {
+      this.#edgePairs++;
+      this.#keep(this.#edge, pair);
+    }
   }
 
   #keep(lists: Map<number, Noted[]>, { first, second, strengthKJPerMol }: Pair): void {
@@ -46,7 +53,7 @@ export class NearField {
       if (f >= this.#context.ownFragments) continue;
       const list = lists.get(f);
       if (list === undefined) lists.set(f, [noted]);
-      else list.push(noted);
+      else keepWorst(list, noted);
     }
   }
 
@@ -83,7 +90,7 @@ export class NearField {
       code,
       context.headSpan(),
       () =>
-        `The point dipole ${where} for ${worst.length} pairs of ${lists.size} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
+        `The point dipole ${where} for ${code === 'near-field' ? this.#nearPairs : this.#edgePairs} pairs of ${lists.size} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
       () => ({ related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)) }),
     );
   }
@@ -112,6 +119,14 @@ export class NearField {
       `the point dipole ${shown(pair.energies.pointDipole)} kJ/mol${Number.isFinite(share) ? `, off by ${shown(100 * share, 2)} %` : ''}.`
     );
   }
+}
+
+/** Adds a pair to a list that holds no more than a finding shows: the worst and ten others. */
+function keepWorst(list: Noted[], noted: Noted): void {
+  list.push(noted);
+  if (list.length <= 4 * MOST_RELATED) return;
+  list.sort(byStrength);
+  list.length = MOST_RELATED + 1;
 }
 
 function byStrength(a: Noted, b: Noted): number {

@@ -48,7 +48,7 @@ export function reportResidues(context: RuleContext): void {
     bare++;
     firstBare ??= residue;
   }
-  if (firstBare === null) return;
+  if (firstBare === null || !context.isNews('hydrogens')) return;
   const place = firstBare;
   context.findings.add('hydrogens-missing', tree.fieldSpan(place.atoms[0]!, 'line'), () => {
     const many = bare === 1 ? 'One residue or water has' : `${bare} residues and waters have`;
@@ -60,6 +60,7 @@ function reportMissing(context: RuleContext, residue: Residue, template: readonl
   const missing = template.filter((name) => !residue.atomNames.includes(name));
   // The last residue of a chain may write its carboxylate oxygens in other names.
   if (missing.length === 0 || (missing.length === 1 && missing[0] === 'O' && residue.atomNames.includes('OXT'))) return;
+  if (!context.isNews(`missing ${label(residue)}`)) return;
   const { tree } = context.frame.model;
   context.findings.add('atoms-missing', tree.fieldSpan(residue.atoms[0]!, 'line'), () => {
     return `${label(residue)} has no ${missing.join(', ')}.`;

@@ -132,7 +132,7 @@ function kindOf(word: string): ValueKind {
 }
 
 function isFloat(word: string): boolean {
-  return /^[+-]?(?:\d+\.?\d*|\.\d+)(?:[dDeE][+-]?\d+)?$/.test(word);
+  return /^[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[dDeE][+-]?\d+)?$/.test(word);
 }
 
 function combine(words: readonly Word[], shape: readonly number[]): TypedValue & { kind: ValueKind } {

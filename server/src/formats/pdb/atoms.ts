@@ -1,5 +1,5 @@
 import type { FindingCollector } from '../../base/finding';
-import { scanNumberInto, skipBlanks, trimEnd } from '../../text/numbers';
+import { scanNumberInto, trimEnd } from '../../text/numbers';
 import { AtomBuilder } from '../atom-builder';
 import { readSpecies } from '../species';
 import { AtomFlag, type AtomTable, type Residue } from '../tree';
@@ -37,7 +37,7 @@ export class ModelAtoms {
     this.#columns = columns;
     this.#problems = problems;
     this.#chargeColumn = chargeColumn;
-    this.#atoms = new AtomBuilder(1024, { charge: chargeColumn !== null, formal: true, residue: true });
+    this.#atoms = new AtomBuilder(64, { charge: chargeColumn !== null, formal: true, residue: true });
   }
 
   get count(): number {
@@ -57,8 +57,8 @@ export class ModelAtoms {
     const rawKey = columns.raw(line, [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]]);
     this.#pending.push({ name: name.trim(), altLoc, rawKey, segmentEnds: this.#segmentEnds });
     this.#segmentEnds = false;
-    this.#readPosition(line, atom);
-    this.#readElement(line, atom, name);
+    if (this.#readPosition(line, atom)) this.#readElement(line, atom, name);
+    else this.#atoms.flags[atom]! |= AtomFlag.unknownElement;
     atoms.formalE![atom] = readFormalCharge(columns.trimmed(line, ATOM_COLUMNS.formalCharge));
     if (this.#chargeColumn !== null) this.#readCharge(line, atom, this.#chargeColumn);
     if (altLoc !== '') {
@@ -68,7 +68,8 @@ export class ModelAtoms {
     }
   }
 
-  #readPosition(line: number, atom: number): void {
+  /** Reads x, y and z; false where the line is too short or shifted, so that nothing more need be said of it. */
+  #readPosition(line: number, atom: number): boolean {
     const { text, lines } = this.#columns;
     const lineEnd = lines.end(line);
     const lineStart = lines.starts[line]!;
@@ -77,7 +78,7 @@ export class ModelAtoms {
         return 'The line ends before column 54, where z ends.';
       });
       this.#spoil(atom);
-      return;
+      return false;
     }
     if (this.#isShifted(lineStart, lineEnd)) {
       const start = lineStart + ATOM_COLUMNS.x[0];
@@ -86,7 +87,7 @@ export class ModelAtoms {
         return 'The coordinates do not stand in columns 31–38, 39–46 and 47–54.';
       });
       this.#spoil(atom);
-      return;
+      return false;
     }
     for (const [axis, range] of COORDINATES.entries()) {
       const { start, end } = this.#columns.span(line, range);
@@ -105,6 +106,7 @@ export class ModelAtoms {
       });
     }
     if (this.#atoms.flags[atom]! & AtomFlag.noPosition) this.#spoil(atom);
+    return true;
   }
 
   #spoil(atom: number): void {
@@ -133,15 +135,15 @@ export class ModelAtoms {
   #readElement(line: number, atom: number, name: string): void {
     const columns = this.#columns;
     const { start, end } = columns.span(line, ATOM_COLUMNS.element);
-    const written = end > start && skipBlanks(columns.text.bytes, start, end) === start;
+    // Old files have an identification and a line number there: digits are no symbol.
+    const written = end > start && !isDigit(columns.text.bytes[start]!);
     const UNKNOWN = AtomFlag.unknownElement << 8;
     let species = written ? readSpecies(columns.text, start, end) : UNKNOWN;
     if (species & UNKNOWN) {
       const residueName = columns.trimmed(line, ATOM_COLUMNS.residueName);
       const inferred = elementFromName(name, residueName);
       // A written symbol that is none is an error even where the name would do: the two contradict each other.
-      const isSegment = written && /^\d/.test(columns.trimmed(line, ATOM_COLUMNS.element));
-      if (!written || isSegment) species = inferred;
+      if (!written) species = inferred;
     }
     this.#atoms.element[atom] = species & 255;
     this.#atoms.flags[atom]! |= species >> 8;
@@ -176,7 +178,7 @@ export class ModelAtoms {
       const { dropped, sites } = chooseAlternates(this.#alternates);
       if (dropped.size > 0) {
         alternateSites = sites;
-        firstAlternateLine = this.#atoms.line[Math.min(...dropped)]!;
+        firstAlternateLine = this.#atoms.line[dropped.values().next().value!]!;
         pending = pending.filter((_, i) => !dropped.has(i));
         removeAtoms(this.#atoms, dropped);
       }
@@ -188,6 +190,10 @@ export class ModelAtoms {
     }
     return { atoms: this.#atoms.build(), residues: builder.build(), alternateSites, firstAlternateLine };
   }
+}
+
+function isDigit(unit: number): boolean {
+  return unit >= 48 && unit <= 57;
 }
 
 /** Splits columns 18–27. */

@@ -26,6 +26,11 @@ const LINK_ENDS: readonly (readonly [ColumnRange, ColumnRange, ColumnRange, Colu
     [56, 57],
   ],
 ];
+/** Symmetry operators of the two ends. */
+const LINK_SYMMETRY: readonly ColumnRange[] = [
+  [59, 65],
+  [66, 72],
+];
 const SERIAL_WIDTH = 5;
 const AMBIGUOUS = -2;
 
@@ -33,6 +38,8 @@ const AMBIGUOUS = -2;
 export class ConnectionRecords {
   readonly #columns: FixedColumns;
   readonly #conect: number[] = [];
+  /** Serials of CONECT records in pairs, decoded once for all models. */
+  #serialPairs: number[] | null = null;
   readonly #link: number[] = [];
 
   constructor(columns: FixedColumns) {
@@ -51,6 +58,9 @@ export class ConnectionRecords {
     const byPlace = new Map<string, Residue>();
     if (this.#link.length > 0) for (const residue of frame.residues ?? []) byPlace.set(placeOf(residue), residue);
     for (const line of this.#link) {
+      // A link to a symmetry mate bonds nothing within the file.
+      const [here, there] = LINK_SYMMETRY.map((range) => this.#columns.trimmed(line, range));
+      if (here !== there && here !== '' && there !== '') continue;
       const ends = LINK_ENDS.map((columns) => this.#linkedAtom(line, columns, byPlace));
       if (ends[0]! >= 0 && ends[1]! >= 0 && ends[0] !== ends[1]) bonds.push(ends[0]!, ends[1]!);
     }
@@ -67,16 +77,24 @@ export class ConnectionRecords {
   }
 
   #readConect(bySerial: ReadonlyMap<number, number>, bonds: number[]): void {
+    this.#serialPairs ??= this.#decodeConect();
+    for (let k = 0; k < this.#serialPairs.length; k += 2) {
+      const atom = bySerial.get(this.#serialPairs[k]!) ?? -1;
+      const partner = bySerial.get(this.#serialPairs[k + 1]!) ?? -1;
+      if (atom >= 0 && partner >= 0 && partner !== atom) bonds.push(atom, partner);
+    }
+  }
+
+  #decodeConect(): number[] {
+    const pairs: number[] = [];
     for (const line of this.#conect) {
-      const atom = bySerial.get(decodeHybrid36(this.#columns.raw(line, CONECT_ATOM), SERIAL_WIDTH)) ?? -1;
-      if (atom < 0) continue;
+      const atom = decodeHybrid36(this.#columns.raw(line, CONECT_ATOM), SERIAL_WIDTH);
       for (const range of CONECT_PARTNERS) {
         const field = this.#columns.raw(line, range);
-        if (field.trim() === '') continue;
-        const partner = bySerial.get(decodeHybrid36(field.padStart(SERIAL_WIDTH), SERIAL_WIDTH)) ?? -1;
-        if (partner >= 0 && partner !== atom) bonds.push(atom, partner);
+        if (field.trim() !== '') pairs.push(atom, decodeHybrid36(field.padStart(SERIAL_WIDTH), SERIAL_WIDTH));
       }
     }
+    return pairs;
   }
 
   #linkedAtom(line: number, columns: (typeof LINK_ENDS)[number], byPlace: ReadonlyMap<string, Residue>): number {

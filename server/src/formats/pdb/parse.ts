@@ -113,7 +113,11 @@ function recordAt(bytes: Uint8Array, start: number, end: number): RecordName | u
     const isAtom = bytes[start + 1] === 84 && bytes[start + 2] === 79 && bytes[start + 3] === 77;
     return isAtom && (end - start === 4 || bytes[start + 4] === 32) ? 'ATOM' : undefined;
   }
-  if (first === 72 && bytes[start + 1] === 69 && bytes[start + 2] === 84) return 'HETATM';
+  if (first === 72) {
+    // HETATM, not HET, HETNAM or HETSYN.
+    const isAtom = bytes[start + 1] === 69 && bytes[start + 2] === 84 && bytes[start + 3] === 65;
+    return isAtom && bytes[start + 4] === 84 && bytes[start + 5] === 77 ? 'HETATM' : undefined;
+  }
   if (first < 67 || first > 84) return undefined;
   let name = '';
   for (let i = start; i < Math.min(start + 6, end) && bytes[i] !== 32; i++) name += String.fromCharCode(bytes[i]!);

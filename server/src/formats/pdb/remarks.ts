@@ -2,7 +2,7 @@ import type { FindingCollector } from '../../base/finding';
 import type { LineIndex } from '../../text/lines';
 import type { Snapshot } from '../../text/snapshot';
 import { type Entry, scanEntries } from '../annotation/entries';
-import { FILE_KEYS, SELECTED_KEYS } from '../annotation/keys';
+import { FILE_KEYS, likelyKey, SELECTED_KEYS } from '../annotation/keys';
 import { valueText } from '../annotation/lists';
 import { reportKeys } from '../annotation/report-keys';
 import type { FrameTree, RemarkAnnotation, Residue, Selector } from '../tree';
@@ -31,7 +31,7 @@ export function readRemark(
   const number = Number(text.slice(lineStart + 6, lineStart + 10));
   if (!(number >= FIRST_FREE_REMARK && number <= LAST_FREE_REMARK)) return null;
   const entries = scanEntries(text, lineStart + TEXT_COLUMN - 1, lineEnd);
-  if (!entries.some((entry) => KNOWN.has(entry.key))) return null;
+  if (!entries.some(({ key }) => KNOWN.has(key) || likelyKey(key, [...KNOWN]) !== undefined)) return null;
   const selectorEntry = entries.find((entry) => entry.key === 'fragment');
   const known: readonly string[] = selectorEntry === undefined ? FILE_KEYS : SELECTED_KEYS;
   reportKeys(text, entries, known, problems);
@@ -91,10 +91,11 @@ export function checkRemarks(
   problems: FindingCollector,
 ): void {
   const first = new Map<string, { line: number; entry: Entry }>();
+  const residues = residuesByNumber(frames);
   for (const { line, selector, selectorSpan, entries } of remarks) {
-    if (selector !== null && !isMatched(selector, frames)) {
+    if (selector !== null && !isMatched(selector, residues)) {
       problems.add('selector-unmatched', selectorSpan, () => {
-        return `No fragment of the file is ${text.slice(selectorSpan.start, selectorSpan.end)}.`;
+        return `No fragment of the file is ${text.slice(selectorSpan.start, Math.min(selectorSpan.end, selectorSpan.start + 60))}.`;
       });
     }
     const owner = JSON.stringify(selector);
@@ -116,6 +117,22 @@ export function checkRemarks(
   }
 }
 
-function isMatched(selector: Selector, frames: readonly FrameTree[]): boolean {
-  return frames.some((frame) => frame.residues?.some((residue) => selectorMatches(selector, residue)) ?? false);
+/** One of each different residue of a file by its number, and all of them under null. */
+function residuesByNumber(frames: readonly FrameTree[]): Map<number | null, Residue[]> {
+  const seen = new Set<string>();
+  const byNumber = new Map<number | null, Residue[]>([[null, []]]);
+  for (const residue of frames.flatMap((frame) => frame.residues ?? [])) {
+    const id = `${residue.chain}:${residue.name}:${residue.number}${residue.insertion}`;
+    if (seen.has(id)) continue;
+    seen.add(id);
+    byNumber.get(null)!.push(residue);
+    const list = byNumber.get(residue.number);
+    if (list === undefined) byNumber.set(residue.number, [residue]);
+    else list.push(residue);
+  }
+  return byNumber;
+}
+
+function isMatched(selector: Selector, residues: ReadonlyMap<number | null, readonly Residue[]>): boolean {
+  return (residues.get(selector.number) ?? []).some((residue) => selectorMatches(selector, residue));
 }

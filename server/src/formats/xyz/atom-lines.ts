@@ -60,8 +60,8 @@ export class AtomLineReader {
           at = skipField(bytes, start, end);
           atoms.flags[atom]! |= AtomFlag.noPosition;
           // A line whose first word is no element either is one cause, reported once.
-          if (atoms.flags[atom]! & AtomFlag.unknownElement) break;
-          this.#reportNumber(start, at, COORDINATE_NAMES[op - ColumnOp.x]!);
+          if ((atoms.flags[atom]! & AtomFlag.unknownElement) === 0)
+            this.#reportNumber(start, at, COORDINATE_NAMES[op - ColumnOp.x]!);
         }
       } else {
         at = skipField(bytes, start, end);
@@ -94,7 +94,7 @@ export class AtomLineReader {
         break;
       }
       case ColumnOp.charge:
-        this.#readInto(atoms.chargeE!, atom, start, end, 'charge');
+        this.#readInto(atoms.chargeE!, atom, atom, start, end, 'charge');
         break;
       case ColumnOp.group: {
         const name = this.#text.slice(start, end);
@@ -102,7 +102,7 @@ export class AtomLineReader {
         if (group === undefined) {
           group = this.#groups.size;
           this.#groups.set(name, group);
-          if (!/^[+-]?\d+$/.test(name)) this.#groupsAreWords = true;
+          if (!/^(?:[+-]?\d+)?$/.test(name)) this.#groupsAreWords = true;
         }
         atoms.group![atom] = group;
         break;
@@ -110,15 +110,17 @@ export class AtomLineReader {
       case ColumnOp.dipoleX:
       case ColumnOp.dipoleY:
       case ColumnOp.dipoleZ:
-        this.#readInto(atoms.dipoleEA!, 3 * atom + op - ColumnOp.dipoleX, start, end, 'atomic dipole');
+        this.#readInto(atoms.dipoleEA!, 3 * atom + op - ColumnOp.dipoleX, atom, start, end, 'atomic dipole');
         break;
     }
   }
 
-  #readInto(out: Float64Array, index: number, start: number, end: number, what: string): void {
+  #readInto(out: Float64Array, index: number, atom: number, start: number, end: number, what: string): void {
     if (scanNumberInto(this.#text, start, end, out, index) === end && Number.isFinite(out[index]!)) return;
     out[index] = Number.NaN;
-    this.#reportNumber(start, end, what);
+    // Of a line that is no atom at all enough has been said.
+    const garbage = AtomFlag.unknownElement | AtomFlag.noPosition;
+    if ((this.atoms.flags[atom]! & garbage) !== garbage) this.#reportNumber(start, end, what);
   }
 
   #reportNumber(start: number, end: number, what: string): void {

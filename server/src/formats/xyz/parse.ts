@@ -13,6 +13,8 @@ import { readCell } from './cell';
 import { type ColumnPlan, PLAIN_COLUMNS, readProperties } from './columns';
 
 const NO_BONDS = new Int32Array(0);
+/** Room for atoms at first; a count may promise more than the frame holds. */
+const FIRST_CAPACITY = 1 << 15;
 
 /**
  * Reads XYZ and extended XYZ: any number of frames, each a count line, a comment line and atom lines. Any text gives a tree; every
@@ -55,6 +57,8 @@ class XyzReader {
   readonly #text: Snapshot;
   readonly #lines: LineIndex;
   readonly #problems: FindingCollector;
+  #blankFrom = 0;
+  #blankTo = 0;
 
   constructor(text: Snapshot, lines: LineIndex, problems: FindingCollector) {
     this.#text = text;
@@ -122,7 +126,7 @@ class XyzReader {
       lines,
       this.#problems,
       plan,
-      Math.min(available, Math.max(declared, 16)),
+      Math.min(available, Math.max(declared, 16), FIRST_CAPACITY),
     );
     let line = firstAtomLine;
     const { bytes } = this.#text;
@@ -172,9 +176,13 @@ class XyzReader {
     return this.#nextFilled(line) >= this.#lines.count;
   }
 
+  /** The first line from `line` on that is not blank; a run of blank lines is walked once, however often it is asked about. */
   #nextFilled(line: number): number {
+    if (line >= this.#blankFrom && line < this.#blankTo) return this.#blankTo;
     let next = line;
     while (next < this.#lines.count && this.isBlankLine(next)) next++;
+    this.#blankFrom = line;
+    this.#blankTo = next;
     return next;
   }
 

@@ -14,6 +14,7 @@ const DECIMALS = 8;
 /** Eight decimals where they give the number back exactly, else as many digits as it takes. */
 function written(value: number): string {
   const short = value.toFixed(DECIMALS);
+  if (Object.is(value, -0)) return `-${short}`;
   return Number(short) === value ? short : String(value);
 }
 
