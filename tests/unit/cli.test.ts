@@ -205,6 +205,19 @@ describe('flags', () => {
     expect(frame.pairs.filter((pair: { second: number }) => pair.second === 8)).toHaveLength(7);
   });
 
+  it('findings --with sees a clash with the other file', () => {
+    const receptor = join(folder(), 'receptor.xyz');
+    writeFileSync(receptor, '1\n\nAr -1.1687 -0.0376 1.3\n');
+    const { status, stdout } = polewise(['findings', '--with', receptor, CLUSTER]);
+    expect(status).toBe(1);
+    expect(stdout).toMatch(/error clash: .*fragment 8 \(of the other file\)/);
+  });
+
+  it('--tolerance takes a share or per cent, not more than all', () => {
+    expect(pairsOf('--tolerance', '20%', CLUSTER).settings.tolerance).toBe(0.2);
+    expect(polewise(['pairs', '--tolerance', '20', CLUSTER]).status).toBe(2);
+  });
+
   it('--periodic uses the cell of a PDB file', () => {
     const pdb = join(folder(), 'cell.pdb');
     const atom = (serial: number, z: string) =>

@@ -301,6 +301,16 @@ export const FINDING_CASES: readonly FindingCase[] = [
     expected: ['dipole-missing: O 0 0 0'],
   },
   {
+    fact: 'a size without a direction is information, once a kind',
+    text: waters('').replace('kind_axes="H2O:O>H"', ''),
+    expected: ['dipole-direction: O 0 0 0'],
+  },
+  {
+    fact: 'a finding misspelt in silence is information',
+    text: waters('silence="near-feild"'),
+    expected: ['key-misspelt: near-feild'],
+  },
+  {
     fact: 'the dipole of an ion is told to depend on its centre',
     text: xyz('Properties=species:S:1:pos:R:3:charge:R:1', 'O 0 0 0 -1.2', 'H 0.96 0 0 0.2'),
     expected: ['dipole-origin: O 0 0 0 -1.2'],

@@ -1,3 +1,4 @@
+import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import { CATALOGUE, FINDING_CODES } from '../../server/src/base/catalogue';
@@ -61,6 +62,21 @@ describe('fixes', () => {
     ] as const) {
       expect(codes).toContain(code);
     }
+  });
+});
+
+describe('sound files are quiet', () => {
+  const sound = readdirSync('samples').filter((name) => !name.startsWith('typical-mistakes'));
+
+  it('there are some', () => {
+    expect(sound.length).toBeGreaterThan(5);
+  });
+
+  it.each(sound)('%s has no error and no warning but near field', (name) => {
+    const text = readFileSync(`samples/${name}`, 'utf8');
+    const { findings } = analyse(text, name.endsWith('.pdb') ? 'pdb' : 'xyz');
+    const loud = findings.filter(({ severity }) => severity === 'error' || severity === 'warning');
+    expect(loud.filter(({ code }) => code !== 'near-field')).toEqual([]);
   });
 });
 

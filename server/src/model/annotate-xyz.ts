@@ -2,7 +2,7 @@ import { FindingCollector } from '../base/finding';
 import type { Span } from '../base/span';
 import type { Entry } from '../formats/annotation/entries';
 import { listGroups, listItems, listWords } from '../formats/annotation/lists';
-import type { FrameTree } from '../formats/tree';
+import { AtomFlag, type FrameTree } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
@@ -181,12 +181,18 @@ class XyzBinder {
       const value = { start: group.start + colon + 1, end: group.end };
       const matches = this.#ofKind(formula);
       for (const f of matches) assign(f, value);
-      if (matches.length === 0) {
+      // A fragment with a hole has another composition than was meant; the hole has been told.
+      if (matches.length === 0 && !this.#hasHoles()) {
         problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {
           return `No fragment of the frame has the composition ${formula}.`;
         });
       }
     }
+  }
+
+  #hasHoles(): boolean {
+    const unreadable = AtomFlag.unknownElement | AtomFlag.noPosition;
+    return this.#frame.atoms.flags.some((flags) => (flags & unreadable) !== 0);
   }
 
   /** Fragments of a composition. */

@@ -88,11 +88,14 @@ function debye(sizeEA: number): string {
 /** The written numbers times a factor, with as many significant digits as they have. */
 function scaled(context: RuleContext, written: WrittenDipole, factor: number): TextEdit[] {
   return written.items.flatMap(({ start, end }) => {
-    const text = context.file.text.slice(start, end);
+    // A size may have its unit behind it, which stays.
+    const [text = ''] = /^[+-]?[\d.]+(?:[eEdD][+-]?\d+)?/.exec(context.file.text.slice(start, end)) ?? [];
     const value = Number(text.replace(/[dD]/, 'e'));
-    if (!Number.isFinite(value) || value === 0) return [];
+    if (!Number.isFinite(value) || value === 0 || text === '') return [];
     const digits = Math.max(4, text.replace(/[eEdD].*$/, '').replace(/^[-+0.]+|[^0-9]/g, '').length);
-    return [{ start, end, text: String(Number((value * factor).toPrecision(Math.min(digits, 15)))) }];
+    return [
+      { start, end: start + text.length, text: String(Number((value * factor).toPrecision(Math.min(digits, 15)))) },
+    ];
   });
 }
 

@@ -136,7 +136,8 @@ export class ModelAtoms {
     const columns = this.#columns;
     const { start, end } = columns.span(line, ATOM_COLUMNS.element);
     // Old files have an identification and a line number there: digits are no symbol.
-    const written = end > start && !isDigit(columns.text.bytes[start]!);
+    const symbol = columns.trimmed(line, ATOM_COLUMNS.element);
+    const written = symbol !== '' && !/^\d/.test(symbol);
     const UNKNOWN = AtomFlag.unknownElement << 8;
     let species = written ? readSpecies(columns.text, start, end) : UNKNOWN;
     if (species & UNKNOWN) {
@@ -148,7 +149,7 @@ export class ModelAtoms {
     this.#atoms.element[atom] = species & 255;
     this.#atoms.flags[atom]! |= species >> 8;
     if (species & UNKNOWN) {
-      const span = written ? { start, end } : columns.span(line, ATOM_COLUMNS.name);
+      const span = symbol !== '' ? { start, end } : columns.span(line, ATOM_COLUMNS.name);
       this.#problems.add(
         'element-unknown',
         span,
@@ -190,10 +191,6 @@ export class ModelAtoms {
     }
     return { atoms: this.#atoms.build(), residues: builder.build(), alternateSites, firstAlternateLine };
   }
-}
-
-function isDigit(unit: number): boolean {
-  return unit >= 48 && unit <= 57;
 }
 
 /** Splits columns 18–27. */
