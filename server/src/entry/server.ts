@@ -1,0 +1,10 @@
+import { createConnection, ProposedFeatures } from 'vscode-languageserver/node';
+import { startServer } from '../lsp/server';
+
+declare const POLEWISE_VERSION: string;
+
+startServer(createConnection(ProposedFeatures.all), {
+  turn: () => new Promise((resolve) => setImmediate(resolve)),
+  now: () => performance.now(),
+  version: POLEWISE_VERSION,
+});

@@ -1,0 +1,193 @@
+import type { FrameAnalysis } from '../analysis/frame-analysis';
+import { pairsOf } from '../analysis/frame-analysis';
+import type { Pair } from '../analysis/pair';
+import { evaluatePair } from '../analysis/pair';
+import { isWithinCutoff, Partners } from '../analysis/partners';
+import type { Span } from '../base/span';
+import type { Entry } from '../formats/annotation/entries';
+import type { CoordinateTree, FrameTree } from '../formats/tree';
+import { KEY_DOCS } from './key-docs';
+import { type FragmentName, type FragmentRecord, fragmentRecord, type PairRecord, pairRecord } from './records';
+
+/** A partner of the fragment under the cursor, seen from it. */
+export interface PartnerView {
+  readonly partner: FragmentRecord;
+  readonly pair: PairRecord;
+  readonly strengthKJPerMol: number;
+}
+
+/** What a hover shows, as plain data. */
+export type HoverData =
+  | {
+      readonly kind: 'fragment';
+      readonly span: Span;
+      readonly atomNumber: number;
+      readonly fragment: FragmentRecord;
+      readonly centre: string;
+      readonly kTKJPerMol: number;
+      /** Those that matter most, strongest first. */
+      readonly partners: readonly PartnerView[];
+      readonly partnerCount: number;
+    }
+  | {
+      readonly kind: 'frame';
+      readonly span: Span;
+      readonly frame: number;
+      readonly frames: number;
+      readonly atoms: number;
+      readonly fragments: number;
+      readonly kTKJPerMol: number;
+      readonly strongest: readonly PartnerView[];
+      readonly pairCount: number;
+      readonly sumKJPerMol: number;
+      readonly regimes: Readonly<Record<'far' | 'edge' | 'near' | 'none', number>>;
+    }
+  | { readonly kind: 'key'; readonly span: Span; readonly key: string; readonly text: string };
+
+const MOST_PARTNERS = 5;
+/** A frame with more pairs is not summed up in a hover. */
+const MOST_PAIRS = 200000;
+
+/** The frame that holds a line, or `undefined` between frames. */
+export function frameAtLine(file: CoordinateTree, line: number): FrameTree | undefined {
+  let low = 0;
+  let high = file.frames.length - 1;
+  while (low <= high) {
+    const middle = (low + high) >> 1;
+    const frame = file.frames[middle]!;
+    if (line < frame.firstLine) high = middle - 1;
+    else if (line >= frame.endLine) low = middle + 1;
+    else return frame;
+  }
+  return undefined;
+}
+
+/** What to show at an offset, or `null` where there is nothing to say. `frameOf` analyses a frame (from 0) or finds it analysed. */
+export function hoverAt(
+  file: CoordinateTree,
+  offset: number,
+  frameOf: (index: number) => FrameAnalysis,
+): HoverData | null {
+  const line = file.lines.lineAt(offset);
+  const tree = frameAtLine(file, line);
+  const key = keyAt(
+    [...(tree?.entries ?? []), ...file.remarks.filter((remark) => remark.line === line).flatMap((r) => r.entries)],
+    offset,
+  );
+  if (key !== null) return key;
+  if (tree === undefined) return null;
+  const atom = atomAtLine(tree, line);
+  if (atom >= 0) return fragmentHover(frameOf(tree.index), atom);
+  if (line === tree.headLine || line === tree.firstLine) return frameHover(file, frameOf(tree.index), line);
+  return null;
+}
+
+function keyAt(entries: readonly Entry[], offset: number): HoverData | null {
+  const entry = entries.find(({ keySpan, value }) => offset >= keySpan.start && offset <= value.end);
+  const text = entry === undefined ? undefined : KEY_DOCS[entry.key];
+  if (entry === undefined || text === undefined) return null;
+  return { kind: 'key', span: { start: entry.keySpan.start, end: entry.value.end }, key: entry.key, text };
+}
+
+/** Index of the atom on a line, or −1. Lines of atoms ascend. */
+export function atomAtLine(tree: FrameTree, line: number): number {
+  const lines = tree.atoms.line;
+  let low = 0;
+  let high = lines.length - 1;
+  while (low <= high) {
+    const middle = (low + high) >> 1;
+    if (lines[middle]! < line) low = middle + 1;
+    else if (lines[middle]! > line) high = middle - 1;
+    else return middle;
+  }
+  return -1;
+}
+
+function namesOf(frame: FrameAnalysis): (fragment: number) => FragmentName {
+  return (f) => ({ name: frame.model.names[f]!, label: frame.model.labels[f] === '' ? null : frame.model.labels[f]! });
+}
+
+function fragmentHover(frame: FrameAnalysis, atom: number): HoverData | null {
+  const f = frame.model.fragments.ofAtom[atom]!;
+  if (f < 0) return null;
+  const pairs = pairsOfFragment(frame, f);
+  const views = pairs
+    .sort(byStrength)
+    .slice(0, MOST_PARTNERS)
+    .map((pair) => viewFrom(frame, f, pair));
+  return {
+    kind: 'fragment',
+    span: frame.model.tree.fieldSpan(atom, 'line'),
+    atomNumber: atom + 1,
+    fragment: fragmentRecord(frame, f, namesOf(frame)),
+    centre: frame.settings.centre,
+    kTKJPerMol: frame.system.kTKJPerMol,
+    partners: views,
+    partnerCount: pairs.length,
+  };
+}
+
+const PARTNERS = new WeakMap<FrameAnalysis, Partners>();
+
+/** All pairs of one fragment. */
+export function pairsOfFragment(frame: FrameAnalysis, f: number): Pair[] {
+  const { system } = frame;
+  let partners = PARTNERS.get(frame);
+  if (partners === undefined) {
+    partners = new Partners(system);
+    PARTNERS.set(frame, partners);
+  }
+  return partners
+    .of(f, false)
+    .map((g) => evaluatePair(system, Math.min(f, g), Math.max(f, g)))
+    .filter((pair) => pair.contact !== 'apart' || isWithinCutoff(system, pair.first, pair.second, pair.distanceA));
+}
+
+function byStrength(a: Pair, b: Pair): number {
+  return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
+}
+
+function viewFrom(frame: FrameAnalysis, f: number, pair: Pair): PartnerView {
+  const other = pair.first === f ? pair.second : pair.first;
+  return {
+    partner: fragmentRecord(frame, other, namesOf(frame)),
+    pair: pairRecord(frame.system, pair),
+    strengthKJPerMol: pair.strengthKJPerMol,
+  };
+}
+
+function frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): HoverData {
+  const { tree } = frame.model;
+  const strongest: Pair[] = [];
+  const regimes = { far: 0, edge: 0, near: 0, none: 0 };
+  let sum = 0;
+  let count = 0;
+  for (const pair of pairsOf(frame.system)) {
+    if (++count > MOST_PAIRS) break;
+    regimes[pair.regime ?? 'none']++;
+    sum += finite(pair.referenceKJPerMol) ?? finite(pair.energies.pointDipole) ?? 0;
+    strongest.push(pair);
+    if (strongest.length > 4 * MOST_PARTNERS) strongest.sort(byStrength).splice(MOST_PARTNERS);
+  }
+  const start = file.lines.starts[line]!;
+  return {
+    kind: 'frame',
+    span: { start, end: file.lines.end(line) },
+    frame: frame.index + 1,
+    frames: file.frames.length,
+    atoms: tree.atoms.count,
+    fragments: frame.model.fragments.count,
+    kTKJPerMol: frame.system.kTKJPerMol,
+    strongest: strongest
+      .sort(byStrength)
+      .slice(0, MOST_PARTNERS)
+      .map((pair) => viewFrom(frame, pair.first, pair)),
+    pairCount: count,
+    sumKJPerMol: sum,
+    regimes,
+  };
+}
+
+function finite(value: number): number | undefined {
+  return Number.isFinite(value) ? value : undefined;
+}

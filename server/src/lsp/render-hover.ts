@@ -1,0 +1,81 @@
+import type { HoverData, PartnerView } from '../features/hover';
+import type { FragmentRecord, Maybe } from '../features/records';
+import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
+
+const CAUTION = 'Estimate for triage, not a substitute for a quantum calculation.';
+const NOTHING = '–';
+
+function fixed(value: Maybe, digits: number): string {
+  if (value === null) return NOTHING;
+  const text = value.toFixed(digits);
+  return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
+}
+
+/** Text of the file, so that it stands as written and means nothing to Markdown. */
+export function escapeMarkdown(text: string): string {
+  return text.replace(/[\\`*_{}[\]()#+\-.!|<>~&]/g, '\\$&').replace(/\s+/g, ' ');
+}
+
+function nameOf(fragment: FragmentRecord): string {
+  return escapeMarkdown(fragment.label ?? fragment.name);
+}
+
+/** A hover as Markdown. */
+export function renderHover(data: HoverData, unit: EnergyUnit): string {
+  switch (data.kind) {
+    case 'key':
+      return `**${escapeMarkdown(data.key)}**\n\n${escapeMarkdown(data.text)}`;
+    case 'fragment':
+      return renderFragment(data, unit);
+    case 'frame':
+      return renderFrame(data, unit);
+  }
+}
+
+function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource }: FragmentRecord): string {
+  if (dipoleNormD === null) return 'dipole unknown';
+  const vector = dipoleD === null ? 'no direction' : `(${dipoleD.map((value) => fixed(value, 2)).join(', ')})`;
+  return `dipole ${fixed(dipoleNormD, 3)} D ${vector}, from ${dipoleSource}`;
+}
+
+function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, unit: EnergyUnit): string {
+  const { fragment } = data;
+  const head =
+    `**${nameOf(fragment)}** (fragment ${fragment.fragment}, atom ${data.atomNumber}) · charge ${fixed(fragment.chargeE, 2)} e, ${fragment.chargeSource}` +
+    ` · ${dipoleInWords(fragment)} · about the centre of ${data.centre}`;
+  if (data.partners.length === 0) return `${head}\n\nNo partner within the cutoff.`;
+  const more = data.partnerCount - data.partners.length;
+  const rest = more > 0 ? `\n\n${more} weaker partner${more === 1 ? '' : 's'} not shown.` : '';
+  return `${head}\n\n${partnerTable(data.partners, unit, data.kTKJPerMol, fragment.fragment)}${rest}\n\n*${CAUTION}*`;
+}
+
+function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUnit): string {
+  const { regimes } = data;
+  const scale = energyUnitsPerKJPerMol(unit, data.kTKJPerMol);
+  const head = `**Frame ${data.frame} of ${data.frames}** · ${data.atoms} atoms · ${data.fragments} fragments · ${data.pairCount} pairs`;
+  if (data.pairCount === 0) return head;
+  const sum = `Sum of the pair energies ${fixed(data.sumKJPerMol * scale, 1)} ${unit}. Point dipole: far ${regimes.far}, edge ${regimes.edge}, near ${regimes.near}, without basis ${regimes.none}.`;
+  return `${head}\n\n${sum}\n\n${partnerTable(data.strongest, unit, data.kTKJPerMol, null)}\n\n*${CAUTION}*`;
+}
+
+function partnerTable(
+  views: readonly PartnerView[],
+  unit: EnergyUnit,
+  kTKJPerMol: number,
+  from: number | null,
+): string {
+  const scale = energyUnitsPerKJPerMol(unit, kTKJPerMol);
+  const rows = views.map(({ partner, pair }) => {
+    const energy = pair.referenceKJPerMol ?? pair.energyKJPerMol.pointDipole;
+    const point = pair.energyKJPerMol.pointDipole;
+    const who = from === null ? `${pair.first}–${pair.second}` : `${nameOf(partner)} (${partner.fragment})`;
+    const angles = [pair.theta1Deg, pair.theta2Deg, pair.phiDeg].map((angle) => fixed(angle, 0)).join(' / ');
+    const times = energy === null ? NOTHING : fixed(Math.abs(energy) / kTKJPerMol, 1);
+    return `| ${who} | ${fixed(pair.distanceA, 2)} | ${angles} | ${fixed(energy === null ? null : energy * scale, 2)} | ${fixed(point === null ? null : point * scale, 2)} | ${times} | ${pair.regime ?? NOTHING} | ${pair.advice ?? 'same molecule'} |`;
+  });
+  return [
+    `| ${from === null ? 'pair' : 'partner'} | R/Å | θ₁ / θ₂ / φ | energy/${unit} | point dipole | × kT | regime | advice |`,
+    '| --- | ---: | :---: | ---: | ---: | ---: | --- | --- |',
+    ...rows,
+  ].join('\n');
+}

@@ -1,0 +1,125 @@
+import {
+  type Connection,
+  DidChangeConfigurationNotification,
+  DocumentDiagnosticReportKind,
+  ErrorCodes,
+  type Hover,
+  LSPErrorCodes,
+  MarkupKind,
+  ResponseError,
+  TextDocumentSyncKind,
+} from 'vscode-languageserver';
+import { hoverAt } from '../features/hover';
+import type { Language } from '../formats/tree';
+import type { Turn } from './analyser';
+import { diagnosticsOf, rangeOf } from './diagnostics';
+import { renderHover } from './render-hover';
+import { readSettings, type ServerSettings } from './settings';
+import { busyStatus, failedStatus, readyStatus, STATUS_NOTIFICATION, type StatusParams } from './status';
+import { offsetOf } from './text-store';
+import { Workspace } from './workspace';
+
+/** What the entry gives the server of its platform. */
+export interface Platform {
+  readonly turn: Turn;
+  readonly now: () => number;
+  readonly version: string;
+}
+
+interface ClientAbilities {
+  configuration: boolean;
+  pull: boolean;
+  refresh: boolean;
+}
+
+/** Serves one connection: documents, findings, hovers, settings, status. */
+export function startServer(connection: Connection, platform: Platform): void {
+  const client: ClientAbilities = { configuration: false, pull: false, refresh: false };
+  let pushed: unknown = {};
+
+  const settingsOf = async (uri: string): Promise<ServerSettings> => {
+    if (!client.configuration) return readSettings(pushed);
+    return readSettings(await connection.workspace.getConfiguration({ scopeUri: uri, section: 'polewise' }));
+  };
+  const tell = (status: StatusParams) => void connection.sendNotification(STATUS_NOTIFICATION, status);
+  const workspace = new Workspace(
+    { turn: platform.turn, now: platform.now, settingsOf },
+    {
+      busy: (uri) => tell(busyStatus(uri)),
+      failed: (uri, reason) => tell(failedStatus(uri, reason)),
+      ready: (analysed) => {
+        tell(readyStatus(analysed));
+        if (client.pull) return;
+        const { uri, version } = analysed.document;
+        void connection.sendDiagnostics({ uri, version, diagnostics: diagnosticsOf(analysed) });
+      },
+    },
+  );
+
+  connection.onInitialize(({ capabilities }) => {
+    client.configuration = capabilities.workspace?.configuration === true;
+    client.pull = capabilities.textDocument?.diagnostic !== undefined;
+    client.refresh = capabilities.workspace?.diagnostics?.refreshSupport === true;
+    return {
+      capabilities: {
+        textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
+        hoverProvider: true,
+        ...(client.pull
+          ? {
+              diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
+            }
+          : {}),
+      },
+      serverInfo: { name: 'Polewise', version: platform.version },
+    };
+  });
+
+  connection.onInitialized(() => {
+    if (client.configuration) void connection.client.register(DidChangeConfigurationNotification.type, undefined);
+  });
+
+  connection.onDidChangeConfiguration(({ settings }) => {
+    pushed = (settings as { polewise?: unknown } | null)?.polewise ?? {};
+    workspace.refresh();
+    if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
+  });
+
+  connection.onDidOpenTextDocument(({ textDocument: { uri, languageId, version, text } }) => {
+    const language: Language = languageId === 'pdb' ? 'pdb' : 'xyz';
+    workspace.open(uri, language, version, text);
+  });
+  connection.onDidChangeTextDocument(({ textDocument: { uri, version }, contentChanges }) => {
+    workspace.change(uri, version, contentChanges);
+  });
+  connection.onDidCloseTextDocument(({ textDocument: { uri } }) => {
+    workspace.close(uri);
+    if (!client.pull) void connection.sendDiagnostics({ uri, diagnostics: [] });
+  });
+
+  connection.languages.diagnostics.on(async ({ textDocument: { uri } }, token) => {
+    const analysed = await workspace.analysed(uri);
+    if (token.isCancellationRequested) throw new ResponseError(LSPErrorCodes.RequestCancelled, 'cancelled');
+    if (analysed !== null) return { kind: DocumentDiagnosticReportKind.Full, items: diagnosticsOf(analysed) };
+    if (workspace.document(uri) === undefined) return { kind: DocumentDiagnosticReportKind.Full, items: [] };
+    // The text changed meanwhile; the editor is to ask again for the new version.
+    throw new ResponseError(LSPErrorCodes.ServerCancelled, 'outdated', { retriggerRequest: true });
+  });
+
+  connection.onHover(async ({ textDocument: { uri }, position }, token): Promise<Hover | null> => {
+    const analysed = await workspace.analysed(uri);
+    if (analysed === null || token.isCancellationRequested) return null;
+    const { document, tree, settings } = analysed;
+    const data = hoverAt(tree, offsetOf(document, position), (index) => analysed.frame(index));
+    if (data === null) return null;
+    return {
+      contents: { kind: MarkupKind.Markdown, value: renderHover(data, settings.energyUnit) },
+      range: rangeOf(document.lines, data.span),
+    };
+  });
+
+  connection.onRequest((method) => {
+    throw new ResponseError(ErrorCodes.MethodNotFound, `${method} is not served`);
+  });
+
+  connection.listen();
+}

@@ -1,0 +1,116 @@
+import {
+  type AnalysisRequest,
+  CENTRES,
+  type Centre,
+  DEFAULT_ENERGY_UNIT,
+  DEFAULT_SETTINGS,
+} from '../analysis/settings';
+import { isFindingCode, SEVERITIES, type Severity } from '../base/catalogue';
+import { findMedium } from '../physics/media';
+import { readQuantity } from '../physics/quantity';
+import { ENERGY_UNITS, type EnergyUnit } from '../physics/units';
+
+/** The editor's settings for one document, checked and clamped. */
+export interface ServerSettings {
+  readonly request: AnalysisRequest;
+  readonly energyUnit: EnergyUnit;
+  readonly severities: ReadonlyMap<string, Severity | 'off'>;
+  readonly maxFindings: number;
+  readonly analysisLimit: number;
+  /** What was wrong with the settings, in words for the status. */
+  readonly complaints: readonly string[];
+}
+
+const DEFAULT_MAX_FINDINGS = 200;
+const DEFAULT_ANALYSIS_LIMIT = 200000;
+
+/** Checks settings as the editor sends them: a wrong one gives its default and a complaint, one out of range is clamped. */
+export function readSettings(raw: unknown): ServerSettings {
+  const reader = new SettingsReader(raw);
+  const settings = {
+    ...DEFAULT_SETTINGS,
+    temperatureK: reader.temperature(),
+    relativePermittivity: reader.permittivity(),
+    centre: reader.choice<Centre>('centre', CENTRES, DEFAULT_SETTINGS.centre),
+    tolerance: reader.number('tolerance', 0.01, 1, DEFAULT_SETTINGS.tolerance),
+    cutoffA: reader.number('cutoff', 1, 100, DEFAULT_SETTINGS.cutoffA),
+  };
+  return {
+    request: Object.freeze({ settings: Object.freeze(settings), forced: {}, periodic: reader.flag('periodic') }),
+    energyUnit: reader.choice<EnergyUnit>('energyUnit', ENERGY_UNITS, DEFAULT_ENERGY_UNIT),
+    severities: reader.severities(),
+    maxFindings: reader.number('maxFindings', 1, 5000, DEFAULT_MAX_FINDINGS),
+    analysisLimit: reader.number('analysisLimit', 0, 1e7, DEFAULT_ANALYSIS_LIMIT),
+    complaints: reader.complaints,
+  };
+}
+
+class SettingsReader {
+  readonly complaints: string[] = [];
+  readonly #raw: Readonly<Record<string, unknown>>;
+
+  constructor(raw: unknown) {
+    this.#raw = raw !== null && typeof raw === 'object' ? (raw as Record<string, unknown>) : {};
+  }
+
+  #value(name: string): unknown {
+    return this.#raw[name] ?? undefined;
+  }
+
+  #complain<T>(name: string, reason: string, fallback: T): T {
+    this.complaints.push(`polewise.${name} ${reason}; the default is used`);
+    return fallback;
+  }
+
+  number(name: string, least: number, most: number, fallback: number): number {
+    const value = this.#value(name);
+    if (value === undefined) return fallback;
+    if (typeof value !== 'number' || !Number.isFinite(value)) return this.#complain(name, 'is no number', fallback);
+    return Math.min(most, Math.max(least, value));
+  }
+
+  choice<T extends string>(name: string, choices: readonly T[], fallback: T): T {
+    const value = this.#value(name);
+    if (value === undefined) return fallback;
+    const found = choices.find((choice) => choice === value);
+    return found ?? this.#complain(name, `is none of ${choices.join(', ')}`, fallback);
+  }
+
+  flag(name: string): boolean {
+    const value = this.#value(name);
+    if (value === undefined || typeof value === 'boolean') return value ?? false;
+    return this.#complain(name, 'is neither true nor false', false);
+  }
+
+  temperature(): number {
+    const value = this.#value('temperature');
+    if (value === undefined) return DEFAULT_SETTINGS.temperatureK;
+    const result = readQuantity(String(value), 'temperatureK');
+    if (result.ok && result.value > 0) return result.value;
+    return this.#complain('temperature', 'is no temperature above 0 K', DEFAULT_SETTINGS.temperatureK);
+  }
+
+  permittivity(): number {
+    const value = this.#value('relativePermittivity');
+    if (value === undefined) return DEFAULT_SETTINGS.relativePermittivity;
+    const medium = typeof value === 'string' ? findMedium(value) : undefined;
+    if (medium !== undefined) return medium.relativePermittivity;
+    const result = readQuantity(String(value), 'number');
+    if (result.ok && result.value >= 1) return result.value;
+    const reason = 'is no number from 1 up and no known medium';
+    return this.#complain('relativePermittivity', reason, DEFAULT_SETTINGS.relativePermittivity);
+  }
+
+  severities(): Map<string, Severity | 'off'> {
+    const value = this.#value('severities');
+    const severities = new Map<string, Severity | 'off'>();
+    if (value === undefined) return severities;
+    if (value === null || typeof value !== 'object') return this.#complain('severities', 'is no table', severities);
+    for (const [code, severity] of Object.entries(value)) {
+      const known = severity === 'off' || (SEVERITIES as readonly unknown[]).includes(severity);
+      if (isFindingCode(code) && known) severities.set(code, severity as Severity | 'off');
+      else this.complaints.push(`polewise.severities has no use for "${code}": ${JSON.stringify(severity)}`);
+    }
+    return severities;
+  }
+}

@@ -1,0 +1,37 @@
+import type { Analysed } from './analyser';
+
+/** What the status item of the editor shows for a document. */
+export interface StatusParams {
+  readonly uri: string;
+  readonly state: 'idle' | 'busy' | 'limited' | 'failed';
+  /** A few words. */
+  readonly text: string;
+  /** A sentence or two. */
+  readonly detail: string;
+}
+
+export const STATUS_NOTIFICATION = 'polewise/status';
+
+const plural = (count: number, what: string) => `${count} ${what}${count === 1 ? '' : 's'}`;
+
+export function busyStatus(uri: string): StatusParams {
+  return { uri, state: 'busy', text: 'computing', detail: 'The pairs of this document are being computed.' };
+}
+
+export function failedStatus(uri: string, reason: string): StatusParams {
+  return { uri, state: 'failed', text: 'failed', detail: `The analysis stopped: ${reason}` };
+}
+
+export function readyStatus({ document, settings, tree, fragments, pairs, limited }: Analysed): StatusParams {
+  const frames = plural(tree.frames.length, 'frame');
+  const complaints = settings.complaints.length === 0 ? '' : ` Settings: ${settings.complaints.join('; ')}.`;
+  if (tree.frames.length === 0) {
+    return { uri: document.uri, state: 'idle', text: 'no coordinates', detail: `No frame could be read.${complaints}` };
+  }
+  if (limited) {
+    const detail = `More atoms than polewise.analysisLimit (${settings.analysisLimit}): the text is checked, pairs are computed on hover alone.${complaints}`;
+    return { uri: document.uri, state: 'limited', text: `${frames}, pairs off`, detail };
+  }
+  const text = `${frames}, ${plural(fragments, 'fragment')}, ${plural(pairs, 'pair')}`;
+  return { uri: document.uri, state: 'idle', text, detail: `${text}.${complaints}` };
+}

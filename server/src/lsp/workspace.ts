@@ -1,0 +1,120 @@
+import type { Language } from '../formats/tree';
+import { type Analysed, analyseDocument, Outdated, type Turn } from './analyser';
+import type { ServerSettings } from './settings';
+import { changeDocument, type OpenDocument, openDocument, type TextChange } from './text-store';
+
+/** What the surroundings give: ways to wait and to tell time, and the settings of a document. */
+export interface Surroundings {
+  readonly turn: Turn;
+  readonly now: () => number;
+  settingsOf(uri: string): Promise<ServerSettings>;
+}
+
+interface Entry {
+  document: OpenDocument;
+  /** Rises with every change of text or settings: what was begun before is outdated. */
+  round: number;
+  running: Promise<Analysed | null> | null;
+  runningRound: number;
+  latest: Analysed | null;
+}
+
+/** What is told of a document's analysis as it goes on. */
+export interface Listener {
+  busy(uri: string): void;
+  ready(analysed: Analysed): void;
+  failed(uri: string, reason: string): void;
+}
+
+/**
+ * The open documents and their analyses. One analysis runs for a document at a time; a change makes it outdated, and the next one starts
+ * when it has noticed. A result is never given for another version than the newest.
+ */
+export class Workspace {
+  readonly #entries = new Map<string, Entry>();
+  readonly #surroundings: Surroundings;
+  readonly #listener: Listener;
+
+  constructor(surroundings: Surroundings, listener: Listener) {
+    this.#surroundings = surroundings;
+    this.#listener = listener;
+  }
+
+  get uris(): string[] {
+    return [...this.#entries.keys()];
+  }
+
+  document(uri: string): OpenDocument | undefined {
+    return this.#entries.get(uri)?.document;
+  }
+
+  open(uri: string, language: Language, version: number, text: string): void {
+    const round = (this.#entries.get(uri)?.round ?? 0) + 1;
+    this.#entries.set(uri, {
+      document: openDocument(uri, language, version, text),
+      round,
+      running: null,
+      runningRound: -1,
+      latest: null,
+    });
+    void this.analysed(uri);
+  }
+
+  change(uri: string, version: number, changes: readonly TextChange[]): void {
+    const entry = this.#entries.get(uri);
+    if (entry === undefined) return;
+    entry.document = changeDocument(entry.document, version, changes);
+    this.#outdate(uri, entry);
+  }
+
+  /** Frees everything that a document held. */
+  close(uri: string): void {
+    const entry = this.#entries.get(uri);
+    if (entry === undefined) return;
+    entry.round++;
+    entry.latest = null;
+    this.#entries.delete(uri);
+  }
+
+  /** Analyses everything anew, after a change of settings. */
+  refresh(): void {
+    for (const [uri, entry] of this.#entries) this.#outdate(uri, entry);
+  }
+
+  #outdate(uri: string, entry: Entry): void {
+    entry.round++;
+    entry.latest = null;
+    void this.analysed(uri);
+  }
+
+  /** The analysis of the newest version; `null` where the document is closed or changes before it is done. */
+  async analysed(uri: string): Promise<Analysed | null> {
+    const entry = this.#entries.get(uri);
+    if (entry === undefined) return null;
+    const { round } = entry;
+    if (entry.latest !== null) return entry.latest;
+    if (entry.running === null || entry.runningRound !== round) {
+      entry.runningRound = round;
+      entry.running = this.#run(uri, entry, round);
+    }
+    return entry.running;
+  }
+
+  async #run(uri: string, entry: Entry, round: number): Promise<Analysed | null> {
+    const isWanted = () => this.#entries.get(uri) === entry && entry.round === round;
+    this.#listener.busy(uri);
+    try {
+      const settings = await this.#surroundings.settingsOf(uri);
+      if (!isWanted()) return null;
+      const { turn, now } = this.#surroundings;
+      const analysed = await analyseDocument(entry.document, settings, turn, now, isWanted);
+      if (!isWanted()) return null;
+      entry.latest = analysed;
+      this.#listener.ready(analysed);
+      return analysed;
+    } catch (error) {
+      if (!(error instanceof Outdated) && isWanted()) this.#listener.failed(uri, (error as Error).message);
+      return null;
+    }
+  }
+}

@@ -1,0 +1,159 @@
+import { type ChildProcess, spawn } from 'node:child_process';
+import { resolve } from 'node:path';
+import {
+  type ClientCapabilities,
+  ConfigurationRequest,
+  createProtocolConnection,
+  type Diagnostic,
+  DidChangeConfigurationNotification,
+  DidChangeTextDocumentNotification,
+  DidCloseTextDocumentNotification,
+  DidOpenTextDocumentNotification,
+  type DocumentDiagnosticReport,
+  DocumentDiagnosticRequest,
+  ExitNotification,
+  type Hover,
+  HoverRequest,
+  InitializedNotification,
+  InitializeRequest,
+  type InitializeResult,
+  LSPErrorCodes,
+  type ProtocolConnection,
+  PublishDiagnosticsNotification,
+  type PublishDiagnosticsParams,
+  RegistrationRequest,
+  ShutdownRequest,
+  StreamMessageReader,
+  StreamMessageWriter,
+  type TextDocumentContentChangeEvent,
+} from 'vscode-languageserver-protocol/node';
+
+/** What the server tells in its status notification. */
+export interface Status {
+  readonly uri: string;
+  readonly state: string;
+  readonly text: string;
+  readonly detail: string;
+}
+
+export interface ClientOptions {
+  /** Whether the client asks for diagnostics itself (default true). */
+  readonly pull?: boolean;
+  readonly settings?: unknown;
+}
+
+/** A client of the built server over a real connection (standard input and output of a process). */
+export class WireClient {
+  readonly connection: ProtocolConnection;
+  readonly published: PublishDiagnosticsParams[] = [];
+  readonly statuses: Status[] = [];
+  settings: unknown;
+  initialized: InitializeResult | undefined;
+  readonly #process: ChildProcess;
+  readonly #exit: Promise<number | null>;
+  readonly #waiting: { test: () => boolean; done: () => void }[] = [];
+
+  private constructor(settings: unknown) {
+    this.settings = settings;
+    this.#process = spawn('node', [resolve('server/dist/server.cjs'), '--stdio'], {
+      stdio: ['pipe', 'pipe', 'inherit'],
+    });
+    this.#exit = new Promise((done) => this.#process.on('exit', done));
+    this.connection = createProtocolConnection(
+      new StreamMessageReader(this.#process.stdout!),
+      new StreamMessageWriter(this.#process.stdin!),
+    );
+    this.connection.onRequest(ConfigurationRequest.type, ({ items }) => items.map(() => this.settings));
+    this.connection.onRequest(RegistrationRequest.type, () => undefined);
+    this.connection.onRequest('workspace/diagnostic/refresh', () => null);
+    this.connection.onNotification(PublishDiagnosticsNotification.type, (params) => {
+      this.published.push(params);
+      this.#look();
+    });
+    this.connection.onNotification('polewise/status', (status: Status) => {
+      this.statuses.push(status);
+      this.#look();
+    });
+    this.connection.listen();
+  }
+
+  static async start({ pull = true, settings = {} }: ClientOptions = {}): Promise<WireClient> {
+    const client = new WireClient(settings);
+    const capabilities: ClientCapabilities = {
+      workspace: { configuration: true, diagnostics: { refreshSupport: true } },
+      textDocument: pull ? { diagnostic: {} } : {},
+    };
+    client.initialized = await client.connection.sendRequest(InitializeRequest.type, {
+      processId: process.pid,
+      rootUri: null,
+      capabilities,
+    });
+    await client.connection.sendNotification(InitializedNotification.type, {});
+    return client;
+  }
+
+  #look(): void {
+    for (const entry of [...this.#waiting]) {
+      if (!entry.test()) continue;
+      this.#waiting.splice(this.#waiting.indexOf(entry), 1);
+      entry.done();
+    }
+  }
+
+  /** Waits until something holds; looked at whenever the server tells something. */
+  until(test: () => boolean): Promise<void> {
+    if (test()) return Promise.resolve();
+    return new Promise((done) => this.#waiting.push({ test, done }));
+  }
+
+  open(uri: string, text: string, languageId = 'xyz', version = 1): void {
+    void this.connection.sendNotification(DidOpenTextDocumentNotification.type, {
+      textDocument: { uri, languageId, version, text },
+    });
+  }
+
+  change(uri: string, version: number, contentChanges: TextDocumentContentChangeEvent[]): void {
+    void this.connection.sendNotification(DidChangeTextDocumentNotification.type, {
+      textDocument: { uri, version },
+      contentChanges,
+    });
+  }
+
+  close(uri: string): void {
+    void this.connection.sendNotification(DidCloseTextDocumentNotification.type, { textDocument: { uri } });
+  }
+
+  configure(settings: unknown): void {
+    this.settings = settings;
+    void this.connection.sendNotification(DidChangeConfigurationNotification.type, {
+      settings: { polewise: settings },
+    });
+  }
+
+  /** The diagnostics of the newest version: asked again where the server says that the text changed meanwhile. */
+  async diagnostics(uri: string): Promise<Diagnostic[]> {
+    for (;;) {
+      try {
+        const report: DocumentDiagnosticReport = await this.connection.sendRequest(DocumentDiagnosticRequest.type, {
+          textDocument: { uri },
+        });
+        return report.kind === 'full' ? report.items : [];
+      } catch (error) {
+        if ((error as { code?: number }).code !== LSPErrorCodes.ServerCancelled) throw error;
+      }
+    }
+  }
+
+  hover(uri: string, line: number, character: number): Promise<Hover | null> {
+    return this.connection.sendRequest(HoverRequest.type, { textDocument: { uri }, position: { line, character } });
+  }
+
+  /** Shuts the server down as the protocol asks; returns its exit status. */
+  async stop(): Promise<number | null> {
+    await this.connection.sendRequest(ShutdownRequest.type);
+    await this.connection.sendNotification(ExitNotification.type);
+    const status = await this.#exit;
+    this.connection.dispose();
+    return status;
+  }
+}
