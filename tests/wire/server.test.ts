@@ -186,6 +186,18 @@ describe('hover', () => {
     );
   });
 
+  it('on a written dipole shows it in every unit and beside the charges', async () => {
+    const uri = nextUri();
+    const lines = MISTAKES.split('\n');
+    const at = lines.findIndex((text) => /revers/i.test(text) && text.includes('fragment_dipoles'));
+    client.open(uri, MISTAKES);
+    const hover = await client.hover(uri, at, lines[at]!.indexOf('fragment_dipoles="') + 20);
+    const text = (hover!.contents as { value: string }).value;
+    expect(text).toMatch(/2\.310 D = 0\.4810 e·Å = 0\.9090 a\.u\. = 7\.707e−30 C·m/);
+    expect(text).toContain('The charges give 2.31');
+    expect(text).toContain('180° from it');
+  });
+
   it('on a MODEL record shows the frame, on a PDB atom its residue', async () => {
     const uri = nextUri();
     client.open(uri, SITE, 'pdb');

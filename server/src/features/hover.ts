@@ -3,6 +3,7 @@ import { pairsOf } from '../analysis/frame-analysis';
 import type { Pair } from '../analysis/pair';
 import { evaluatePair } from '../analysis/pair';
 import { isWithinCutoff, Partners } from '../analysis/partners';
+import { ZERO_DIPOLE_EA } from '../analysis/settings';
 import type { Span } from '../base/span';
 import type { Entry } from '../formats/annotation/entries';
 import type { CoordinateTree, FrameTree } from '../formats/tree';
@@ -42,7 +43,20 @@ export type HoverData =
       readonly sumKJPerMol: number;
       readonly regimes: Readonly<Record<'far' | 'edge' | 'near' | 'none', number>>;
     }
-  | { readonly kind: 'key'; readonly span: Span; readonly key: string; readonly text: string };
+  | { readonly kind: 'key'; readonly span: Span; readonly key: string; readonly text: string }
+  | {
+      readonly kind: 'dipole';
+      readonly span: Span;
+      readonly key: string;
+      readonly text: string;
+      readonly fragment: FragmentRecord;
+      readonly centre: string;
+      /** The written value as read, e·Å. */
+      readonly sizeEA: number;
+      /** Dipole of the charge column, for comparison: size, and angle to the dipole in use. */
+      readonly chargesEA: number | null;
+      readonly angleDeg: number | null;
+    };
 
 const MOST_PARTNERS = 5;
 /** A frame with more pairs is not summed up in a hover. */
@@ -70,11 +84,13 @@ export function hoverAt(
 ): HoverData | null {
   const line = file.lines.lineAt(offset);
   const tree = frameAtLine(file, line);
-  const key = keyAt(
-    [...(tree?.entries ?? []), ...file.remarks.filter((remark) => remark.line === line).flatMap((r) => r.entries)],
-    offset,
-  );
-  if (key !== null) return key;
+  const onLine = file.remarks.filter((remark) => remark.line === line).flatMap((remark) => remark.entries);
+  const key = keyAt([...(tree?.entries ?? []), ...onLine], offset);
+  if (key !== null) {
+    // A REMARK stands before the models; the first of them shows what it does.
+    const frame = tree ?? file.frames[0];
+    return frame === undefined ? key : (dipoleAt(frameOf(frame.index), key, offset) ?? key);
+  }
   if (tree === undefined) return null;
   const atom = atomAtLine(tree, line);
   if (atom >= 0) return fragmentHover(frameOf(tree.index), atom);
@@ -82,7 +98,42 @@ export function hoverAt(
   return null;
 }
 
-function keyAt(entries: readonly Entry[], offset: number): HoverData | null {
+type KeyHover = Extract<HoverData, { kind: 'key' }>;
+
+/** The dipole written at an offset, with what it is compared with; `null` where none is. */
+function dipoleAt(frame: FrameAnalysis, { key, text }: KeyHover, offset: number): HoverData | null {
+  const holds = (span: Span | undefined) => span !== undefined && offset >= span.start && offset <= span.end;
+  const { notes } = frame.model;
+  const f = notes.findIndex((note) => holds(note.writtenDipole?.span) || holds(note.writtenSize?.span));
+  if (f < 0) return null;
+  const note = notes[f]!;
+  const written = holds(note.writtenDipole?.span) ? note.writtenDipole! : note.writtenSize!;
+  const { moments } = frame;
+  const vector = (array: Float64Array) => [array[3 * f]!, array[3 * f + 1]!, array[3 * f + 2]!] as const;
+  const used = vector(moments.dipoleEA);
+  const charges = vector(moments.columnDipoleEA);
+  const chargesEA = finite(Math.hypot(...charges)) ?? null;
+  const cosine =
+    (used[0] * charges[0] + used[1] * charges[1] + used[2] * charges[2]) /
+    (Math.hypot(...used) * Math.hypot(...charges));
+  const angle = (Math.acos(Math.max(-1, Math.min(1, cosine))) * 180) / Math.PI;
+  return {
+    kind: 'dipole',
+    span: written.span,
+    key,
+    text,
+    fragment: fragmentRecord(frame, f, namesOf(frame)),
+    centre: frame.settings.centre,
+    sizeEA:
+      note.dipoleEA !== null && written === note.writtenDipole
+        ? Math.hypot(...note.dipoleEA)
+        : (note.dipoleSizeEA ?? 0),
+    chargesEA,
+    angleDeg: chargesEA === null || chargesEA < ZERO_DIPOLE_EA ? null : (finite(angle) ?? null),
+  };
+}
+
+function keyAt(entries: readonly Entry[], offset: number): KeyHover | null {
   const entry = entries.find(({ keySpan, value }) => offset >= keySpan.start && offset <= value.end);
   const text = entry === undefined ? undefined : KEY_DOCS[entry.key];
   if (entry === undefined || text === undefined) return null;

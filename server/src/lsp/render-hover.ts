@@ -1,5 +1,6 @@
 import type { HoverData, PartnerView } from '../features/hover';
 import type { FragmentRecord, Maybe } from '../features/records';
+import { BOHR_A, COULOMB_METRE_E_A, DEBYE_E_A } from '../physics/constants';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
 
 const CAUTION = 'Estimate for triage, not a substitute for a quantum calculation.';
@@ -13,7 +14,7 @@ function fixed(value: Maybe, digits: number): string {
 
 /** Text of the file, so that it stands as written and means nothing to Markdown. */
 export function escapeMarkdown(text: string): string {
-  return text.replace(/[\\`*_{}[\]()#+\-.!|<>~&]/g, '\\$&').replace(/\s+/g, ' ');
+  return text.replace(/[\\`*_{}[\]()#!|<>~&]/g, '\\$&').replace(/\s+/g, ' ');
 }
 
 function nameOf(fragment: FragmentRecord): string {
@@ -25,11 +26,31 @@ export function renderHover(data: HoverData, unit: EnergyUnit): string {
   switch (data.kind) {
     case 'key':
       return `**${escapeMarkdown(data.key)}**\n\n${escapeMarkdown(data.text)}`;
+    case 'dipole':
+      return renderDipole(data);
     case 'fragment':
       return renderFragment(data, unit);
     case 'frame':
       return renderFrame(data, unit);
   }
+}
+
+function renderDipole(data: Extract<HoverData, { kind: 'dipole' }>): string {
+  const { sizeEA, chargesEA, angleDeg } = data;
+  const units = [
+    `${fixed(sizeEA / DEBYE_E_A, 3)} D`,
+    `${fixed(sizeEA, 4)} e·Å`,
+    `${fixed(sizeEA / BOHR_A, 4)} a.u.`,
+    `${(sizeEA / COULOMB_METRE_E_A).toExponential(3).replace('-', '−')} C·m`,
+  ];
+  const compared =
+    chargesEA === null
+      ? 'There are no charges to compare it with.'
+      : `The charges give ${fixed(chargesEA / DEBYE_E_A, 3)} D${angleDeg === null ? '' : `, ${fixed(angleDeg, 0)}° from it`}.`;
+  return (
+    `**${escapeMarkdown(data.key)}** of ${nameOf(data.fragment)} (fragment ${data.fragment.fragment})\n\n` +
+    `${units.join(' = ')}\n\n${compared} From negative to positive charge, about the centre of ${data.centre}.\n\n${escapeMarkdown(data.text)}`
+  );
 }
 
 function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource }: FragmentRecord): string {
