@@ -172,6 +172,10 @@ describe('hover', () => {
     expect(text).toContain('from axis');
     expect(text).toMatch(/\| H2O \(6\) \| 2\.80 \|.*\| near \| compute \|/);
     expect(text).toContain('not a substitute for a quantum calculation');
+    const image = /!\[([^\]]+)\]\(data:image\/svg\+xml;base64,([A-Za-z0-9+/=]+)\|width=360,height=164\)/.exec(text)!;
+    expect(image[1]).toContain('Attractive');
+    expect(Buffer.from(image[2]!, 'base64').toString('utf8')).toMatch(/^<svg [\s\S]*<\/svg>$/);
+    expect(text.length).toBeLessThan(20000);
   });
 
   it('on the comment line shows the frame, on a key what it means', async () => {

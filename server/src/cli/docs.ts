@@ -1,12 +1,40 @@
 import { CATALOGUE, FINDING_CODES, SEVERITIES } from '../base/catalogue';
 import { MEDIA } from '../physics/media';
 
+/** What is read of the extension's manifest. */
+export interface Manifest {
+  readonly contributes: {
+    readonly configuration: { readonly properties: Readonly<Record<string, SettingEntry>> };
+  };
+}
+
+interface SettingEntry {
+  readonly default: unknown;
+  readonly minimum?: number;
+  readonly maximum?: number;
+  readonly enum?: readonly string[];
+  readonly markdownDescription?: string;
+  readonly description?: string;
+}
+
 /** Parts of the README that are made from the program's own tables, by the name of their markers. */
-export function generatedSections(): ReadonlyMap<string, string> {
+export function generatedSections(manifest: Manifest): ReadonlyMap<string, string> {
   return new Map([
     ['findings', findingsSection()],
     ['media', mediaSection()],
+    ['settings', settingsSection(manifest)],
   ]);
+}
+
+function settingsSection({ contributes }: Manifest): string {
+  const rows = Object.entries(contributes.configuration.properties).map(([name, entry]) => {
+    const { minimum, maximum } = entry;
+    const bounds = minimum === undefined && maximum === undefined ? '' : `${minimum ?? ''} to ${maximum ?? ''}`;
+    const range = entry.enum === undefined ? bounds : entry.enum.join(', ');
+    const text = (entry.markdownDescription ?? entry.description ?? '').replace(/\s*\n\s*/g, ' ').replace(/\|/g, '\\|');
+    return `| \`${name}\` | \`${JSON.stringify(entry.default)}\` | ${range} | ${text} |`;
+  });
+  return ['| setting | default | range | meaning |', '| --- | --- | --- | --- |', ...rows].join('\n');
 }
 
 function findingsSection(): string {

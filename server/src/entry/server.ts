@@ -7,4 +7,5 @@ startServer(createConnection(ProposedFeatures.all), {
   turn: () => new Promise((resolve) => setImmediate(resolve)),
   now: () => performance.now(),
   version: POLEWISE_VERSION,
+  base64: (text) => Buffer.from(text, 'utf8').toString('base64'),
 });

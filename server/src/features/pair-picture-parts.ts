@@ -89,6 +89,12 @@ export function fitted(text: string, widthPx: number): string {
   return `${kept}…`;
 }
 
+/** The first `count` characters, with "…" where something is cut. */
+export function fittedCount(text: string, count: number): string {
+  const characters = [...text];
+  return characters.length <= count ? text : `${characters.slice(0, count - 1).join('')}…`;
+}
+
 /** What XML 1.0 cannot hold, line breaks, and marks that turn the direction of the text around them. */
 const UNPRINTABLE = /[\p{Cc}\p{Cs}\u2028-\u202e\u2066-\u2069\ufffe\uffff]/gu;
 
@@ -118,7 +124,7 @@ const HEAD_HALF_WIDTH = 0.45;
 const WEDGE_HALF_WIDTH = 3.5;
 const SHAFT_HALF_WIDTH = 1.2;
 const HOLLOW_HALF_WIDTH = 3;
-const HASHES = 7;
+const HASHES = 8;
 
 /** An arrow as one closed outline (a hashed one also as short strokes). */
 export function arrow({ tailX, tailY, tipX, tipY }: Arrow, colour: string, style: ArrowStyle): string {
@@ -130,7 +136,8 @@ export function arrow({ tailX, tailY, tipX, tipY }: Arrow, colour: string, style
   const head = Math.min(HEAD_LENGTH, HEAD_SHARE * length);
   const base = length - head;
   const slim = head / HEAD_LENGTH;
-  const wide = style === 'plain' ? SHAFT_HALF_WIDTH : (style === 'hollow' ? HOLLOW_HALF_WIDTH : WEDGE_HALF_WIDTH) * slim;
+  const wide =
+    style === 'plain' ? SHAFT_HALF_WIDTH : (style === 'hollow' ? HOLLOW_HALF_WIDTH : WEDGE_HALF_WIDTH) * slim;
   const narrow = style === 'toward' ? 0.3 : wide;
   const barb = HEAD_HALF_WIDTH * head + (style === 'plain' ? 0 : 1.5 * slim);
   const headPoints = [at(base, barb), at(length, 0), at(base, -barb)];
@@ -148,12 +155,12 @@ function hashes(
   let path = '';
   for (let i = 0; i < HASHES; i++) {
     const share = (i + 0.5) / HASHES;
-    const half = 0.6 + share * wide;
+    const half = 1 + share * wide;
     const [x1, y1] = at(share * base, half);
     const [x2, y2] = at(share * base, -half);
     path += `M${rounded(x1)} ${rounded(y1)}L${rounded(x2)} ${rounded(y2)}`;
   }
-  return element('path', { d: path, stroke, 'stroke-width': 1.6 });
+  return element('path', { d: path, stroke, 'stroke-width': 1.8 });
 }
 
 /** "+1", "−2", "+0.5". */

@@ -1,4 +1,6 @@
 import type { HoverData, PartnerView } from '../features/hover';
+import { pairPicture } from '../features/pair-picture';
+import type { PictureTheme } from '../features/pair-picture-parts';
 import type { FragmentRecord, Maybe } from '../features/records';
 import { BOHR_A, COULOMB_METRE_E_A, DEBYE_E_A } from '../physics/constants';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
@@ -21,17 +23,25 @@ function nameOf(fragment: FragmentRecord): string {
   return escapeMarkdown(fragment.label ?? fragment.name);
 }
 
+/** How a hover is drawn. */
+export interface HoverLook {
+  readonly unit: EnergyUnit;
+  readonly theme: PictureTheme | null;
+  /** Base64 of the UTF-8 bytes of a text. */
+  base64(text: string): string;
+}
+
 /** A hover as Markdown. */
-export function renderHover(data: HoverData, unit: EnergyUnit): string {
+export function renderHover(data: HoverData, look: HoverLook): string {
   switch (data.kind) {
     case 'key':
       return `**${escapeMarkdown(data.key)}**\n\n${escapeMarkdown(data.text)}`;
     case 'dipole':
       return renderDipole(data);
     case 'fragment':
-      return renderFragment(data, unit);
+      return renderFragment(data, look);
     case 'frame':
-      return renderFrame(data, unit);
+      return renderFrame(data, look.unit);
   }
 }
 
@@ -59,7 +69,8 @@ function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource }: FragmentRecord): 
   return `dipole ${fixed(dipoleNormD, 3)} D ${vector}, from ${dipoleSource}`;
 }
 
-function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, unit: EnergyUnit): string {
+function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, look: HoverLook): string {
+  const { unit } = look;
   const { fragment } = data;
   const head =
     `**${nameOf(fragment)}** (fragment ${fragment.fragment}, atom ${data.atomNumber}) · charge ${fixed(fragment.chargeE, 2)} e, ${fragment.chargeSource}` +
@@ -67,7 +78,38 @@ function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, unit: En
   if (data.partners.length === 0) return `${head}\n\nNo partner within the cutoff.`;
   const more = data.partnerCount - data.partners.length;
   const rest = more > 0 ? `\n\n${more} weaker partner${more === 1 ? '' : 's'} not shown.` : '';
-  return `${head}\n\n${partnerTable(data.partners, unit, data.kTKJPerMol, fragment.fragment)}${rest}\n\n*${CAUTION}*`;
+  return `${head}\n\n${partnerTable(data.partners, unit, data.kTKJPerMol, fragment.fragment)}${rest}\n\n${picture(data, data.partners[0]!, look)}\n\n*${CAUTION}*`;
+}
+
+/** The strongest pair as a picture, and the same in words. */
+function picture(
+  { fragment, kTKJPerMol }: Extract<HoverData, { kind: 'fragment' }>,
+  { partner, pair }: PartnerView,
+  { unit, theme, base64 }: HoverLook,
+): string {
+  const [first, second] = pair.first === fragment.fragment ? [fragment, partner] : [partner, fragment];
+  const { svg, text } = pairPicture({
+    name1: first.name,
+    name2: second.name,
+    distanceA: pair.distanceA,
+    extent1A: first.extentA,
+    extent2A: second.extentA,
+    charge1E: first.chargeE,
+    charge2E: second.chargeE,
+    dipole1D: first.dipoleD === null ? null : first.dipoleNormD,
+    dipole2D: second.dipoleD === null ? null : second.dipoleNormD,
+    theta1Deg: pair.theta1Deg,
+    theta2Deg: pair.theta2Deg,
+    phiDeg: pair.phiDeg,
+    pointKJPerMol: pair.energyKJPerMol.pointDipole,
+    referenceKJPerMol: pair.referenceKJPerMol,
+    kTKJPerMol,
+    unit,
+    unitsPerKJPerMol: energyUnitsPerKJPerMol(unit, kTKJPerMol),
+    theme,
+  });
+  const words = escapeMarkdown(text);
+  return `![${words}](data:image/svg+xml;base64,${base64(svg)}|width=360,height=164)\n\n${words}`;
 }
 
 function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUnit): string {

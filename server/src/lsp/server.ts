@@ -10,6 +10,7 @@ import {
   TextDocumentSyncKind,
 } from 'vscode-languageserver';
 import { hoverAt } from '../features/hover';
+import type { PictureTheme } from '../features/pair-picture-parts';
 import type { Language } from '../formats/tree';
 import type { Turn } from './analyser';
 import { diagnosticsOf, rangeOf } from './diagnostics';
@@ -24,6 +25,8 @@ export interface Platform {
   readonly turn: Turn;
   readonly now: () => number;
   readonly version: string;
+  /** Base64 of the UTF-8 bytes of a text. */
+  base64(text: string): string;
 }
 
 interface ClientAbilities {
@@ -32,10 +35,20 @@ interface ClientAbilities {
   refresh: boolean;
 }
 
+const THEME_NOTIFICATION = 'polewise/theme';
+const THEMES: readonly PictureTheme[] = ['light', 'dark', 'high-contrast'];
+
+/** The kind of theme that a client tells of, or `null`. */
+function themeOf(params: unknown): PictureTheme | null {
+  const kind = (params as { themeKind?: unknown } | null | undefined)?.themeKind;
+  return THEMES.find((theme) => theme === kind) ?? null;
+}
+
 /** Serves one connection: documents, findings, hovers, settings, status. */
 export function startServer(connection: Connection, platform: Platform): void {
   const client: ClientAbilities = { configuration: false, pull: false, refresh: false };
   let pushed: unknown = {};
+  let theme: PictureTheme | null = null;
 
   const settingsOf = async (uri: string): Promise<ServerSettings> => {
     if (!client.configuration) return readSettings(pushed);
@@ -56,7 +69,8 @@ export function startServer(connection: Connection, platform: Platform): void {
     },
   );
 
-  connection.onInitialize(({ capabilities }) => {
+  connection.onInitialize(({ capabilities, initializationOptions }) => {
+    theme = themeOf(initializationOptions);
     client.configuration = capabilities.workspace?.configuration === true;
     client.pull = capabilities.textDocument?.diagnostic !== undefined;
     client.refresh = capabilities.workspace?.diagnostics?.refreshSupport === true;
@@ -112,9 +126,16 @@ export function startServer(connection: Connection, platform: Platform): void {
     const data = hoverAt(tree, offsetOf(document, position), (index) => analysed.frame(index));
     if (data === null) return null;
     return {
-      contents: { kind: MarkupKind.Markdown, value: renderHover(data, settings.energyUnit) },
+      contents: {
+        kind: MarkupKind.Markdown,
+        value: renderHover(data, { unit: settings.energyUnit, theme, base64: platform.base64 }),
+      },
       range: rangeOf(document.lines, data.span),
     };
+  });
+
+  connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
+    theme = themeOf(params);
   });
 
   connection.onRequest((method) => {
