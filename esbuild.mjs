@@ -1,5 +1,7 @@
 // Bundles every entry point. `node esbuild.mjs` writes what the package and the command line run.
-import { readFile } from 'node:fs/promises';
+import { readdirSync } from 'node:fs';
+import { readFile, writeFile } from 'node:fs/promises';
+import { join } from 'node:path';
 import { build } from 'esbuild';
 
 const { version } = JSON.parse(await readFile(new URL('package.json', import.meta.url), 'utf8'));
@@ -12,13 +14,14 @@ const shared = {
   sourcemap: false,
   legalComments: 'none',
   logLevel: 'warning',
+  metafile: true,
   define: { POLEWISE_VERSION: JSON.stringify(version) },
 };
 
 /** What goes into the .vsix is made small; names are kept so that a stack trace stays readable. */
 const packaged = { ...shared, minify: true, keepNames: true };
 
-await Promise.all([
+const results = await Promise.all([
   build({
     ...shared,
     entryPoints: { cli: 'server/src/entry/cli.ts', docs: 'server/src/entry/docs.ts' },
@@ -38,3 +41,22 @@ await Promise.all([
     outfile: 'server/dist/server.cjs',
   }),
 ]);
+
+/** The licences of the packages that a bundle took in; they ask to be passed on with it. */
+async function noticesOf(metafiles) {
+  const folders = new Set();
+  for (const path of metafiles.flatMap((metafile) => Object.keys(metafile.inputs))) {
+    const folder = /^(?:.*\/)?node_modules\/(?:@[^/]+\/)?[^/]+/.exec(path)?.[0];
+    if (folder !== undefined) folders.add(folder);
+  }
+  const notices = [];
+  for (const folder of [...folders].sort()) {
+    const manifest = JSON.parse(await readFile(join(folder, 'package.json'), 'utf8'));
+    const file = readdirSync(folder).find((name) => /^licen[cs]e/i.test(name));
+    const text = file === undefined ? `Licence: ${manifest.license}` : await readFile(join(folder, file), 'utf8');
+    notices.push(`${manifest.name} ${manifest.version}\n\n${text.trim()}\n`);
+  }
+  return notices.join(`\n${'-'.repeat(78)}\n\n`);
+}
+
+await writeFile('server/dist/NOTICES.txt', await noticesOf(results.map((result) => result.metafile)));
