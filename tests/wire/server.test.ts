@@ -167,9 +167,10 @@ describe('hover', () => {
     client.open(uri, CLUSTER);
     const hover = await client.hover(uri, 2, 3);
     const text = (hover!.contents as { value: string }).value;
-    expect(text).toContain('**H2O** (fragment 1, atom 1)');
-    expect(text).toContain('dipole 1.855 D');
-    expect(text).toContain('from axis');
+    expect(text).toContain('**H2O** · fragment 1, atom 1 · charge 0.00 e (assumed) · dipole 1.855 D (axis)');
+    expect(text).toMatch(
+      /Strongest partner \*\*H2O \(6\)\*\* at 2\.80 Å: attractive, −15\.7 kJ\/mol = 6\.3 kT, point dipole near, \*\*compute\*\*/,
+    );
     expect(text).toMatch(/\| H2O \(6\) \| 2\.80 \|.*\| near \| compute \|/);
     expect(text).toContain('not a substitute for a quantum calculation');
     const image = /!\[([^\]]+)\]\(data:image\/svg\+xml;base64,([A-Za-z0-9+/=]+)\|width=360,height=164\)/.exec(text)!;

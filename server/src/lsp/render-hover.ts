@@ -65,20 +65,44 @@ function renderDipole(data: Extract<HoverData, { kind: 'dipole' }>): string {
 
 function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource }: FragmentRecord): string {
   if (dipoleNormD === null) return 'dipole unknown';
-  const vector = dipoleD === null ? 'no direction' : `(${dipoleD.map((value) => fixed(value, 2)).join(', ')})`;
-  return `dipole ${fixed(dipoleNormD, 3)} D ${vector}, from ${dipoleSource}`;
+  return `dipole ${fixed(dipoleNormD, 3)} D (${dipoleSource}${dipoleD === null ? ', no direction' : ''})`;
 }
 
+/** What to know at a glance comes first and fits into what a hover shows without scrolling: fragment, verdict, picture. */
 function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, look: HoverLook): string {
-  const { unit } = look;
-  const { fragment } = data;
+  const { fragment, partners, partnerCount } = data;
   const head =
-    `**${nameOf(fragment)}** (fragment ${fragment.fragment}, atom ${data.atomNumber}) · charge ${fixed(fragment.chargeE, 2)} e, ${fragment.chargeSource}` +
-    ` · ${dipoleInWords(fragment)} · about the centre of ${data.centre}`;
-  if (data.partners.length === 0) return `${head}\n\nNo partner within the cutoff.`;
-  const more = data.partnerCount - data.partners.length;
-  const rest = more > 0 ? `\n\n${more} weaker partner${more === 1 ? '' : 's'} not shown.` : '';
-  return `${head}\n\n${partnerTable(data.partners, unit, data.kTKJPerMol, fragment.fragment)}${rest}\n\n${picture(data, data.partners[0]!, look)}\n\n*${CAUTION}*`;
+    `**${nameOf(fragment)}** · fragment ${fragment.fragment}, atom ${data.atomNumber}` +
+    ` · charge ${fixed(fragment.chargeE, 2)} e (${fragment.chargeSource}) · ${dipoleInWords(fragment)}`;
+  const [strongest] = partners;
+  if (strongest === undefined) return `${head}\n\nNo partner within the cutoff.`;
+  const more = partnerCount - partners.length;
+  return [
+    head,
+    verdict(strongest, look.unit, data.kTKJPerMol),
+    picture(data, strongest, look),
+    partnerTable(partners, look.unit, data.kTKJPerMol, fragment.fragment),
+    ...(more > 0 ? [`${more} weaker partner${more === 1 ? '' : 's'} not shown.`] : []),
+    ...originInWords(data),
+    `*${CAUTION}*`,
+  ].join('\n\n');
+}
+
+function originInWords({ fragment, centre }: Extract<HoverData, { kind: 'fragment' }>): string[] {
+  if (fragment.dipoleD === null) return [];
+  const vector = fragment.dipoleD.map((value) => fixed(value, 2)).join(', ');
+  return [`Dipole (${vector}) D, from negative to positive charge, about the centre of ${centre}.`];
+}
+
+function verdict({ partner, pair }: PartnerView, unit: EnergyUnit, kTKJPerMol: number): string {
+  const energy = pair.referenceKJPerMol ?? pair.energyKJPerMol.pointDipole;
+  const who = `Strongest partner **${nameOf(partner)} (${partner.fragment})** at ${fixed(pair.distanceA, 2)} Å`;
+  const advice = pair.advice === null ? 'parts of one molecule' : `**${pair.advice}**`;
+  if (energy === null) return `${who}: energy not known, ${advice}`;
+  const kind = energy < 0 ? 'attractive' : energy > 0 ? 'repulsive' : 'no interaction';
+  const size = `${fixed(energy * energyUnitsPerKJPerMol(unit, kTKJPerMol), 1)} ${unit}`;
+  const regime = pair.regime === null ? 'no basis to judge the point dipole' : `point dipole ${pair.regime}`;
+  return `${who}: ${kind}, ${size} = ${fixed(Math.abs(energy) / kTKJPerMol, 1)} kT, ${regime}, ${advice}`;
 }
 
 /** The strongest pair as a picture, and the same in words. */
@@ -109,7 +133,7 @@ function picture(
     theme,
   });
   const words = escapeMarkdown(text);
-  return `![${words}](data:image/svg+xml;base64,${base64(svg)}|width=360,height=164)\n\n${words}`;
+  return `![${words}](data:image/svg+xml;base64,${base64(svg)}|width=360,height=164)`;
 }
 
 function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUnit): string {
