@@ -171,7 +171,7 @@ describe('hover', () => {
     expect(text).toMatch(
       /Strongest partner \*\*H2O \(6\)\*\* at 2\.80 Å: attractive, −15\.7 kJ\/mol = 6\.3 kT, point dipole near, \*\*compute\*\*/,
     );
-    expect(text).toMatch(/\| H2O \(6\) \| 2\.80 \|.*\| near \| compute \|/);
+    expect(text).toMatch(/\| H2O \(6\) \| compute \| 2\.80 \|.*\| near \| touching \|/);
     expect(text).toContain('not a substitute for a quantum calculation');
     const image = /!\[([^\]]+)\]\(data:image\/svg\+xml;base64,([A-Za-z0-9+/=]+)\|width=360,height=164\)/.exec(text)!;
     expect(image[1]).toContain('Attractive');

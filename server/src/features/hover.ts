@@ -40,7 +40,9 @@ export type HoverData =
       readonly kTKJPerMol: number;
       readonly strongest: readonly PartnerView[];
       readonly pairCount: number;
+      /** Sum over the pairs whose energy is known, and how many these are. */
       readonly sumKJPerMol: number;
+      readonly summedPairs: number;
       readonly regimes: Readonly<Record<'far' | 'edge' | 'near' | 'none', number>>;
     }
   | { readonly kind: 'key'; readonly span: Span; readonly key: string; readonly text: string }
@@ -202,9 +204,16 @@ function viewFrom(frame: FrameAnalysis, f: number, pair: Pair): PartnerView {
   const other = pair.first === f ? pair.second : pair.first;
   return {
     partner: fragmentRecord(frame, other, namesOf(frame)),
-    pair: pairRecord(frame.system, pair),
+    pair: turned(pairRecord(frame.system, pair), pair.second === f),
     strengthKJPerMol: pair.strengthKJPerMol,
   };
+}
+
+/** A pair as seen from its second fragment, where that is asked for: the line of centres turns round. */
+function turned(record: PairRecord, isTurned: boolean): PairRecord {
+  if (!isTurned) return record;
+  const opposite = (angle: number | null) => (angle === null ? null : 180 - angle);
+  return { ...record, theta1Deg: opposite(record.theta2Deg), theta2Deg: opposite(record.theta1Deg) };
 }
 
 function frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): HoverData {
@@ -212,11 +221,16 @@ function frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): H
   const strongest: Pair[] = [];
   const regimes = { far: 0, edge: 0, near: 0, none: 0 };
   let sum = 0;
+  let summed = 0;
   let count = 0;
   for (const pair of pairsOf(frame.system)) {
     if (++count > MOST_PAIRS) break;
     regimes[pair.regime ?? 'none']++;
-    sum += finite(pair.referenceKJPerMol) ?? finite(pair.energies.pointDipole) ?? 0;
+    const energy = finite(pair.referenceKJPerMol) ?? finite(pair.energies.pointDipole);
+    if (energy !== undefined) {
+      sum += energy;
+      summed++;
+    }
     strongest.push(pair);
     if (strongest.length > 4 * MOST_PARTNERS) strongest.sort(byStrength).splice(MOST_PARTNERS);
   }
@@ -235,6 +249,7 @@ function frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): H
       .map((pair) => viewFrom(frame, pair.first, pair)),
     pairCount: count,
     sumKJPerMol: sum,
+    summedPairs: summed,
     regimes,
   };
 }

@@ -37,9 +37,14 @@ export class AtomBuilder {
 
   /** Index of a new atom, all of whose columns are zero. */
   next(line: number): number {
-    if (this.count === this.element.length) this.#grow();
+    this.reserve();
     this.line[this.count] = line;
     return this.count++;
+  }
+
+  /** Makes room for one more atom, without taking it. */
+  reserve(): void {
+    if (this.count === this.element.length) this.#grow();
   }
 
   #grow(): void {

@@ -50,6 +50,15 @@ export function readSpecies(snapshot: Snapshot, start: number, end: number): Pac
   return z > 0 && z <= MAX_ATOMIC_NUMBER ? z : UNKNOWN;
 }
 
+/** Atomic number of a symbol of one letter, or of two; 0 for anything else. `second` is a blank where there is none. */
+export function symbolNumber(first: number, second: number): number {
+  const high = (first | LOWER_CASE) - LETTER_A;
+  if (high < 0 || high > 25 || first > 127) return 0;
+  if (second === LOWER_CASE) return BY_LETTERS[27 * high]!;
+  const low = (second | LOWER_CASE) - LETTER_A;
+  return low < 0 || low > 25 || second > 127 ? 0 : BY_LETTERS[27 * high + low + 1]!;
+}
+
 function readLabel(label: string): PackedSpecies {
   if (/^(?:x|xx|bq)(?:[^a-z].*)?$/i.test(label) || /^(?:bq|gh)/i.test(label)) return GHOST;
   const letters = /^([a-z]+)(?:[^a-z].*)?$/i.exec(label)?.[1] ?? '';

@@ -56,8 +56,8 @@ export interface Residue {
   readonly atoms: readonly number[];
 }
 
-/** The parts of an atom line that a finding can point at. */
-export type AtomField = 'line' | 'element' | 'x' | 'y' | 'z' | 'charge';
+/** The parts of an atom line that a finding can point at; `name` is what names its fragment: the residue, or the element. */
+export type AtomField = 'line' | 'name' | 'element' | 'x' | 'y' | 'z' | 'charge';
 
 /** One frame (XYZ) or model (PDB) as read. */
 export interface FrameTree {

@@ -11,6 +11,7 @@ import type { LineIndex } from '../text/lines';
 import type { Analysed } from './analyser';
 
 const SOURCE = 'polewise';
+const MOST_RELATED = 3;
 
 const PROTOCOL_SEVERITY: Readonly<Record<Severity, DiagnosticSeverity>> = {
   error: DiagnosticSeverity.Error,
@@ -39,7 +40,8 @@ export function diagnosticsOf({ document, settings, findings }: Analysed): Diagn
       ? wanted
       : [...wanted].sort((a, b) => rank(a) - rank(b)).slice(0, settings.maxFindings);
   const diagnostics = worst.map((finding): Diagnostic => {
-    const related = finding.related.map(
+    // The editor lists them all above every other hover: a few do.
+    const related = finding.related.slice(0, MOST_RELATED).map(
       ({ message, ...span }): DiagnosticRelatedInformation => ({
         location: { uri: document.uri, range: rangeOf(document.lines, span) },
         message,

@@ -19,8 +19,10 @@ export function escapeMarkdown(text: string): string {
   return text.replace(/[\\`*_{}[\]()#!|<>~&]/g, '\\$&').replace(/\s+/g, ' ');
 }
 
-function nameOf(fragment: FragmentRecord): string {
-  return escapeMarkdown(fragment.label ?? fragment.name);
+/** What a fragment is called: its place in the chain, and its name where that says more. */
+function nameOf({ label, name }: FragmentRecord): string {
+  if (label === null) return escapeMarkdown(name);
+  return escapeMarkdown(label.split(':')[1] === name ? label : `${label} ${name}`);
 }
 
 /** How a hover is drawn. */
@@ -75,7 +77,13 @@ function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, look: Ho
     `**${nameOf(fragment)}** · fragment ${fragment.fragment}, atom ${data.atomNumber}` +
     ` · charge ${fixed(fragment.chargeE, 2)} e (${fragment.chargeSource}) · ${dipoleInWords(fragment)}`;
   const [strongest] = partners;
-  if (strongest === undefined) return `${head}\n\nNo partner within the cutoff.`;
+  if (strongest === undefined) {
+    const why =
+      fragment.centreA === null
+        ? 'It could not be read whole (or has no end), so its pairs are not estimated.'
+        : 'No partner within the cutoff.';
+    return `${head}\n\n${why}`;
+  }
   const more = partnerCount - partners.length;
   return [
     head,
@@ -111,10 +119,10 @@ function picture(
   { partner, pair }: PartnerView,
   { unit, theme, base64 }: HoverLook,
 ): string {
-  const [first, second] = pair.first === fragment.fragment ? [fragment, partner] : [partner, fragment];
+  const [first, second] = [fragment, partner];
   const { svg, text } = pairPicture({
-    name1: first.name,
-    name2: second.name,
+    name1: `${first.name} (${first.fragment})`,
+    name2: `${second.name} (${second.fragment})`,
     distanceA: pair.distanceA,
     extent1A: first.extentA,
     extent2A: second.extentA,
@@ -141,7 +149,7 @@ function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUn
   const scale = energyUnitsPerKJPerMol(unit, data.kTKJPerMol);
   const head = `**Frame ${data.frame} of ${data.frames}** · ${data.atoms} atoms · ${data.fragments} fragments · ${data.pairCount} pairs`;
   if (data.pairCount === 0) return head;
-  const sum = `Sum of the pair energies ${fixed(data.sumKJPerMol * scale, 1)} ${unit}. Point dipole: far ${regimes.far}, edge ${regimes.edge}, near ${regimes.near}, without basis ${regimes.none}.`;
+  const sum = `Sum of the energies ${fixed(data.sumKJPerMol * scale, 1)} ${unit}, over the ${data.summedPairs} pairs that have one. Point dipole: far ${regimes.far}, edge ${regimes.edge}, near ${regimes.near}, without basis ${regimes.none}.`;
   return `${head}\n\n${sum}\n\n${partnerTable(data.strongest, unit, data.kTKJPerMol, null)}\n\n*${CAUTION}*`;
 }
 
@@ -152,17 +160,27 @@ function partnerTable(
   from: number | null,
 ): string {
   const scale = energyUnitsPerKJPerMol(unit, kTKJPerMol);
-  const rows = views.map(({ partner, pair }) => {
-    const energy = pair.referenceKJPerMol ?? pair.energyKJPerMol.pointDipole;
-    const point = pair.energyKJPerMol.pointDipole;
-    const who = from === null ? `${pair.first}–${pair.second}` : `${nameOf(partner)} (${partner.fragment})`;
-    const angles = [pair.theta1Deg, pair.theta2Deg, pair.phiDeg].map((angle) => fixed(angle, 0)).join(' / ');
-    const times = energy === null ? NOTHING : fixed(Math.abs(energy) / kTKJPerMol, 1);
-    return `| ${who} | ${fixed(pair.distanceA, 2)} | ${angles} | ${fixed(energy === null ? null : energy * scale, 2)} | ${fixed(point === null ? null : point * scale, 2)} | ${times} | ${pair.regime ?? NOTHING} | ${pair.advice ?? 'same molecule'} |`;
+  const rows = views.map(({ partner, pair, strengthKJPerMol }) => {
+    const { pointDipole } = pair.energyKJPerMol;
+    const inUnit = (value: Maybe) => fixed(value === null ? null : value * scale, 2);
+    const cells = [
+      from === null ? `${pair.first}–${pair.second}` : `${nameOf(partner)} (${partner.fragment})`,
+      pair.advice ?? 'same molecule',
+      fixed(pair.distanceA, 2),
+      [pair.theta1Deg, pair.theta2Deg, pair.phiDeg].map((angle) => fixed(angle, 0)).join(' / '),
+      inUnit(pair.referenceKJPerMol),
+      inUnit(pointDipole),
+      fixed(strengthKJPerMol / kTKJPerMol, 1),
+      pair.regime ?? NOTHING,
+      pair.contact,
+    ];
+    return `| ${cells.join(' | ')} |`;
   });
   return [
-    `| ${from === null ? 'pair' : 'partner'} | R/Å | θ₁ / θ₂ / φ | energy/${unit} | point dipole | × kT | regime | advice |`,
-    '| --- | ---: | :---: | ---: | ---: | ---: | --- | --- |',
+    `Energies in ${unit}: reference (E), point dipole (point); strength beside kT.`,
+    '',
+    `| ${from === null ? 'pair' : 'partner'} | advice | R/Å | θ₁ / θ₂ / φ | E | point | /kT | regime | contact |`,
+    '| --- | --- | ---: | :---: | ---: | ---: | ---: | --- | --- |',
     ...rows,
   ].join('\n');
 }

@@ -14,6 +14,12 @@ export const STATUS_NOTIFICATION = 'polewise/status';
 
 const plural = (count: number, what: string) => `${count} ${what}${count === 1 ? '' : 's'}`;
 
+/** How many errors and warnings there are. */
+function worstInWords(findings: Analysed['findings']): string {
+  const count = (severity: string) => findings.filter((finding) => finding.severity === severity).length;
+  return `${plural(count('error'), 'error')}, ${plural(count('warning'), 'warning')}.`;
+}
+
 export function busyStatus(uri: string): StatusParams {
   return { uri, state: 'busy', text: 'computing', detail: 'The pairs of this document are being computed.' };
 }
@@ -22,7 +28,7 @@ export function failedStatus(uri: string, reason: string): StatusParams {
   return { uri, state: 'failed', text: 'failed', detail: `The analysis stopped: ${reason}` };
 }
 
-export function readyStatus({ document, settings, tree, fragments, pairs, limited }: Analysed): StatusParams {
+export function readyStatus({ document, settings, tree, findings, fragments, pairs, limited }: Analysed): StatusParams {
   const frames = plural(tree.frames.length, 'frame');
   const complaints = settings.complaints.length === 0 ? '' : ` Settings: ${settings.complaints.join('; ')}.`;
   if (tree.frames.length === 0) {
@@ -33,5 +39,5 @@ export function readyStatus({ document, settings, tree, fragments, pairs, limite
     return { uri: document.uri, state: 'limited', text: `${frames}, pairs off`, detail };
   }
   const text = `${frames}, ${plural(fragments, 'fragment')}, ${plural(pairs, 'pair')}`;
-  return { uri: document.uri, state: 'idle', text, detail: `${text}.${complaints}` };
+  return { uri: document.uri, state: 'idle', text, detail: `${worstInWords(findings)}${complaints}` };
 }

@@ -49,6 +49,10 @@ const CLOSE_LIMITS_A = Float64Array.from({ length: SIZE * SIZE }, (_, k) =>
   closeLimitA(Math.floor(k / SIZE), k % SIZE),
 );
 
+/** Squares a little above those limits: what lies beyond needs no exact distance. */
+const SURELY_BEYOND_A2 = CLOSE_LIMITS_A.map((limit) => limit * limit * (1 + 1e-12));
+const BOND_LIMITS_A = Float64Array.from({ length: SIZE * SIZE }, (_, k) => bondLimitA(Math.floor(k / SIZE), k % SIZE));
+
 /** Whether an element can share a proton with another: N, O, F. */
 export function sharesProton(z: number): boolean {
   return z === 7 || z === 8 || z === 9;
@@ -57,9 +61,10 @@ export function sharesProton(z: number): boolean {
 /** Atoms that can have bonds and contacts: of a known element, at a known place. */
 export function solidAtoms(atoms: AtomTable): Int32Array {
   const barred = AtomFlag.ghost | AtomFlag.unknownElement | AtomFlag.noPosition;
-  const solid: number[] = [];
-  for (let i = 0; i < atoms.count; i++) if ((atoms.flags[i]! & barred) === 0) solid.push(i);
-  return Int32Array.from(solid);
+  const solid = new Int32Array(atoms.count);
+  let count = 0;
+  for (let i = 0; i < atoms.count; i++) if ((atoms.flags[i]! & barred) === 0) solid[count++] = i;
+  return solid.subarray(0, count);
 }
 
 /**
@@ -69,24 +74,42 @@ export function solidAtoms(atoms: AtomTable): Int32Array {
  */
 export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): ClosePairs {
   const solid = solidAtoms(atoms);
-  const present = [...new Set(Array.from(solid, (i) => atoms.element[i]!))];
+  const isPresent = new Uint8Array(SIZE);
+  for (let k = 0; k < solid.length; k++) isPresent[atoms.element[solid[k]!]!] = 1;
+  const present = [...isPresent.keys()].filter((z) => isPresent[z] === 1);
   let radius = 0.1;
   for (const z1 of present) for (const z2 of present) radius = Math.max(radius, CLOSE_LIMITS_A[SIZE * z1 + z2]!);
   const grid = new PointGrid(positionA, solid, radius, cell);
   if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
-  const first: number[] = [];
-  const second: number[] = [];
-  const distanceA: number[] = [];
+  const { element } = atoms;
+  let room = Math.max(64, solid.length + (solid.length >> 1));
+  let first = new Int32Array(room);
+  let second = new Int32Array(room);
+  let distanceA = new Float64Array(room);
+  let count = 0;
   const buffer = new NeighbourBuffer();
-  for (const i of solid) {
+  for (let s = 0; s < solid.length; s++) {
+    const i = solid[s]!;
     grid.gather(i, radius, true, buffer);
-    const begin = first.length;
+    if (count + buffer.count > room) {
+      room = 2 * room + buffer.count;
+      first = extended(first, new Int32Array(room));
+      second = extended(second, new Int32Array(room));
+      distanceA = extended(distanceA, new Float64Array(room));
+    }
+    const begin = count;
+    const { index, vectorA } = buffer;
     for (let k = 0; k < buffer.count; k++) {
-      const j = buffer.index[k]!;
-      const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
-      if (d > CLOSE_LIMITS_A[SIZE * atoms.element[i]! + atoms.element[j]!]!) continue;
+      const j = index[k]!;
+      const x = vectorA[3 * k]!;
+      const y = vectorA[3 * k + 1]!;
+      const z = vectorA[3 * k + 2]!;
+      const elements = SIZE * element[i]! + element[j]!;
+      if (x * x + y * y + z * z > SURELY_BEYOND_A2[elements]!) continue;
+      const d = Math.hypot(x, y, z);
+      if (d > CLOSE_LIMITS_A[elements]!) continue;
       // Kept in order of j: few partners, so an insertion is cheapest.
-      let at = first.length;
+      let at = count;
       while (at > begin && second[at - 1]! > j) {
         second[at] = second[at - 1]!;
         distanceA[at] = distanceA[at - 1]!;
@@ -94,19 +117,24 @@ export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: 
       }
       second[at] = j;
       distanceA[at] = d;
-      first.push(i);
+      first[count++] = i;
     }
   }
   const pairs = {
-    count: first.length,
-    first: Int32Array.from(first),
-    second: Int32Array.from(second),
-    distanceA: Float64Array.from(distanceA),
-    bonded: new Uint8Array(first.length),
+    count,
+    first: first.slice(0, count),
+    second: second.slice(0, count),
+    distanceA: distanceA.slice(0, count),
+    bonded: new Uint8Array(count),
     tooDense: false,
   };
   markBonds(atoms, pairs);
   return pairs;
+}
+
+function extended<T extends Int32Array | Float64Array>(from: T, to: T): T {
+  to.set(from);
+  return to;
 }
 
 const NO_PAIRS: ClosePairs = {
@@ -128,7 +156,7 @@ function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
     nearestA[hydrogen] = d;
   };
   const inReach = (k: number) => {
-    const limit = bondLimitA(element[pairs.first[k]!]!, element[pairs.second[k]!]!);
+    const limit = BOND_LIMITS_A[SIZE * element[pairs.first[k]!]! + element[pairs.second[k]!]!]!;
     return pairs.distanceA[k]! <= limit;
   };
   for (let k = 0; k < pairs.count; k++) {

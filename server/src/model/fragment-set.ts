@@ -20,7 +20,7 @@ export function atomsOf(set: FragmentSet, fragment: number): Int32Array {
 }
 
 /**
- * Makes a set from a label for each atom (any whole number; −1: in no fragment): fragments are numbered by their first atom.
+ * Makes a set from a label for each atom (a whole number not much above the number of atoms; −1: in no fragment): fragments are numbered by their first atom.
  * `isDeclared` tells it of a label.
  */
 export function fragmentsFromLabels(
@@ -28,32 +28,34 @@ export function fragmentsFromLabels(
   origin: FragmentOrigin,
   isDeclared: (label: number) => boolean,
 ): FragmentSet {
-  const numberOf = new Map<number, number>();
+  let largest = -1;
+  for (let i = 0; i < labels.length; i++) if (labels[i]! > largest) largest = labels[i]!;
+  const numberOf = new Int32Array(largest + 1).fill(-1);
   const ofAtom = new Int32Array(labels.length);
-  const sizes: number[] = [];
-  const declared: number[] = [];
+  const declared = new Uint8Array(labels.length);
+  const sizes = new Int32Array(labels.length);
+  let count = 0;
   for (let i = 0; i < labels.length; i++) {
     const label = labels[i]!;
     if (label < 0) {
       ofAtom[i] = -1;
       continue;
     }
-    let fragment = numberOf.get(label);
-    if (fragment === undefined) {
-      fragment = sizes.length;
-      numberOf.set(label, fragment);
-      sizes.push(0);
-      declared.push(isDeclared(label) ? 1 : 0);
+    let fragment = numberOf[label]!;
+    if (fragment < 0) {
+      fragment = count++;
+      numberOf[label] = fragment;
+      declared[fragment] = isDeclared(label) ? 1 : 0;
     }
     ofAtom[i] = fragment;
     sizes[fragment]!++;
   }
-  const starts = new Int32Array(sizes.length + 1);
-  for (let f = 0; f < sizes.length; f++) starts[f + 1] = starts[f]! + sizes[f]!;
-  const members = new Int32Array(starts[sizes.length]!);
+  const starts = new Int32Array(count + 1);
+  for (let f = 0; f < count; f++) starts[f + 1] = starts[f]! + sizes[f]!;
+  const members = new Int32Array(starts[count]!);
   const next = starts.slice();
   for (let i = 0; i < labels.length; i++) if (ofAtom[i]! >= 0) members[next[ofAtom[i]!]!++] = i;
-  return { count: sizes.length, origin, ofAtom, starts, members, declared: Uint8Array.from(declared) };
+  return { count, origin, ofAtom, starts, members, declared: declared.slice(0, count) };
 }
 
 /** Disjoint sets of whole numbers; the smallest member stands for each set, so labels come out canonical. */
@@ -61,7 +63,8 @@ export class UnionFind {
   readonly #parent: Int32Array;
 
   constructor(count: number) {
-    this.#parent = Int32Array.from({ length: count }, (_, i) => i);
+    this.#parent = new Int32Array(count);
+    for (let i = 0; i < count; i++) this.#parent[i] = i;
   }
 
   find(i: number): number {

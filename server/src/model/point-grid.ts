@@ -16,6 +16,11 @@ export class NeighbourBuffer {
     this.vectorA[3 * at + 2] = z;
   }
 
+  /** Makes room for so many more. */
+  reserve(more: number): void {
+    while (this.count + more > this.index.length) this.#grow();
+  }
+
   #grow(): void {
     const index = new Int32Array(this.index.length * 2);
     index.set(this.index);
@@ -51,8 +56,8 @@ export class PointGrid {
   readonly #starts: Int32Array;
   readonly #order: Int32Array;
   readonly #sorted: Float64Array;
+  readonly #isPlain: boolean;
   readonly #image = imageResult();
-  readonly #place: [number, number, number] = [0, 0, 0];
   /** Whether there are so many candidates that a search would be as slow as trying all pairs. */
   readonly tooDense: boolean;
 
@@ -61,16 +66,16 @@ export class PointGrid {
     this.radiusA = radiusA;
     this.#cell = cell;
     this.#points = pointsA;
-    const all = members ?? Int32Array.from({ length: pointsA.length / 3 }, (_, i) => i);
-    const inside = all.filter((i) => Number.isFinite(pointsA[3 * i]! + pointsA[3 * i + 1]! + pointsA[3 * i + 2]!));
+    const inside = finiteMembers(pointsA, members);
     this.#layOut(inside);
+    this.#isPlain = cell === null && this.#slabs.every((slabs) => slabs === null);
     const [nx, ny, nz] = this.#counts;
     const total = nx * ny * nz;
     const starts = new Int32Array(total + 1);
     const cells = new Int32Array(inside.length);
     for (let k = 0; k < inside.length; k++) {
-      this.#locate(inside[k]!);
-      const c = this.#place[0] + nx * (this.#place[1] + ny * this.#place[2]);
+      const i = inside[k]!;
+      const c = this.#place(0, i) + nx * (this.#place(1, i) + ny * this.#place(2, i));
       cells[k] = c;
       starts[c + 1]!++;
     }
@@ -150,14 +155,30 @@ export class PointGrid {
   /** Closes up stretches without any point along one direction, so that one far atom does not make the grid coarse for all. */
   #closeGaps(inside: Int32Array, k: number): void {
     if (this.#cell?.periodic[k]) return;
-    const occupied = new Set<number>();
-    for (const i of inside) occupied.add(this.#raw(i, k));
-    const raws = Float64Array.from(occupied).sort();
+    const raws = this.#occupied(inside, k as 0 | 1 | 2);
     const places = new Int32Array(raws.length);
     const widest = this.#reachOf(k, this.radiusA) + 1;
     for (let n = 1; n < raws.length; n++) places[n] = places[n - 1]! + Math.min(raws[n]! - raws[n - 1]!, widest);
-    this.#slabs[k] = { raws, places };
-    this.#counts[k] = places.length === 0 ? 1 : places[places.length - 1]! + 1;
+    const last = raws.length - 1;
+    this.#counts[k] = last < 0 ? 1 : places[last]! + 1;
+    // Without a gap that matters every slab keeps its place.
+    this.#slabs[k] = last >= 0 && places[last] === raws[last] ? null : { raws, places };
+  }
+
+  /** The slabs with points in them, ascending. */
+  #occupied(inside: Int32Array, k: 0 | 1 | 2): Float64Array {
+    const isSmall = this.#counts[k] <= 4 * inside.length;
+    const seen = new Uint8Array(isSmall ? this.#counts[k] : 0);
+    const others = new Set<number>();
+    for (let n = 0; n < inside.length; n++) {
+      const raw = this.#raw(inside[n]!, k);
+      if (raw < seen.length) seen[raw] = 1;
+      else others.add(raw);
+    }
+    const low = new Float64Array(seen.length);
+    let count = 0;
+    for (let raw = 0; raw < seen.length; raw++) if (seen[raw] === 1) low[count++] = raw;
+    return others.size === 0 ? low.slice(0, count) : Float64Array.from([...low.subarray(0, count), ...others]).sort();
   }
 
   #reachOf(k: number, radiusA: number): number {
@@ -171,14 +192,12 @@ export class PointGrid {
     return Math.floor(along * this.#scale[k]!);
   }
 
-  /** Finds the cell of a member. */
-  #locate(i: number): void {
-    for (let k = 0; k < 3; k++) {
-      const raw = this.#raw(i, k);
-      const slabs = this.#slabs[k];
-      const place = slabs ? slabs.places[firstFrom(slabs.raws, raw)]! : raw;
-      this.#place[k] = Math.max(0, Math.min(this.#counts[k]! - 1, place));
-    }
+  /** Place of a member's cell along one direction. */
+  #place(k: 0 | 1 | 2, i: number): number {
+    const raw = this.#raw(i, k);
+    const slabs = this.#slabs[k] ?? null;
+    const place = slabs === null ? raw : slabs.places[firstFrom(slabs.raws, raw)]!;
+    return Math.max(0, Math.min(this.#counts[k] - 1, place));
   }
 
   /**
@@ -191,6 +210,10 @@ export class PointGrid {
     const y = this.#points[3 * i + 1]!;
     const z = this.#points[3 * i + 2]!;
     if (!Number.isFinite(x + y + z)) return;
+    if (this.#isPlain) {
+      this.#gatherPlain(i, x, y, z, radiusA, onlyAfter, out);
+      return;
+    }
     const [nx, ny] = this.#counts;
     const [fromX, toX] = this.#range(0, i, radiusA);
     const [fromY, toY] = this.#range(1, i, radiusA);
@@ -212,6 +235,60 @@ export class PointGrid {
         }
       }
     }
+  }
+
+  /** The same without cell and without closed gaps, where nothing wraps. */
+  #gatherPlain(
+    i: number,
+    x: number,
+    y: number,
+    z: number,
+    radiusA: number,
+    onlyAfter: boolean,
+    out: NeighbourBuffer,
+  ): void {
+    const [nx, ny, nz] = this.#counts;
+    const rawX = Math.floor((x - this.#origin[0]) * this.#scale[0]);
+    const rawY = Math.floor((y - this.#origin[1]) * this.#scale[1]);
+    const rawZ = Math.floor((z - this.#origin[2]) * this.#scale[2]);
+    const reachX = this.#reachOf(0, radiusA);
+    const reachY = this.#reachOf(1, radiusA);
+    const reachZ = this.#reachOf(2, radiusA);
+    const fromX = Math.max(0, rawX - reachX);
+    const toX = Math.min(nx - 1, rawX + reachX);
+    if (fromX > toX) return;
+    const toY = Math.min(ny - 1, rawY + reachY);
+    const toZ = Math.min(nz - 1, rawZ + reachZ);
+    const radius2 = radiusA * radiusA;
+    const starts = this.#starts;
+    const sorted = this.#sorted;
+    const order = this.#order;
+    const above = onlyAfter ? i : -1;
+    let count = 0;
+    for (let cz = Math.max(0, rawZ - reachZ); cz <= toZ; cz++) {
+      for (let cy = Math.max(0, rawY - reachY); cy <= toY; cy++) {
+        const base = nx * (cy + ny * cz);
+        const to = starts[base + toX + 1]!;
+        let slot = starts[base + fromX]!;
+        if (slot === to) continue;
+        out.count = count;
+        out.reserve(to - slot);
+        const { index, vectorA } = out;
+        // Every candidate is written, and the next one over it where it does not count.
+        for (; slot < to; slot++) {
+          const j = order[slot]!;
+          const dx = sorted[3 * slot]! - x;
+          const dy = sorted[3 * slot + 1]! - y;
+          const dz = sorted[3 * slot + 2]! - z;
+          index[count] = j;
+          vectorA[3 * count] = dx;
+          vectorA[3 * count + 1] = dy;
+          vectorA[3 * count + 2] = dz;
+          if (dx * dx + dy * dy + dz * dz <= radius2 && j > above && j !== i) count++;
+        }
+      }
+    }
+    out.count = count;
   }
 
   #collect(
@@ -264,6 +341,18 @@ export class PointGrid {
     const count = this.#counts[k];
     return place < 0 ? place + count : place >= count ? place - count : place;
   }
+}
+
+/** The members whose place is finite. */
+function finiteMembers(pointsA: Float64Array, members: Int32Array | null): Int32Array {
+  const total = members === null ? Math.floor(pointsA.length / 3) : members.length;
+  const inside = new Int32Array(total);
+  let count = 0;
+  for (let k = 0; k < total; k++) {
+    const i = members === null ? k : members[k]!;
+    if (Number.isFinite(pointsA[3 * i]! + pointsA[3 * i + 1]! + pointsA[3 * i + 2]!)) inside[count++] = i;
+  }
+  return inside.subarray(0, count);
 }
 
 /** The occupied slabs of one direction, ascending, and the places they are moved to. */

@@ -63,13 +63,22 @@ class Lines implements LineIndex {
  */
 export function indexLines(snapshot: Snapshot): LineIndex {
   const { bytes, length } = snapshot;
+  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   let starts = new Uint32Array(Math.max(16, (length >> 5) + 2));
   let count = 0;
   let i = 0;
   let start = 0;
   while (i < length) {
+    // Four units at a time where all are above CR; the padding allows looking past the end.
+    const four = view.getInt32(i, true);
+    const low = (four - 0x0e0e0e0e) & ~four & 0x80808080;
+    if (low === 0) {
+      i += 4;
+      continue;
+    }
+    i += (31 - Math.clz32(low & -low)) >> 3;
+    if (i >= length) break;
     const unit = bytes[i++]!;
-    if (unit > CR) continue;
     if (unit !== LF && unit !== CR) continue;
     if (unit === CR && bytes[i] === LF && i < length) i++;
     if (count + 2 >= starts.length) starts = grown(starts);
@@ -78,7 +87,8 @@ export function indexLines(snapshot: Snapshot): LineIndex {
   }
   if (start < length || count === 0) starts[count++] = start;
   starts[count] = length;
-  return new Lines(bytes, starts.slice(0, count + 1));
+  const isTight = starts.length < (count + 1) * 1.5;
+  return new Lines(bytes, isTight ? starts.subarray(0, count + 1) : starts.slice(0, count + 1));
 }
 
 function grown(array: Uint32Array<ArrayBuffer>): Uint32Array<ArrayBuffer> {

@@ -82,6 +82,55 @@ export function scanNumberInto(
   return i;
 }
 
+const NINE = ZERO + 9;
+/** As many digits as any double with an exact mantissa has at most. */
+const FEW_DIGITS = 15;
+
+/**
+ * The same for the bulk of a file: a plain decimal of few digits (`-12.345678`) after blanks and before a blank or line end. Returns
+ * −1 for anything else, which {@link scanNumberInto} then decides on; `out` may have been written.
+ */
+export function scanPlainDecimal(
+  bytes: Uint8Array,
+  view: DataView,
+  start: number,
+  out: Float64Array,
+  index: number,
+): number {
+  let i = start;
+  let unit = bytes[i]!;
+  while (unit === 32 || unit === 9) unit = bytes[++i]!;
+  const negative = unit === MINUS;
+  if (negative) unit = bytes[++i]!;
+  const first = i;
+  let whole = 0;
+  while (unit >= ZERO && unit <= NINE) {
+    whole = (Math.imul(whole, 10) + unit - ZERO) | 0;
+    unit = bytes[++i]!;
+  }
+  const wholeDigits = i - first;
+  if (unit !== POINT || wholeDigits === 0 || wholeDigits > 9) return -1;
+  const point = i++;
+  let mantissa = whole;
+  const four = view.getInt32(i, true) ^ 0x30303030;
+  // Four bytes are digits where each is at most 9 after that.
+  if (((four | (four + 0x06060606)) & 0xf0f0f0f0) === 0) {
+    const pairs = Math.imul(four, 10) + (four >>> 8);
+    mantissa = mantissa * 10000 + (pairs & 255) * 100 + ((pairs >>> 16) & 255);
+    i += 4;
+  }
+  unit = bytes[i]!;
+  while (unit >= ZERO && unit <= NINE) {
+    mantissa = mantissa * 10 + (unit - ZERO);
+    unit = bytes[++i]!;
+  }
+  const decimals = i - point - 1;
+  if (unit > 32 || wholeDigits + decimals > FEW_DIGITS) return -1;
+  const value = mantissa / EXACT_POWERS[decimals]!;
+  out[index] = negative ? -value : value;
+  return i;
+}
+
 const SINGLE = new Float64Array(1);
 
 /** The decimal number that fills the text from `start` to `end`, or NaN where it holds anything else. */

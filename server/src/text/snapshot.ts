@@ -15,6 +15,8 @@ export interface Snapshot {
 export const PADDING = 32;
 
 const LINE_FEED = 10;
+/** Pieces up to this long are put together without the decoder, whose call costs more. */
+const SHORT = 12;
 const NOT_ASCII = 0x80;
 
 class TextSnapshot implements Snapshot {
@@ -45,6 +47,11 @@ class AsciiSnapshot implements Snapshot {
   }
 
   slice(start: number, end: number): string {
+    if (end - start <= SHORT) {
+      let text = '';
+      for (let i = Math.max(0, start); i < Math.min(end, this.length); i++) text += String.fromCharCode(this.bytes[i]!);
+      return text;
+    }
     return this.#decoder.decode(this.bytes.subarray(Math.max(0, start), Math.min(end, this.length)));
   }
 }
@@ -52,9 +59,9 @@ class AsciiSnapshot implements Snapshot {
 function mirror(text: string): Uint8Array {
   const length = text.length;
   const bytes = new Uint8Array(length + PADDING);
-  const { written } = new TextEncoder().encodeInto(text, bytes.subarray(0, length));
-  // Pure ASCII encodes to one byte a unit and cannot fill the room early; anything else is mirrored unit by unit.
-  if (written !== length || !isAscii(bytes, length)) {
+  const { read } = new TextEncoder().encodeInto(text, bytes.subarray(0, length));
+  // Only ASCII encodes to one byte a unit and so fits as a whole; anything else is mirrored unit by unit.
+  if (read !== length) {
     for (let i = 0; i < length; i++) {
       const unit = text.charCodeAt(i);
       bytes[i] = Math.min(unit, NOT_ASCII);
@@ -64,14 +71,13 @@ function mirror(text: string): Uint8Array {
   return bytes;
 }
 
-function isAscii(bytes: Uint8Array, length: number): boolean {
-  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-  let i = 0;
+/** Whether all bytes are ASCII; reads past `length` into padding of ASCII. */
+function isPaddedAscii(bytes: Uint8Array<ArrayBuffer>, length: number): boolean {
+  const words = new Int32Array(bytes.buffer, 0, bytes.length >> 2);
+  const last = Math.ceil(length / 4);
   let seen = 0;
-  for (; i + 8 <= length; i += 8) seen |= view.getInt32(i) | view.getInt32(i + 4);
-  if ((seen & 0x80808080) !== 0) return false;
-  for (; i < length; i++) if (bytes[i]! >= NOT_ASCII) return false;
-  return true;
+  for (let i = 0; i < last; i += 4) seen |= words[i]! | words[i + 1]! | words[i + 2]! | words[i + 3]!;
+  return (seen & 0x80808080) === 0;
 }
 
 /** A snapshot of a string. */
@@ -86,11 +92,9 @@ export function snapshotOf(text: string): Snapshot {
 export function snapshotOfBytes(file: Uint8Array): Snapshot {
   if (file[0] === 0xff && file[1] === 0xfe) return snapshotOf(new TextDecoder('utf-16le').decode(file));
   if (file[0] === 0xfe && file[1] === 0xff) return snapshotOf(new TextDecoder('utf-16be').decode(file));
-  if (isAscii(file, file.length)) {
-    const bytes = new Uint8Array(file.length + PADDING);
-    bytes.set(file);
-    bytes.fill(LINE_FEED, file.length);
-    return new AsciiSnapshot(bytes, file.length);
-  }
+  const bytes = new Uint8Array(file.length + PADDING);
+  bytes.set(file);
+  bytes.fill(LINE_FEED, file.length);
+  if (isPaddedAscii(bytes, file.length)) return new AsciiSnapshot(bytes, file.length);
   return snapshotOf(new TextDecoder('utf-8').decode(file));
 }

@@ -40,10 +40,10 @@ export class RuleContext {
     return labels[fragment] !== '' ? cut(labels[fragment]!) : `${cut(names[fragment]!)} (fragment ${fragment + 1})`;
   }
 
-  /** The first atom line of a fragment; `null` for one of a companion file. */
+  /** What names a fragment on its first atom line (element or residue); `null` for one of a companion file. */
   placeOf(fragment: number): Span | null {
     if (fragment >= this.ownFragments) return null;
-    return this.frame.model.tree.fieldSpan(atomsOf(this.frame.model.fragments, fragment)[0]!, 'line');
+    return this.frame.model.tree.fieldSpan(atomsOf(this.frame.model.fragments, fragment)[0]!, 'name');
   }
 
   /** The line of an atom by its number in the frame; `null` for one of a companion file. */

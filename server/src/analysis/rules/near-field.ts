@@ -98,7 +98,18 @@ export class NearField {
   #related(pair: Noted, f: number): Related[] {
     const other = pair.first === f ? pair.second : pair.first;
     const span = this.#context.placeOf(other) ?? this.#context.placeOf(f);
-    return span === null ? [] : [{ ...span, message: this.#sentence(pair, f) }];
+    return span === null ? [] : [{ ...span, message: this.#inShort(pair, f) }];
+  }
+
+  /** A partner in a few words, for the list of related places. */
+  #inShort({ first, second }: Noted, f: number): string {
+    const context = this.#context;
+    const pair = evaluatePair(context.frame.system, first, second);
+    const { kTKJPerMol } = context.frame.system;
+    const known = Number.isNaN(pair.referenceKJPerMol) ? pair.energies.pointDipole : pair.referenceKJPerMol;
+    const share = pair.errorKJPerMol / Math.abs(pair.referenceKJPerMol);
+    const off = Number.isFinite(share) ? `, point dipole off by ${shown(100 * share, 2)} %` : '';
+    return `${context.nameOf(first === f ? second : first)}: R ${shown(pair.distanceA)} Å, ${energy(known, kTKJPerMol)}${off}`;
   }
 
   #sentence({ first, second }: Noted, f: number): string {

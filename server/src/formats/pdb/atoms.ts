@@ -1,12 +1,11 @@
 import type { FindingCollector } from '../../base/finding';
-import { scanNumberInto, trimEnd } from '../../text/numbers';
+import { scanNumberInto, skipBlanks, trimEnd } from '../../text/numbers';
 import { AtomBuilder } from '../atom-builder';
-import { readSpecies } from '../species';
+import { readSpecies, symbolNumber } from '../species';
 import { AtomFlag, type AtomTable, type Residue } from '../tree';
 import { type AlternateAtom, chooseAlternates, removeAtoms } from './alternates';
 import { elementFromName } from './elements';
 import { ATOM_COLUMNS, type ColumnRange, type FixedColumns } from './fields';
-import { decodeHybrid36 } from './hybrid36';
 import { ResidueBuilder } from './residues';
 
 const COORDINATES = [ATOM_COLUMNS.x, ATOM_COLUMNS.y, ATOM_COLUMNS.z] as const;
@@ -15,29 +14,22 @@ const BLANK = 32;
 const MINUS = 45;
 const POINT = 46;
 
-/** An atom record before residues are made. */
-interface Pending {
-  readonly name: string;
-  readonly altLoc: string;
-  readonly rawKey: string;
-  readonly segmentEnds: boolean;
-}
-
 /** Collects the ATOM and HETATM records of one model. */
 export class ModelAtoms {
   readonly #columns: FixedColumns;
   readonly #problems: FindingCollector;
   readonly #chargeColumn: ColumnRange | null;
   readonly #atoms: AtomBuilder;
-  readonly #pending: Pending[] = [];
   readonly #alternates: AlternateAtom[] = [];
-  #segmentEnds = false;
+  /** Atoms before which a chain segment ends. */
+  readonly #segmentStarts = new Set<number>();
 
-  constructor(columns: FixedColumns, problems: FindingCollector, chargeColumn: ColumnRange | null) {
+  /** @param capacity room for atoms at first */
+  constructor(columns: FixedColumns, problems: FindingCollector, chargeColumn: ColumnRange | null, capacity: number) {
     this.#columns = columns;
     this.#problems = problems;
     this.#chargeColumn = chargeColumn;
-    this.#atoms = new AtomBuilder(64, { charge: chargeColumn !== null, formal: true, residue: true });
+    this.#atoms = new AtomBuilder(capacity, { charge: chargeColumn !== null, formal: true, residue: true });
   }
 
   get count(): number {
@@ -45,22 +37,19 @@ export class ModelAtoms {
   }
 
   endSegment(): void {
-    this.#segmentEnds = true;
+    this.#segmentStarts.add(this.#atoms.count);
   }
 
   read(line: number): void {
     const columns = this.#columns;
     const atoms = this.#atoms;
     const atom = atoms.next(line);
-    const name = columns.raw(line, ATOM_COLUMNS.name);
-    const altLoc = columns.trimmed(line, ATOM_COLUMNS.altLoc);
-    const rawKey = columns.raw(line, [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]]);
-    this.#pending.push({ name: name.trim(), altLoc, rawKey, segmentEnds: this.#segmentEnds });
-    this.#segmentEnds = false;
-    if (this.#readPosition(line, atom)) this.#readElement(line, atom, name);
+    if (this.#readPosition(line, atom)) this.#readElement(line, atom);
     else this.#atoms.flags[atom]! |= AtomFlag.unknownElement;
-    atoms.formalE![atom] = readFormalCharge(columns.trimmed(line, ATOM_COLUMNS.formalCharge));
+    const formal = columns.word(line, ATOM_COLUMNS.formalCharge);
+    atoms.formalE![atom] = formal === '' ? Number.NaN : readFormalCharge(formal);
     if (this.#chargeColumn !== null) this.#readCharge(line, atom, this.#chargeColumn);
+    const altLoc = columns.word(line, ATOM_COLUMNS.altLoc);
     if (altLoc !== '') {
       const occupancy = columns.number(line, ATOM_COLUMNS.occupancy);
       const site = columns.raw(line, [ATOM_COLUMNS.chain[0], ATOM_COLUMNS.insertion[1]]);
@@ -89,10 +78,17 @@ export class ModelAtoms {
       this.#spoil(atom);
       return false;
     }
-    for (const [axis, range] of COORDINATES.entries()) {
-      const { start, end } = this.#columns.span(line, range);
+    const { positionA } = this.#atoms;
+    for (let axis = 0; axis < 3; axis++) {
+      const range = COORDINATES[axis]!;
       const index = 3 * atom + axis;
-      const { positionA } = this.#atoms;
+      const last = lineStart + range[1];
+      const first = skipBlanks(text.bytes, lineStart + range[0], last);
+      // The bulk: a number that ends with its columns.
+      if (last <= lineEnd && scanNumberInto(text, first, last, positionA, index) === last) {
+        if (Number.isFinite(positionA[index]!)) continue;
+      }
+      const { start, end } = this.#columns.span(line, range);
       if (
         end > start &&
         scanNumberInto(text, start, end, positionA, index) === end &&
@@ -120,7 +116,8 @@ export class ModelAtoms {
    */
   #isShifted(lineStart: number, lineEnd: number): boolean {
     const { bytes } = this.#columns.text;
-    for (const [start, end] of COORDINATES) {
+    for (let axis = 0; axis < 3; axis++) {
+      const [start, end] = COORDINATES[axis]!;
       const border = lineStart + end;
       if (border >= lineEnd) continue;
       const before = bytes[border - 1]!;
@@ -132,8 +129,17 @@ export class ModelAtoms {
     return bytes[first - 1] !== BLANK && bytes[first] !== BLANK && bytes[first] !== MINUS && bytes[first + 4] !== POINT;
   }
 
-  #readElement(line: number, atom: number, name: string): void {
+  #readElement(line: number, atom: number): void {
     const columns = this.#columns;
+    const lineStart = columns.lines.starts[line]!;
+    const { bytes } = columns.text;
+    const first = bytes[lineStart + ATOM_COLUMNS.element[0]]!;
+    const second = bytes[lineStart + ATOM_COLUMNS.element[0] + 1]!;
+    const z = first === BLANK ? symbolNumber(second, BLANK) : symbolNumber(first, second);
+    if (z > 0 && lineStart + ATOM_COLUMNS.element[1] <= columns.lines.end(line)) {
+      this.#atoms.element[atom] = z;
+      return;
+    }
     const { start, end } = columns.span(line, ATOM_COLUMNS.element);
     // Old files have an identification and a line number there: digits are no symbol.
     const symbol = columns.trimmed(line, ATOM_COLUMNS.element);
@@ -142,7 +148,7 @@ export class ModelAtoms {
     let species = written ? readSpecies(columns.text, start, end) : UNKNOWN;
     if (species & UNKNOWN) {
       const residueName = columns.trimmed(line, ATOM_COLUMNS.residueName);
-      const inferred = elementFromName(name, residueName);
+      const inferred = elementFromName(columns.raw(line, ATOM_COLUMNS.name), residueName);
       // A written symbol that is none is an error even where the name would do: the two contradict each other.
       if (!written) species = inferred;
     }
@@ -172,36 +178,31 @@ export class ModelAtoms {
 
   /** Drops alternate locations, forms residues, and returns the table. */
   build(): { atoms: AtomTable; residues: Residue[]; alternateSites: number; firstAlternateLine: number } {
-    let pending = this.#pending;
+    const total = this.#atoms.count;
+    let dropped: ReadonlySet<number> | null = null;
     let alternateSites = 0;
     let firstAlternateLine = -1;
     if (this.#alternates.length > 0) {
-      const { dropped, sites } = chooseAlternates(this.#alternates);
-      if (dropped.size > 0) {
-        alternateSites = sites;
-        firstAlternateLine = this.#atoms.line[dropped.values().next().value!]!;
-        pending = pending.filter((_, i) => !dropped.has(i));
-        removeAtoms(this.#atoms, dropped);
+      const chosen = chooseAlternates(this.#alternates);
+      if (chosen.dropped.size > 0) {
+        dropped = chosen.dropped;
+        alternateSites = chosen.sites;
+        firstAlternateLine = this.#atoms.line[chosen.dropped.values().next().value!]!;
+        removeAtoms(this.#atoms, chosen.dropped);
       }
     }
-    const builder = new ResidueBuilder();
-    for (const [atom, { name, altLoc, rawKey, segmentEnds }] of pending.entries()) {
-      if (segmentEnds) builder.endSegment();
-      this.#atoms.residue![atom] = builder.add(atom, name, altLoc, rawKey, () => parseKey(rawKey));
+    const builder = new ResidueBuilder(this.#columns);
+    const residue = this.#atoms.residue!;
+    const lines = this.#atoms.line;
+    let atom = 0;
+    for (let i = 0; i < total; i++) {
+      if (dropped?.has(i)) continue;
+      if (this.#segmentStarts.has(i)) builder.endSegment();
+      residue[atom] = builder.add(atom, lines[atom]!);
+      atom++;
     }
     return { atoms: this.#atoms.build(), residues: builder.build(), alternateSites, firstAlternateLine };
   }
-}
-
-/** Splits columns 18–27. */
-function parseKey(raw: string): { chain: string; name: string; number: number; insertion: string } {
-  const field = raw.padEnd(10);
-  return {
-    name: field.slice(0, 4).trim(),
-    chain: field.slice(4, 5).trim(),
-    number: decodeHybrid36(field.slice(5, 9), 4),
-    insertion: field.slice(9, 10).trim(),
-  };
 }
 
 /** Reads columns 79–80: a digit and a sign in either order, a sign alone for one; NaN where blank or anything else. */

@@ -24,12 +24,16 @@ export const ATOM_COLUMNS = {
   formalCharge: [78, 80],
 } as const satisfies Record<string, readonly [number, number]>;
 
+const BLANK = 32;
+const NOT_ASCII = 0x80;
+
 export type ColumnRange = readonly [number, number];
 
 /** Reads fixed columns of the lines of a text. */
 export class FixedColumns {
   readonly text: Snapshot;
   readonly lines: LineIndex;
+  readonly #words = new Map<number, string>();
 
   constructor(text: Snapshot, lines: LineIndex) {
     this.text = text;
@@ -61,5 +65,37 @@ export class FixedColumns {
   number(line: number, range: ColumnRange): number {
     const { start, end } = this.span(line, range);
     return end > start ? scanNumber(this.text, start, end) : Number.NaN;
+  }
+
+  /** Whether two lines surely have the same in the columns; false also where that takes more than a look at bytes. */
+  areSame(line1: number, line2: number, range: ColumnRange): boolean {
+    const { bytes } = this.text;
+    const start1 = this.lines.starts[line1]!;
+    const start2 = this.lines.starts[line2]!;
+    if (start1 + range[1] > this.lines.end(line1) || start2 + range[1] > this.lines.end(line2)) return false;
+    for (let k = range[0]; k < range[1]; k++) {
+      const unit = bytes[start1 + k]!;
+      if (unit !== bytes[start2 + k] || unit < BLANK || unit >= NOT_ASCII) return false;
+    }
+    return true;
+  }
+
+  /** What {@link trimmed} gives, of up to four columns; equal words are one string, and nothing is made for one seen before. */
+  word(line: number, range: ColumnRange): string {
+    const { bytes } = this.text;
+    const lineStart = this.lines.starts[line]!;
+    if (lineStart + range[1] > this.lines.end(line)) return this.trimmed(line, range);
+    let packed = 0;
+    for (let k = lineStart + range[0]; k < lineStart + range[1]; k++) {
+      const unit = bytes[k]!;
+      if (unit < BLANK || unit >= NOT_ASCII) return this.trimmed(line, range);
+      packed = (packed << 7) | unit;
+    }
+    let word = this.#words.get(packed);
+    if (word === undefined) {
+      word = this.trimmed(line, range);
+      this.#words.set(packed, word);
+    }
+    return word;
   }
 }

@@ -26,8 +26,10 @@ export function parsePdb(text: Snapshot): CoordinateTree {
   let cell: FrameTree['cell'] = null;
   const state: { open: OpenModel | null } = { open: null };
 
-  const begin = (line: number) => {
-    state.open = { firstLine: line, model: new ModelAtoms(columns, problems, chargeColumn) };
+  // Of atoms outside MODEL there is one set, as a rule all to the end of the file.
+  const begin = (line: number, isModel: boolean) => {
+    const capacity = isModel || frames.length > 0 ? 64 : lines.count - line;
+    state.open = { firstLine: line, model: new ModelAtoms(columns, problems, chargeColumn, capacity) };
     return state.open;
   };
   const end = (line: number) => {
@@ -62,11 +64,11 @@ export function parsePdb(text: Snapshot): CoordinateTree {
     switch (recordAt(text.bytes, lines.starts[line]!, lines.end(line))) {
       case 'ATOM':
       case 'HETATM':
-        (state.open ?? begin(line)).model.read(line);
+        (state.open ?? begin(line, false)).model.read(line);
         break;
       case 'MODEL':
         end(line);
-        begin(line);
+        begin(line, true);
         break;
       case 'ENDMDL':
       case 'END':
@@ -175,6 +177,8 @@ function fieldOf(columns: FixedColumns, line: number, field: AtomField): { start
     }
     case 'charge':
       return columns.span(line, ATOM_COLUMNS.formalCharge);
+    case 'name':
+      return columns.span(line, [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]]);
     default:
       return columns.span(line, ATOM_COLUMNS[field]);
   }

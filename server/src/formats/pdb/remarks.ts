@@ -91,7 +91,7 @@ export function checkRemarks(
   problems: FindingCollector,
 ): void {
   const first = new Map<string, { line: number; entry: Entry }>();
-  const residues = residuesByNumber(frames);
+  const residues = residuesByNumber(remarks.some(({ selector }) => selector !== null) ? frames : []);
   for (const { line, selector, selectorSpan, entries } of remarks) {
     if (selector !== null && !isMatched(selector, residues)) {
       problems.add('selector-unmatched', selectorSpan, () => {

@@ -2,14 +2,25 @@ import type { FindingCollector } from '../../base/finding';
 import type { Span } from '../../base/span';
 import { MAX_ATOMIC_NUMBER } from '../../physics/elements';
 import type { LineIndex } from '../../text/lines';
-import { isBlank, scanCount, scanNumberInto, skipBlanks, skipField, trimEnd } from '../../text/numbers';
+import {
+  isBlank,
+  scanCount,
+  scanNumberInto,
+  scanPlainDecimal,
+  skipBlanks,
+  skipField,
+  trimEnd,
+} from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from '../annotation/entries';
 import { AtomBuilder } from '../atom-builder';
-import { likelySymbol, readSpecies } from '../species';
+import { likelySymbol, readSpecies, symbolNumber } from '../species';
 import { type AtomField, AtomFlag } from '../tree';
-import { ColumnOp, type ColumnPlan } from './columns';
+import { ColumnOp, type ColumnPlan, PLAIN_COLUMNS } from './columns';
 
+const BLANK = 32;
+const LF = 10;
+const CR = 13;
 const COORDINATE_NAMES = ['x', 'y', 'z'];
 
 /** Reads atom lines by a column plan into columns. */
@@ -35,6 +46,38 @@ export class AtomLineReader {
   /** Distinct values of the fragment column. */
   groups(): { names: string[]; areWords: boolean } | null {
     return this.#plan.hasGroup ? { names: [...this.#groups.keys()], areWords: this.#groupsAreWords } : null;
+  }
+
+  /**
+   * Reads lines from `line` to before `to` while each is an element symbol and three plain decimals, and returns the first that it
+   * leaves to {@link read}. Nearly all lines of a large file are of this kind.
+   */
+  readPlainLines(line: number, to: number): number {
+    if (this.#plan !== PLAIN_COLUMNS) return line;
+    const { atoms } = this;
+    const { bytes } = this.#text;
+    const { starts } = this.#lines;
+    const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
+    let next = line;
+    for (; next < to; next++) {
+      atoms.reserve();
+      const { positionA, count } = atoms;
+      let at = starts[next]!;
+      while (bytes[at] === BLANK) at++;
+      const second = bytes[at + 1]!;
+      if (second !== BLANK && bytes[at + 2] !== BLANK) break;
+      const z = symbolNumber(bytes[at]!, second);
+      if (z === 0) break;
+      at = scanPlainDecimal(bytes, view, at + 2, positionA, 3 * count);
+      if (at >= 0) at = scanPlainDecimal(bytes, view, at, positionA, 3 * count + 1);
+      if (at >= 0) at = scanPlainDecimal(bytes, view, at, positionA, 3 * count + 2);
+      while (bytes[at] === BLANK) at++;
+      if (at < 0 || (bytes[at] !== LF && bytes[at] !== CR)) break;
+      atoms.element[count] = z;
+      atoms.line[count] = next;
+      atoms.count = count + 1;
+    }
+    return next;
   }
 
   /** Reads one line that is not blank as the next atom; what cannot be read is reported and marked in its flags. */
@@ -202,14 +245,20 @@ export function fieldOfAtom(text: Snapshot, lines: LineIndex, line: number, plan
   const first = skipBlanks(bytes, lines.starts[line]!, lineEnd);
   const whole = { start: first, end: trimEnd(bytes, first, lineEnd) };
   if (field === 'line') return whole;
-  const wanted = { element: ColumnOp.species, x: ColumnOp.x, y: ColumnOp.y, z: ColumnOp.z, charge: ColumnOp.charge }[
-    field
-  ];
+  const wanted = {
+    name: ColumnOp.species,
+    element: ColumnOp.species,
+    x: ColumnOp.x,
+    y: ColumnOp.y,
+    z: ColumnOp.z,
+    charge: ColumnOp.charge,
+  }[field];
   let at = first;
   for (const op of plan.ops) {
     const end = skipField(bytes, at, lineEnd);
     if (end === at) return whole;
-    if (op === wanted || (op === ColumnOp.atomicNumber && field === 'element')) return { start: at, end };
+    if (op === wanted || (op === ColumnOp.atomicNumber && (field === 'element' || field === 'name')))
+      return { start: at, end };
     at = skipBlanks(bytes, end, lineEnd);
   }
   return whole;

@@ -13,7 +13,7 @@ import { readCell } from './cell';
 import { type ColumnPlan, PLAIN_COLUMNS, readProperties } from './columns';
 
 const NO_BONDS = new Int32Array(0);
-/** Room for atoms at first; a count may promise more than the frame holds. */
+/** Room for atoms at first in later frames; a count may promise more than a frame holds. */
 const FIRST_CAPACITY = 1 << 15;
 
 /**
@@ -126,11 +126,13 @@ class XyzReader {
       lines,
       this.#problems,
       plan,
-      Math.min(available, Math.max(declared, 16), FIRST_CAPACITY),
+      Math.min(available, Math.max(declared, 16), index === 0 ? available : FIRST_CAPACITY),
     );
     let line = firstAtomLine;
     const { bytes } = this.#text;
     for (; line < lines.count; line++) {
+      line = reader.readPlainLines(line, Math.min(lines.count, line + declared - reader.atoms.count));
+      if (line === lines.count) break;
       const end = lines.end(line);
       const start = skipBlanks(bytes, lines.starts[line]!, end);
       if (start === end) {
