@@ -101,7 +101,7 @@ async function session(person) {
   await person.shot('water-atom-hover');
   await person.picture();
   await person.shot('water-atom-picture');
-  await person.hoverAt(3, 12, 'near-field');
+  await person.hoverAt(3, 1, 'near-field');
   await person.shot('water-flagged-atom-hover');
 
   const frame = await person.hoverAt(1, 1, '7 fragments');

@@ -121,8 +121,8 @@ function picture(
 ): string {
   const [first, second] = [fragment, partner];
   const { svg, text } = pairPicture({
-    name1: `${first.name} (${first.fragment})`,
-    name2: `${second.name} (${second.fragment})`,
+    name1: `${first.name} #${first.fragment}`,
+    name2: `${second.name} #${second.fragment}`,
     distanceA: pair.distanceA,
     extent1A: first.extentA,
     extent2A: second.extentA,
