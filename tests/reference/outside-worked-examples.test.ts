@@ -5,7 +5,7 @@ import { known, pairOfPoints } from './data/outside-program';
  * Published worked examples, through the program: a text with two declared fragments, read and analysed. A value marked "from memory"
  * was typed from memory of the book and agrees with its own inputs.
  *
- * Printed examples that are left out because they are wrong or do not agree with themselves: lecture notes that give Debye
+ * Printed examples that are left out because they are wrong or do not agree with themselves: a public text that gives Debye
  * induction a factor of 4; the London energy of two methanes at 0.3 nm (-2 kJ/mol; its own formula gives -4.9); and in the table
  * of London 1937 the induction and dispersion columns of HCl, HBr and HI, which differ from their own inputs by 3–16 %.
  */

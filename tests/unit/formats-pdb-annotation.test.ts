@@ -1,12 +1,14 @@
 import { describe, expect, test } from 'vitest';
 import { FileFindings } from '../../server/src/analysis/findings';
-import { FileAnalysis, type FrameAnalysis } from '../../server/src/analysis/frame-analysis';
+import { FileAnalysis } from '../../server/src/analysis/frame-analysis';
 import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Finding } from '../../server/src/base/finding';
 import { parse } from '../../server/src/formats/parse';
 import type { FrameTree } from '../../server/src/formats/tree';
 import { DEBYE_E_A } from '../../server/src/physics/constants';
 import { snapshotOf } from '../../server/src/text/snapshot';
+import { analyse } from '../support/analyse';
+import { pdbRecord as atom } from '../support/pdb-lines';
 
 /** Every line ends with a line feed. */
 const text = (...lines: string[]) => lines.map((line) => `${line}\n`).join('');
@@ -17,50 +19,10 @@ const only = (content: string): FrameTree => {
   return frame!;
 };
 
-interface Fields {
-  record?: string;
-  serial?: string;
-  name?: string;
-  alt?: string;
-  residue?: string;
-  chain?: string;
-  number?: string;
-  insertion?: string;
-  x?: number;
-  y?: number;
-  z?: number;
-  occupancy?: string;
-  b?: string;
-  element?: string;
-  charge?: string;
-}
-
-/** An atom record; texts as they stand in their columns. */
-function atom(f: Fields): string {
-  const [x, y, z] = [f.x ?? 0, f.y ?? 0, f.z ?? 0].map((value) => value.toFixed(3).padStart(8));
-  return (
-    `${(f.record ?? 'ATOM').padEnd(6)}${(f.serial ?? '1').padStart(5)} ${(f.name ?? ' HE ').padEnd(4)}${f.alt ?? ' '}` +
-    `${(f.residue ?? 'UNK').padEnd(4)}${f.chain ?? 'A'}${(f.number ?? '1').padStart(4)}${f.insertion ?? ' '}   ${x}${y}${z}` +
-    `${(f.occupancy ?? '1.00').padStart(6)}${(f.b ?? '0.00').padStart(6)}          ${(f.element ?? 'HE').padStart(2)}${f.charge ?? '  '}`
-  );
-}
-
-function analyse(content: string): { frames: FrameAnalysis[]; findings: Finding[] } {
-  const file = parse(snapshotOf(content), 'pdb');
-  const analysis = new FileAnalysis(file, DEFAULT_REQUEST);
-  const findings = new FileFindings(file);
-  const all = file.frames.map((_, index) => {
-    const frame = analysis.frame(index);
-    for (const _pair of findings.pairsOfFrame(frame));
-    return frame;
-  });
-  return { frames: all, findings: findings.list() };
-}
-
 const found = (content: string) =>
-  analyse(content).findings.map(({ code, start, end }) => [code, content.slice(start, end)]);
+  analyse(content, 'pdb').findings.map(({ code, start, end }) => [code, content.slice(start, end)]);
 const fragmentSizes = (content: string) => {
-  const { fragments } = analyse(content).frames[0]!.model;
+  const { fragments } = analyse(content, 'pdb').frames[0]!.model;
   return Array.from({ length: fragments.count }, (_, f) => fragments.starts[f + 1]! - fragments.starts[f]!);
 };
 
@@ -134,7 +96,7 @@ describe('CRYST1', () => {
     ['of 1×1×1 is no cell', [used, cryst('1.000', '1.000', '1.000')], null],
   ])('%s', (_, records, vectors) => {
     const content = text(...records, atom({}));
-    const { cell } = analyse(content).frames[0]!.model;
+    const { cell } = analyse(content, 'pdb').frames[0]!.model;
     expect(cell === null ? null : Array.from(cell.vectorsA)).toEqual(vectors);
     expect(found(content)).toEqual([]);
   });
@@ -170,7 +132,7 @@ describe('annotation', () => {
       atom({ residue: 'HOH', number, name, element: name[1]!, x: 9 * k, y: 0.6 * i, z: i === 2 ? 0.7 : 0 }),
     ),
   );
-  const notesOf = (...remarks: string[]) => analyse(text(...remarks, ...waters, ligand)).frames[0]!.model.notes;
+  const notesOf = (...remarks: string[]) => analyse(text(...remarks, ...waters, ligand), 'pdb').frames[0]!.model.notes;
   test('several lines for one fragment add up', () => {
     const note = notesOf(
       'REMARK  99 fragment=A:LIG:401 charge=-1',
@@ -247,7 +209,7 @@ describe('annotation', () => {
 
   test('a key given on two lines names both', () => {
     const content = text('REMARK  99 fragment=A:UNK:1 charge=0', 'REMARK  99 fragment=A:UNK:1 charge=1', he);
-    const [entry] = analyse(content).findings as [Finding];
+    const [entry] = analyse(content, 'pdb').findings as [Finding];
     expect(entry.message).toMatch(/line 1 and again on line 2/);
     expect(entry.related.map(({ start }) => start)).toEqual([content.indexOf('charge')]);
     expect(entry.start).toBe(content.lastIndexOf('charge'));

@@ -1,11 +1,10 @@
 import { describe, expect, test } from 'vitest';
-import { FileFindings } from '../../server/src/analysis/findings';
-import { FileAnalysis, type FrameAnalysis } from '../../server/src/analysis/frame-analysis';
-import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Finding } from '../../server/src/base/finding';
 import { parse } from '../../server/src/formats/parse';
 import { type AtomField, AtomFlag, type FrameTree } from '../../server/src/formats/tree';
 import { snapshotOf } from '../../server/src/text/snapshot';
+import { analyse } from '../support/analyse';
+import { pdbRecord as atom, type PdbFields as Fields } from '../support/pdb-lines';
 
 /** Every line ends with a line feed. */
 const text = (...lines: string[]) => lines.map((line) => `${line}\n`).join('');
@@ -20,48 +19,8 @@ const only = (content: string): FrameTree => {
 // x 31–38, y 39–46, z 47–54, occupancy 55–60, B 61–66, element 77–78, charge 79–80.
 const FULL = 'HETATM    7 ZN  AZN1 B  42C    -11.500   2.250 100.125  0.75 12.50          ZN2+';
 
-interface Fields {
-  record?: string;
-  serial?: string;
-  name?: string;
-  alt?: string;
-  residue?: string;
-  chain?: string;
-  number?: string;
-  insertion?: string;
-  x?: number;
-  y?: number;
-  z?: number;
-  occupancy?: string;
-  b?: string;
-  element?: string;
-  charge?: string;
-}
-
-/** An atom record; texts as they stand in their columns. */
-function atom(f: Fields): string {
-  const [x, y, z] = [f.x ?? 0, f.y ?? 0, f.z ?? 0].map((value) => value.toFixed(3).padStart(8));
-  return (
-    `${(f.record ?? 'ATOM').padEnd(6)}${(f.serial ?? '1').padStart(5)} ${(f.name ?? ' HE ').padEnd(4)}${f.alt ?? ' '}` +
-    `${(f.residue ?? 'UNK').padEnd(4)}${f.chain ?? 'A'}${(f.number ?? '1').padStart(4)}${f.insertion ?? ' '}   ${x}${y}${z}` +
-    `${(f.occupancy ?? '1.00').padStart(6)}${(f.b ?? '0.00').padStart(6)}          ${(f.element ?? 'HE').padStart(2)}${f.charge ?? '  '}`
-  );
-}
-
-function analyse(content: string): { frames: FrameAnalysis[]; findings: Finding[] } {
-  const file = parse(snapshotOf(content), 'pdb');
-  const analysis = new FileAnalysis(file, DEFAULT_REQUEST);
-  const findings = new FileFindings(file);
-  const all = file.frames.map((_, index) => {
-    const frame = analysis.frame(index);
-    for (const _pair of findings.pairsOfFrame(frame));
-    return frame;
-  });
-  return { frames: all, findings: findings.list() };
-}
-
 const found = (content: string) =>
-  analyse(content).findings.map(({ code, start, end }) => [code, content.slice(start, end)]);
+  analyse(content, 'pdb').findings.map(({ code, start, end }) => [code, content.slice(start, end)]);
 const residuesOf = (content: string) =>
   only(content).residues!.map(({ chain, name, number, insertion, atoms }) => [
     `${chain}:${name}:${number}${insertion}`,
@@ -318,7 +277,7 @@ describe('residues', () => {
       alt('N1', 'B', '0.40', { number: '2', y: 5 }),
     );
     expect(found(content)).toEqual([['alternate-locations', 'B']]);
-    const [{ start }] = analyse(content).findings as [Finding];
+    const [{ start }] = analyse(content, 'pdb').findings as [Finding];
     expect(start).toBe(content.indexOf('\n') + 1 + 16);
   });
 });

@@ -1,12 +1,9 @@
 import { describe, expect, test } from 'vitest';
-import { FileFindings } from '../../server/src/analysis/findings';
-import { FileAnalysis, type FrameAnalysis } from '../../server/src/analysis/frame-analysis';
-import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
-import type { Finding } from '../../server/src/base/finding';
 import { parse } from '../../server/src/formats/parse';
 import { type AtomField, AtomFlag, type FrameTree } from '../../server/src/formats/tree';
 import { DEBYE_E_A } from '../../server/src/physics/constants';
 import { snapshotOf, snapshotOfBytes } from '../../server/src/text/snapshot';
+import { analyse } from '../support/analyse';
 
 /** Every line ends with a line feed. */
 const text = (...lines: string[]) => lines.map((line) => `${line}\n`).join('');
@@ -18,18 +15,6 @@ const only = (content: string): FrameTree => {
 };
 const positions = (frame: FrameTree) => Array.from(frame.atoms.positionA);
 const elements = (frame: FrameTree) => Array.from(frame.atoms.element);
-
-function analyse(content: string): { frames: FrameAnalysis[]; findings: Finding[] } {
-  const file = parse(snapshotOf(content), 'xyz');
-  const analysis = new FileAnalysis(file, DEFAULT_REQUEST);
-  const findings = new FileFindings(file);
-  const all = file.frames.map((_, index) => {
-    const frame = analysis.frame(index);
-    for (const _pair of findings.pairsOfFrame(frame));
-    return frame;
-  });
-  return { frames: all, findings: findings.list() };
-}
 
 /** Code and text under each finding. */
 const found = (content: string) =>

@@ -33,7 +33,7 @@ function told(diagnostics: readonly Diagnostic[]): string[] {
 
 let client: WireClient;
 let count = 0;
-const nextUri = () => `file:///work/${++count}.xyz`;
+const nextUri = () => `file:///inputs/${++count}.xyz`;
 
 beforeAll(async () => {
   client = await WireClient.start();
@@ -234,7 +234,7 @@ describe('hover', () => {
   });
 
   it('of a document that is not open is nothing', async () => {
-    expect(await client.hover('file:///work/closed.xyz', 0, 0)).toBeNull();
+    expect(await client.hover('file:///inputs/closed.xyz', 0, 0)).toBeNull();
   });
 
   it('can be cancelled', async () => {

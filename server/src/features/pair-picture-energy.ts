@@ -103,7 +103,9 @@ function pointMark(energy: number, zero: number, x: number, palette: Palette, in
 
 function mark(x: number, y: number, side: 1 | -1, look: Readonly<Record<string, string | number>>): string {
   const base = y + side * MARK_LENGTH;
-  return outline([[x, y], [x + MARK_HALF, base], [x - MARK_HALF, base]], look); // biome-ignore format: one triangle
+  const left = [x - MARK_HALF, base] as const;
+  const right = [x + MARK_HALF, base] as const;
+  return outline([[x, y], right, left], look);
 }
 
 /** At its mark, but within the half of the axis where the energy lies. */

@@ -125,9 +125,11 @@ export class NearField {
       return `${names}: the extents of the two overlap, so no reference can be given; the point dipole would say ${energy(pair.energies.pointDipole, kTKJPerMol)}.`;
     }
     const share = pair.errorKJPerMol / Math.abs(pair.referenceKJPerMol);
+    // What decides stands first: lists of problems cut the rest.
+    const off = Number.isFinite(share) ? `Point dipole off by ${shown(100 * share, 2)} %` : 'Point dipole off';
     return (
-      `${names}: ${BASIS_WORDS[pair.basis]} ${pair.basis === 'extent' ? 'give' : 'gives'} ${energy(pair.referenceKJPerMol, kTKJPerMol)}, ` +
-      `the point dipole ${shown(pair.energies.pointDipole)} kJ/mol${Number.isFinite(share) ? `, off by ${shown(100 * share, 2)} %` : ''}.`
+      `${off}: ${names}; it gives ${shown(pair.energies.pointDipole)} kJ/mol, and ${BASIS_WORDS[pair.basis]} ` +
+      `${pair.basis === 'extent' ? 'give' : 'gives'} ${energy(pair.referenceKJPerMol, kTKJPerMol)}.`
     );
   }
 }
