@@ -61,13 +61,11 @@ export class FileAnalysis {
   }
 }
 
-/** Every pair of the list, in order of first and second fragment; with `focus`, only those of a fragment that it accepts. */
-export function* pairsOf(system: System, focus: (fragment: number) => boolean = () => true): Generator<Pair> {
+/** Every pair of the list, in order of first and second fragment. */
+export function* pairsOf(system: System): Generator<Pair> {
   const partners = new Partners(system);
   for (let f = 0; f < system.count; f++) {
-    const focused = focus(f);
     for (const g of partners.of(f, true)) {
-      if (!focused && !focus(g)) continue;
       const pair = evaluatePair(system, f, g);
       if (pair.contact !== 'apart' || isWithinCutoff(system, f, g, pair.distanceA)) yield pair;
     }

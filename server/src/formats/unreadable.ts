@@ -5,7 +5,7 @@ import { AtomFlag, type CoordinateTree } from './tree';
 const SAMPLE = 4096;
 
 /** Whether the beginning of a text looks like a binary file: NUL bytes, or more than a tenth unprintable. */
-export function looksBinary(text: Snapshot): boolean {
+function looksBinary(text: Snapshot): boolean {
   const end = Math.min(text.length, SAMPLE);
   let strange = 0;
   for (let i = 0; i < end; i++) {

@@ -44,11 +44,6 @@ export function isNobleGas(z: number): boolean {
   return NOBLE_GASES.includes(z);
 }
 
-/** Whether a lone atom of this element is usually an ion: groups 1, 2 and 17. */
-export function isUsuallyIonWhenAlone(z: number): boolean {
-  return GROUP_1.includes(z) || GROUP_2.includes(z) || GROUP_17.includes(z);
-}
-
 /** Charge of the usual monatomic ion of groups 1, 2 and 17, e; 0 for every other element (common practice, no source). */
 export function usualIonCharge(z: number): number {
   if (GROUP_1.includes(z)) return 1;

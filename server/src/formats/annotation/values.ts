@@ -1,4 +1,3 @@
-import { scanNumber } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from './entries';
 
@@ -152,10 +151,4 @@ export function readBoolean(word: string): boolean | undefined {
   if (TRUE.test(word) || word === '1') return true;
   if (FALSE.test(word) || word === '0') return false;
   return undefined;
-}
-
-/** A finite number from a whole value, or NaN. */
-export function readNumber(snapshot: Snapshot, entry: Entry): number {
-  const value = scanNumber(snapshot, entry.inner.start, entry.inner.end);
-  return Number.isFinite(value) ? value : Number.NaN;
 }
