@@ -2,17 +2,25 @@ import type { FindingCollector } from '../../base/finding';
 import { scanNumberInto, skipBlanks, trimEnd } from '../../text/numbers';
 import { AtomBuilder } from '../atom-builder';
 import { readSpecies, symbolNumber } from '../species';
-import { AtomFlag, type AtomTable, type Residue } from '../tree';
+import { AtomFlag, type AtomTable } from '../tree';
 import { type AlternateAtom, chooseAlternates, removeAtoms } from './alternates';
+import { readCoordinate } from './coordinate';
 import { elementFromName } from './elements';
 import { ATOM_COLUMNS, type ColumnRange, type FixedColumns } from './fields';
-import { ResidueBuilder } from './residues';
+import { ResidueBuilder, type ResidueTable } from './residues';
 
 const COORDINATES = [ATOM_COLUMNS.x, ATOM_COLUMNS.y, ATOM_COLUMNS.z] as const;
 const COORDINATE_NAMES = ['x', 'y', 'z'] as const;
+const LF = 10;
+const CR = 13;
 const BLANK = 32;
 const MINUS = 45;
 const POINT = 46;
+const LETTER_M = 77;
+const LETTER_T = 84;
+/** The first four letters of the names of the records of atoms, as words. */
+const ATOM_WORD = 0x4d4f5441;
+const HETA_WORD = 0x41544548;
 
 /** Collects the ATOM and HETATM records of one model. */
 export class ModelAtoms {
@@ -23,6 +31,7 @@ export class ModelAtoms {
   readonly #alternates: AlternateAtom[] = [];
   /** Atoms before which a chain segment ends. */
   readonly #segmentStarts = new Set<number>();
+  readonly #residues: ResidueBuilder;
 
   /** @param capacity room for atoms at first */
   constructor(columns: FixedColumns, problems: FindingCollector, chargeColumn: ColumnRange | null, capacity: number) {
@@ -30,6 +39,7 @@ export class ModelAtoms {
     this.#problems = problems;
     this.#chargeColumn = chargeColumn;
     this.#atoms = new AtomBuilder(capacity, { charge: chargeColumn !== null, formal: true, residue: true });
+    this.#residues = new ResidueBuilder(columns, capacity);
   }
 
   get count(): number {
@@ -38,8 +48,43 @@ export class ModelAtoms {
 
   endSegment(): void {
     this.#segmentStarts.add(this.#atoms.count);
+    this.#residues.endSegment();
   }
 
+  /**
+   * Reads lines from `line` on while each is an atom's as the format has it: coordinates in their columns, an element symbol, no
+   * alternate location and no formal charge. Returns the first line that it leaves to others; of an atom, to {@link read}. Nearly
+   * all lines of a large file are of this kind.
+   */
+  readPlainLines(line: number): number {
+    const { text, lines, view } = this.#columns;
+    const { bytes } = text;
+    const { starts } = lines;
+    const atoms = this.#atoms;
+    let next = line;
+    for (; next < lines.count; next++) {
+      const start = starts[next]!;
+      if (starts[next + 1]! - start < ATOM_COLUMNS.element[1] || !isAtomRecord(view, start)) break;
+      atoms.reserve();
+      const { positionA, count } = atoms;
+      if (!readCoordinate(view, start + ATOM_COLUMNS.x[0], positionA, 3 * count)) break;
+      if (!readCoordinate(view, start + ATOM_COLUMNS.y[0], positionA, 3 * count + 1)) break;
+      if (!readCoordinate(view, start + ATOM_COLUMNS.z[0], positionA, 3 * count + 2)) break;
+      // A line end is no letter: with an element the line reaches to column 78.
+      const z = elementAt(bytes, start + ATOM_COLUMNS.element[0]);
+      if (z === 0 || bytes[start + ATOM_COLUMNS.altLoc[0]] !== BLANK) break;
+      if (!isBlankToEnd(bytes, start + ATOM_COLUMNS.formalCharge[0])) break;
+      atoms.element[count] = z;
+      atoms.line[count] = next;
+      atoms.formalE![count] = Number.NaN;
+      atoms.count = count + 1;
+      if (this.#chargeColumn !== null) this.#readCharge(next, count, this.#chargeColumn);
+      atoms.residue![count] = this.#residues.add(count, next);
+    }
+    return next;
+  }
+
+  /** Reads one ATOM or HETATM record as the next atom; what cannot be read is reported and marked in its flags. */
   read(line: number): void {
     const columns = this.#columns;
     const atoms = this.#atoms;
@@ -55,6 +100,7 @@ export class ModelAtoms {
       const site = columns.raw(line, [ATOM_COLUMNS.chain[0], ATOM_COLUMNS.insertion[1]]);
       this.#alternates.push({ atom, site, letter: altLoc, occupancy });
     }
+    atoms.residue![atom] = this.#residues.add(atom, line);
   }
 
   /** Reads x, y and z; false where the line is too short or shifted, so that nothing more need be said of it. */
@@ -133,9 +179,7 @@ export class ModelAtoms {
     const columns = this.#columns;
     const lineStart = columns.lines.starts[line]!;
     const { bytes } = columns.text;
-    const first = bytes[lineStart + ATOM_COLUMNS.element[0]]!;
-    const second = bytes[lineStart + ATOM_COLUMNS.element[0] + 1]!;
-    const z = first === BLANK ? symbolNumber(second, BLANK) : symbolNumber(first, second);
+    const z = elementAt(bytes, lineStart + ATOM_COLUMNS.element[0]);
     if (z > 0 && lineStart + ATOM_COLUMNS.element[1] <= columns.lines.end(line)) {
       this.#atoms.element[atom] = z;
       return;
@@ -176,33 +220,57 @@ export class ModelAtoms {
     );
   }
 
-  /** Drops alternate locations, forms residues, and returns the table. */
-  build(): { atoms: AtomTable; residues: Residue[]; alternateSites: number; firstAlternateLine: number } {
-    const total = this.#atoms.count;
-    let dropped: ReadonlySet<number> | null = null;
-    let alternateSites = 0;
-    let firstAlternateLine = -1;
-    if (this.#alternates.length > 0) {
-      const chosen = chooseAlternates(this.#alternates);
-      if (chosen.dropped.size > 0) {
-        dropped = chosen.dropped;
-        alternateSites = chosen.sites;
-        firstAlternateLine = this.#atoms.line[chosen.dropped.values().next().value!]!;
-        removeAtoms(this.#atoms, chosen.dropped);
-      }
+  /** Drops alternate locations, and returns the table. */
+  build(): { atoms: AtomTable; residues: ResidueTable; alternateSites: number; firstAlternateLine: number } {
+    const chosen = this.#alternates.length > 0 ? chooseAlternates(this.#alternates) : null;
+    if (chosen === null || chosen.dropped.size === 0) {
+      const residues = this.#residues.build();
+      return { atoms: this.#atoms.build(), residues, alternateSites: 0, firstAlternateLine: -1 };
     }
-    const builder = new ResidueBuilder(this.#columns);
-    const residue = this.#atoms.residue!;
-    const lines = this.#atoms.line;
+    const firstAlternateLine = this.#atoms.line[chosen.dropped.values().next().value!]!;
+    const residues = this.#regroup(chosen.dropped);
+    return { atoms: this.#atoms.build(), residues, alternateSites: chosen.sites, firstAlternateLine };
+  }
+
+  /** Removes atoms and forms residues of the rest anew. */
+  #regroup(dropped: ReadonlySet<number>): ResidueTable {
+    const total = this.#atoms.count;
+    removeAtoms(this.#atoms, dropped);
+    const { residue, line } = this.#atoms;
+    const builder = new ResidueBuilder(this.#columns, this.#atoms.count);
     let atom = 0;
     for (let i = 0; i < total; i++) {
-      if (dropped?.has(i)) continue;
+      if (dropped.has(i)) continue;
       if (this.#segmentStarts.has(i)) builder.endSegment();
-      residue[atom] = builder.add(atom, lines[atom]!);
+      residue![atom] = builder.add(atom, line[atom]!);
       atom++;
     }
-    return { atoms: this.#atoms.build(), residues: builder.build(), alternateSites, firstAlternateLine };
+    return builder.build();
   }
+}
+
+/** Whether a line begins with ATOM and a blank, or HETATM. */
+function isAtomRecord(view: DataView, start: number): boolean {
+  const four = view.getInt32(start, true);
+  if (four === ATOM_WORD) return view.getUint8(start + 4) === BLANK;
+  return four === HETA_WORD && view.getUint8(start + 4) === LETTER_T && view.getUint8(start + 5) === LETTER_M;
+}
+
+/** Atomic number by the symbol in two columns, right- or left-justified; 0 for anything else. */
+function elementAt(bytes: Uint8Array, start: number): number {
+  const first = bytes[start]!;
+  const second = bytes[start + 1]!;
+  return first === BLANK ? symbolNumber(second, BLANK) : symbolNumber(first, second);
+}
+
+/** Whether two columns are blank, as far as the line goes. */
+function isBlankToEnd(bytes: Uint8Array, start: number): boolean {
+  const first = bytes[start]!;
+  return isLineEnd(first) || (first === BLANK && (bytes[start + 1] === BLANK || isLineEnd(bytes[start + 1]!)));
+}
+
+function isLineEnd(unit: number): boolean {
+  return unit === LF || unit === CR;
 }
 
 /** Reads columns 79–80: a digit and a sign in either order, a sign alone for one; NaN where blank or anything else. */

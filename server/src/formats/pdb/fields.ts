@@ -33,11 +33,14 @@ export type ColumnRange = readonly [number, number];
 export class FixedColumns {
   readonly text: Snapshot;
   readonly lines: LineIndex;
+  /** The bytes of the text, to be read as words. */
+  readonly view: DataView;
   readonly #words = new Map<number, string>();
 
   constructor(text: Snapshot, lines: LineIndex) {
     this.text = text;
     this.lines = lines;
+    this.view = new DataView(text.bytes.buffer, text.bytes.byteOffset, text.bytes.byteLength);
   }
 
   /** The columns as they stand, shorter where the line ends within them. */
@@ -65,19 +68,6 @@ export class FixedColumns {
   number(line: number, range: ColumnRange): number {
     const { start, end } = this.span(line, range);
     return end > start ? scanNumber(this.text, start, end) : Number.NaN;
-  }
-
-  /** Whether two lines surely have the same in the columns; false also where that takes more than a look at bytes. */
-  areSame(line1: number, line2: number, range: ColumnRange): boolean {
-    const { bytes } = this.text;
-    const start1 = this.lines.starts[line1]!;
-    const start2 = this.lines.starts[line2]!;
-    if (start1 + range[1] > this.lines.end(line1) || start2 + range[1] > this.lines.end(line2)) return false;
-    for (let k = range[0]; k < range[1]; k++) {
-      const unit = bytes[start1 + k]!;
-      if (unit !== bytes[start2 + k] || unit < BLANK || unit >= NOT_ASCII) return false;
-    }
-    return true;
   }
 
   /** What {@link trimmed} gives, of up to four columns; equal words are one string, and nothing is made for one seen before. */

@@ -1,14 +1,14 @@
 import { FindingCollector } from '../../base/finding';
 import { indexLines } from '../../text/lines';
-import { trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import { valueText } from '../annotation/lists';
-import type { AtomField, CoordinateTree, FrameTree, RemarkAnnotation } from '../tree';
+import type { CoordinateTree, FrameTree, RemarkAnnotation } from '../tree';
 import { finishTree } from '../unreadable';
 import { ModelAtoms } from './atoms';
 import { ConnectionRecords } from './connections';
 import { readCrystalCell } from './crystal';
 import { ATOM_COLUMNS, type ColumnRange, FixedColumns } from './fields';
+import { ModelFrame } from './model-frame';
 import { checkRemarks, readRemark } from './remarks';
 
 /**
@@ -22,7 +22,7 @@ export function parsePdb(text: Snapshot): CoordinateTree {
   const remarks = readRemarks(text, columns, problems);
   const chargeColumn = readChargeColumn(text, remarks, problems);
   const connections = new ConnectionRecords(columns);
-  const frames: FrameTree[] = [];
+  const frames: ModelFrame[] = [];
   let cell: FrameTree['cell'] = null;
   const state: { open: OpenModel | null } = { open: null };
 
@@ -44,23 +44,12 @@ export function parsePdb(text: Snapshot): CoordinateTree {
         return `${places} alternate locations; the ones with less occupancy are left out, the first of them here.`;
       });
     }
-    const fieldSpan: FrameTree['fieldSpan'] = (atom, field) => fieldOf(columns, atoms.line[atom]!, field);
-    frames.push({
-      index: frames.length,
-      firstLine: open.firstLine,
-      endLine: line,
-      headLine: open.firstLine,
-      atoms,
-      groups: null,
-      entries: [],
-      cell,
-      residues,
-      bonds: new Int32Array(0),
-      fieldSpan,
-    });
+    frames.push(new ModelFrame(columns, frames.length, open.firstLine, line, atoms, residues, cell));
   };
 
   for (let line = 0; line < lines.count; line++) {
+    if (state.open !== null) line = state.open.model.readPlainLines(line);
+    if (line === lines.count) break;
     switch (recordAt(text.bytes, lines.starts[line]!, lines.end(line))) {
       case 'ATOM':
       case 'HETATM':
@@ -87,9 +76,9 @@ export function parsePdb(text: Snapshot): CoordinateTree {
     }
   }
   end(lines.count);
-  const bonded = frames.map((frame) => ({ ...frame, bonds: connections.bondsOf(frame) }));
-  checkRemarks(remarks, bonded, text, problems);
-  return finishTree({ language: 'pdb', text, lines, frames: bonded, remarks }, problems);
+  for (const frame of frames) frame.bonds = connections.bondsOf(frame);
+  checkRemarks(remarks, frames, text, problems);
+  return finishTree({ language: 'pdb', text, lines, frames, remarks }, problems);
 }
 
 interface OpenModel {
@@ -162,24 +151,4 @@ function readChargeColumn(
     return null;
   }
   return null;
-}
-
-function fieldOf(columns: FixedColumns, line: number, field: AtomField): { start: number; end: number } {
-  const { bytes } = columns.text;
-  switch (field) {
-    case 'line': {
-      const start = columns.lines.starts[line]!;
-      return { start, end: trimEnd(bytes, start, columns.lines.end(line)) };
-    }
-    case 'element': {
-      const written = columns.span(line, ATOM_COLUMNS.element);
-      return columns.trimmed(line, ATOM_COLUMNS.element) === '' ? columns.span(line, ATOM_COLUMNS.name) : written;
-    }
-    case 'charge':
-      return columns.span(line, ATOM_COLUMNS.formalCharge);
-    case 'name':
-      return columns.span(line, [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]]);
-    default:
-      return columns.span(line, ATOM_COLUMNS[field]);
-  }
 }
