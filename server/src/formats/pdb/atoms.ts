@@ -4,13 +4,20 @@ import { AtomBuilder } from '../atom-builder';
 import { readSpecies, symbolNumber } from '../species';
 import { AtomFlag, type AtomTable } from '../tree';
 import { type AlternateAtom, chooseAlternates, removeAtoms } from './alternates';
-import { readCoordinate } from './coordinate';
+import { readCoordinates } from './coordinate';
 import { elementFromName } from './elements';
 import { ATOM_COLUMNS, type ColumnRange, type FixedColumns } from './fields';
 import { ResidueBuilder, type ResidueTable } from './residues';
 
 const COORDINATES = [ATOM_COLUMNS.x, ATOM_COLUMNS.y, ATOM_COLUMNS.z] as const;
 const COORDINATE_NAMES = ['x', 'y', 'z'] as const;
+/** First columns as constants of their own: in a loop over lines that look-up counts. */
+const ALT_LOC = ATOM_COLUMNS.altLoc[0];
+const X = ATOM_COLUMNS.x[0];
+const ELEMENT = ATOM_COLUMNS.element[0];
+const FORMAL_CHARGE = ATOM_COLUMNS.formalCharge[0];
+/** A plain line reaches at least to its element. */
+const PLAIN_LENGTH = ATOM_COLUMNS.element[1];
 const LF = 10;
 const CR = 13;
 const BLANK = 32;
@@ -64,16 +71,14 @@ export class ModelAtoms {
     let next = line;
     for (; next < lines.count; next++) {
       const start = starts[next]!;
-      if (starts[next + 1]! - start < ATOM_COLUMNS.element[1] || !isAtomRecord(view, start)) break;
+      if (starts[next + 1]! - start < PLAIN_LENGTH || !isAtomRecord(view, start)) break;
       atoms.reserve();
       const { positionA, count } = atoms;
-      if (!readCoordinate(view, start + ATOM_COLUMNS.x[0], positionA, 3 * count)) break;
-      if (!readCoordinate(view, start + ATOM_COLUMNS.y[0], positionA, 3 * count + 1)) break;
-      if (!readCoordinate(view, start + ATOM_COLUMNS.z[0], positionA, 3 * count + 2)) break;
+      if (!readCoordinates(view, start + X, positionA, 3 * count)) break;
       // A line end is no letter: with an element the line reaches to column 78.
-      const z = elementAt(bytes, start + ATOM_COLUMNS.element[0]);
-      if (z === 0 || bytes[start + ATOM_COLUMNS.altLoc[0]] !== BLANK) break;
-      if (!isBlankToEnd(bytes, start + ATOM_COLUMNS.formalCharge[0])) break;
+      const z = elementAt(bytes, start + ELEMENT);
+      if (z === 0 || bytes[start + ALT_LOC] !== BLANK) break;
+      if (!isBlankToEnd(bytes, start + FORMAL_CHARGE)) break;
       atoms.element[count] = z;
       atoms.line[count] = next;
       atoms.formalE![count] = Number.NaN;

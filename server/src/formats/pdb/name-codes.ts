@@ -42,3 +42,8 @@ export function codeOfPlain(four: number): number {
   while ((packed & 255) === BLANK) packed = (packed >>> 8) | (BLANK << 24);
   return packed;
 }
+
+/** The code of a text of one plain character. */
+export function codeOfPlainCharacter(unit: number): number {
+  return BLANKS ^ BLANK ^ unit;
+}

@@ -1,4 +1,4 @@
-/** Three key words and the residue, per slot. */
+/** Per slot three key words, and one more than the residue: 0 in a free slot. */
 const STRIDE = 4;
 const FIRST_SLOTS = 64;
 
@@ -7,22 +7,23 @@ const FIRST_SLOTS = 64;
  * array: a large file has a new key every few lines, and a string for each would cost more than all else that is read of them.
  */
 export class ResidueKeys {
-  #slots = new Int32Array(STRIDE * FIRST_SLOTS).fill(-1);
+  #slots = new Int32Array(STRIDE * FIRST_SLOTS);
   #used = 0;
 
   /** The residue of a key, or −1. */
   find(key0: number, key1: number, key2: number): number {
-    return this.#slots[this.#slotOf(key0, key1, key2) + 3]!;
+    return this.#slots[this.#slotOf(key0, key1, key2) + 3]! - 1;
   }
 
   set(key0: number, key1: number, key2: number, residue: number): void {
+    const slots = this.#slots;
     const slot = this.#slotOf(key0, key1, key2);
-    const isNew = this.#slots[slot + 3]! < 0;
-    this.#slots[slot] = key0;
-    this.#slots[slot + 1] = key1;
-    this.#slots[slot + 2] = key2;
-    this.#slots[slot + 3] = residue;
-    if (isNew && ++this.#used * 2 * STRIDE > this.#slots.length) this.#grow();
+    if (slots[slot + 3] === 0) this.#used++;
+    slots[slot] = key0;
+    slots[slot + 1] = key1;
+    slots[slot + 2] = key2;
+    slots[slot + 3] = residue + 1;
+    if (this.#used * 2 * STRIDE > slots.length) this.#grow();
   }
 
   /** Where a key stands, or else the free slot where it belongs. */
@@ -30,7 +31,7 @@ export class ResidueKeys {
     const slots = this.#slots;
     const mask = slots.length - 1;
     let slot = (STRIDE * mixed(key0, key1, key2)) & mask;
-    while (slots[slot + 3]! >= 0 && (slots[slot] !== key0 || slots[slot + 1] !== key1 || slots[slot + 2] !== key2)) {
+    while (slots[slot + 3] !== 0 && (slots[slot] !== key0 || slots[slot + 1] !== key1 || slots[slot + 2] !== key2)) {
       slot = (slot + STRIDE) & mask;
     }
     return slot;
@@ -38,10 +39,10 @@ export class ResidueKeys {
 
   #grow(): void {
     const old = this.#slots;
-    this.#slots = new Int32Array(2 * old.length).fill(-1);
+    this.#slots = new Int32Array(2 * old.length);
+    this.#used = 0;
     for (let slot = 0; slot < old.length; slot += STRIDE) {
-      if (old[slot + 3]! < 0) continue;
-      this.#slots.set(old.subarray(slot, slot + STRIDE), this.#slotOf(old[slot]!, old[slot + 1]!, old[slot + 2]!));
+      if (old[slot + 3] !== 0) this.set(old[slot]!, old[slot + 1]!, old[slot + 2]!, old[slot + 3]! - 1);
     }
   }
 }

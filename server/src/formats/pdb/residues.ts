@@ -1,11 +1,16 @@
 import { ATOM_COLUMNS, type ColumnRange, type FixedColumns } from './fields';
-import { arePlain, codeOfPlain, NameCodes } from './name-codes';
+import { arePlain, codeOfPlain, codeOfPlainCharacter, NameCodes } from './name-codes';
 import { ResidueKeys } from './residue-keys';
 
 /** Columns that tell which residue an atom belongs to. */
 const KEY: ColumnRange = [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]];
-/** The words that cover those ten columns; the last two overlap. */
-const KEY_WORDS = [KEY[0], KEY[0] + 4, KEY[1] - 4] as const;
+/** Where the words begin that cover those ten columns: residue name; chain and number; the last two overlap. */
+const KEY_WORD_0 = KEY[0];
+const KEY_WORD_1 = ATOM_COLUMNS.chain[0];
+const KEY_WORD_2 = KEY[1] - 4;
+const KEY_END = KEY[1];
+const NAME = ATOM_COLUMNS.name[0];
+const ALT_LOC = ATOM_COLUMNS.altLoc[0];
 /** A line end has at most this many characters. */
 const LONGEST_LINE_END = 2;
 /** Among more labels than this a set is faster than a look at each. */
@@ -68,7 +73,7 @@ export class ResidueBuilder {
     const { starts } = this.#columns.lines;
     const start = starts[line]!;
     const isWhole =
-      starts[line + 1]! - start >= KEY[1] + LONGEST_LINE_END || this.#columns.lines.end(line) - start >= KEY[1];
+      starts[line + 1]! - start >= KEY_END + LONGEST_LINE_END || this.#columns.lines.end(line) - start >= KEY_END;
     const label = isWhole ? this.#labelAt(line, start) : this.#labelOf(line);
     let index = isWhole ? this.#findAt(line, start) : this.#findByText(line);
     if (this.#hasSegmentEnded) {
@@ -84,8 +89,8 @@ export class ResidueBuilder {
   /** Code of the label in a line that is not short. */
   #labelAt(line: number, start: number): number {
     const { view, text } = this.#columns;
-    const name = view.getInt32(start + ATOM_COLUMNS.name[0], true);
-    const isPlain = arePlain(name) && text.bytes[start + ATOM_COLUMNS.altLoc[0]] === BLANK;
+    const name = view.getInt32(start + NAME, true);
+    const isPlain = arePlain(name) && text.bytes[start + ALT_LOC] === BLANK;
     return isPlain ? codeOfPlain(name) : this.#labelOf(line);
   }
 
@@ -97,9 +102,9 @@ export class ResidueBuilder {
   /** The residue of the key in a line that is not short, or −1. */
   #findAt(line: number, start: number): number {
     const { view } = this.#columns;
-    const key0 = view.getInt32(start + KEY_WORDS[0], true);
-    const key1 = view.getInt32(start + KEY_WORDS[1], true);
-    const key2 = view.getInt32(start + KEY_WORDS[2], true);
+    const key0 = view.getInt32(start + KEY_WORD_0, true);
+    const key1 = view.getInt32(start + KEY_WORD_1, true);
+    const key2 = view.getInt32(start + KEY_WORD_2, true);
     const isSame = key0 === this.#key0 && key1 === this.#key1 && key2 === this.#key2;
     if (isSame && this.#keyText === null) return this.#current;
     if (!arePlain(key0) || !arePlain(key1) || !arePlain(key2)) return this.#findByText(line);
@@ -130,7 +135,11 @@ export class ResidueBuilder {
 
   /** Makes a residue, which is from now on the one of the current key. */
   #open(line: number): number {
-    const chain = this.#codes.ofText(this.#columns.word(line, ATOM_COLUMNS.chain));
+    // Of a key in words the chain is the first byte of the second one.
+    const chain =
+      this.#keyText === null
+        ? codeOfPlainCharacter(this.#key1 & 255)
+        : this.#codes.ofText(this.#columns.word(line, ATOM_COLUMNS.chain));
     if (this.#lastChain !== null && chain !== this.#lastChain) this.#segment++;
     this.#lastChain = chain;
     const index = this.#count++;
