@@ -69,20 +69,12 @@ export function indexLines(snapshot: Snapshot): LineIndex {
   let i = 0;
   let start = 0;
   while (i < length) {
-    // Sixteen units at a time where all are above CR; the padding allows looking past the end.
-    const hits =
-      unitsUpToCr(view.getInt32(i, true)) |
-      unitsUpToCr(view.getInt32(i + 4, true)) |
-      unitsUpToCr(view.getInt32(i + 8, true)) |
-      unitsUpToCr(view.getInt32(i + 12, true));
-    if (hits === 0) {
-      i += 16;
-      continue;
-    }
-    let low = unitsUpToCr(view.getInt32(i, true));
-    while (low === 0) {
+    // Four units at a time where all are above CR; the padding allows looking past the end.
+    const four = view.getInt32(i, true);
+    const low = (four - 0x0e0e0e0e) & ~four & 0x80808080;
+    if (low === 0) {
       i += 4;
-      low = unitsUpToCr(view.getInt32(i, true));
+      continue;
     }
     i += (31 - Math.clz32(low & -low)) >> 3;
     if (i >= length) break;
@@ -97,11 +89,6 @@ export function indexLines(snapshot: Snapshot): LineIndex {
   starts[count] = length;
   const isTight = starts.length < (count + 1) * 1.5;
   return new Lines(bytes, isTight ? starts.subarray(0, count + 1) : starts.slice(0, count + 1));
-}
-
-/** Marks the bytes of a word that are CR or less by their upper bit; the lowest mark is exact. */
-function unitsUpToCr(four: number): number {
-  return (four - 0x0e0e0e0e) & ~four & 0x80808080;
 }
 
 function grown(array: Uint32Array<ArrayBuffer>): Uint32Array<ArrayBuffer> {

@@ -1,4 +1,5 @@
 import type { Snapshot } from './snapshot';
+import { scanFourDigits } from './whole-part';
 
 const PLUS = 43;
 const MINUS = 45;
@@ -112,11 +113,9 @@ export function scanPlainDecimal(
   if (unit !== POINT || wholeDigits === 0 || wholeDigits > 9) return -1;
   const point = i++;
   let mantissa = whole;
-  const four = view.getInt32(i, true) ^ 0x30303030;
-  // Four bytes are digits where each is at most 9 after that.
-  if (((four | (four + 0x06060606)) & 0xf0f0f0f0) === 0) {
-    const pairs = Math.imul(four, 10) + (four >>> 8);
-    mantissa = mantissa * 10000 + (pairs & 255) * 100 + ((pairs >>> 16) & 255);
+  const four = scanFourDigits(view.getInt32(i, true));
+  if (four >= 0) {
+    mantissa = mantissa * 10000 + four;
     i += 4;
   }
   unit = bytes[i]!;

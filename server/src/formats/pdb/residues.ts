@@ -36,6 +36,8 @@ export interface ResidueTable {
  */
 export class ResidueBuilder {
   readonly #columns: FixedColumns;
+  readonly #view: DataView;
+  readonly #starts: Uint32Array;
   readonly #codes = new NameCodes();
   #records: Int32Array = new Int32Array(STRIDE * 16);
   #count = 0;
@@ -60,6 +62,8 @@ export class ResidueBuilder {
   /** @param capacity room for atoms at first */
   constructor(columns: FixedColumns, capacity: number) {
     this.#columns = columns;
+    this.#view = columns.view;
+    this.#starts = columns.lines.starts;
     this.#labels = new Int32Array(Math.max(1, capacity));
   }
 
@@ -70,10 +74,9 @@ export class ResidueBuilder {
 
   /** Index of the residue that an atom belongs to, which is made where there is none. Atoms come in ascending order. */
   add(atom: number, line: number): number {
-    const { starts } = this.#columns.lines;
-    const start = starts[line]!;
+    const start = this.#starts[line]!;
     const isWhole =
-      starts[line + 1]! - start >= KEY_END + LONGEST_LINE_END || this.#columns.lines.end(line) - start >= KEY_END;
+      this.#starts[line + 1]! - start >= KEY_END + LONGEST_LINE_END || this.#columns.lines.end(line) - start >= KEY_END;
     const label = isWhole ? this.#labelAt(line, start) : this.#labelOf(line);
     let index = isWhole ? this.#findAt(line, start) : this.#findByText(line);
     if (this.#hasSegmentEnded) {
@@ -88,9 +91,8 @@ export class ResidueBuilder {
 
   /** Code of the label in a line that is not short. */
   #labelAt(line: number, start: number): number {
-    const { view, text } = this.#columns;
-    const name = view.getInt32(start + NAME, true);
-    const isPlain = arePlain(name) && text.bytes[start + ALT_LOC] === BLANK;
+    const name = this.#view.getInt32(start + NAME, true);
+    const isPlain = arePlain(name) && this.#view.getUint8(start + ALT_LOC) === BLANK;
     return isPlain ? codeOfPlain(name) : this.#labelOf(line);
   }
 
@@ -101,7 +103,7 @@ export class ResidueBuilder {
 
   /** The residue of the key in a line that is not short, or −1. */
   #findAt(line: number, start: number): number {
-    const { view } = this.#columns;
+    const view = this.#view;
     const key0 = view.getInt32(start + KEY_WORD_0, true);
     const key1 = view.getInt32(start + KEY_WORD_1, true);
     const key2 = view.getInt32(start + KEY_WORD_2, true);

@@ -2,25 +2,15 @@ import type { FindingCollector } from '../../base/finding';
 import type { Span } from '../../base/span';
 import { MAX_ATOMIC_NUMBER } from '../../physics/elements';
 import type { LineIndex } from '../../text/lines';
-import {
-  isBlank,
-  scanCount,
-  scanNumberInto,
-  scanPlainDecimal,
-  skipBlanks,
-  skipField,
-  trimEnd,
-} from '../../text/numbers';
+import { isBlank, scanCount, scanNumberInto, skipBlanks, skipField, trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from '../annotation/entries';
 import { AtomBuilder } from '../atom-builder';
-import { likelySymbol, readSpecies, symbolNumber } from '../species';
+import { likelySymbol, readSpecies } from '../species';
 import { type AtomField, AtomFlag } from '../tree';
-import { ColumnOp, type ColumnPlan, PLAIN_COLUMNS } from './columns';
+import { ColumnOp, type ColumnPlan } from './columns';
+import { PlainLineReader } from './plain-lines';
 
-const BLANK = 32;
-const LF = 10;
-const CR = 13;
 const COORDINATE_NAMES = ['x', 'y', 'z'];
 
 /** Reads atom lines by a column plan into columns. */
@@ -30,6 +20,7 @@ export class AtomLineReader {
   readonly #lines: LineIndex;
   readonly #problems: FindingCollector;
   readonly #plan: ColumnPlan;
+  readonly #plain: PlainLineReader;
   readonly #groups = new Map<string, number>();
   #groupsAreWords = false;
   #linesWithMore = 0;
@@ -41,6 +32,7 @@ export class AtomLineReader {
     this.#problems = problems;
     this.#plan = plan;
     this.atoms = new AtomBuilder(capacity, { charge: plan.hasCharge, dipole: plan.hasDipole, group: plan.hasGroup });
+    this.#plain = new PlainLineReader(text, lines, plan, this.atoms);
   }
 
   /** Distinct values of the fragment column. */
@@ -48,36 +40,9 @@ export class AtomLineReader {
     return this.#plan.hasGroup ? { names: [...this.#groups.keys()], areWords: this.#groupsAreWords } : null;
   }
 
-  /**
-   * Reads lines from `line` to before `to` while each is an element symbol and three plain decimals, and returns the first that it
-   * leaves to {@link read}. Nearly all lines of a large file are of this kind.
-   */
+  /** Reads plain lines from `line` to before `to`, and returns the first that it leaves to {@link read}. */
   readPlainLines(line: number, to: number): number {
-    if (this.#plan !== PLAIN_COLUMNS) return line;
-    const { atoms } = this;
-    const { bytes } = this.#text;
-    const { starts } = this.#lines;
-    const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-    let next = line;
-    for (; next < to; next++) {
-      atoms.reserve();
-      const { positionA, count } = atoms;
-      let at = starts[next]!;
-      while (bytes[at] === BLANK) at++;
-      const second = bytes[at + 1]!;
-      if (second !== BLANK && bytes[at + 2] !== BLANK) break;
-      const z = symbolNumber(bytes[at]!, second);
-      if (z === 0) break;
-      at = scanPlainDecimal(bytes, view, at + 2, positionA, 3 * count);
-      if (at >= 0) at = scanPlainDecimal(bytes, view, at, positionA, 3 * count + 1);
-      if (at >= 0) at = scanPlainDecimal(bytes, view, at, positionA, 3 * count + 2);
-      while (bytes[at] === BLANK) at++;
-      if (at < 0 || (bytes[at] !== LF && bytes[at] !== CR)) break;
-      atoms.element[count] = z;
-      atoms.line[count] = next;
-      atoms.count = count + 1;
-    }
-    return next;
+    return this.#plain.read(line, to);
   }
 
   /** Reads one line that is not blank as the next atom; what cannot be read is reported and marked in its flags. */
