@@ -56,7 +56,9 @@ function content({ frames, remarks }: CoordinateTree) {
       groups,
       keys: entries.map(({ key, form, closed }) => [key, form, closed]),
       cell: cell === null ? null : [cell.vectorsA, cell.periodic],
-      residues,
+      residues: residues?.map(({ chain, name, number, insertion, segment, atomNames, atoms: members }) => {
+        return { chain, name, number, insertion, segment, atomNames, atoms: members };
+      }),
       bonds,
     })),
     remarks: remarks.map(({ line, selector, entries }) => [line, selector, entries.map(({ key }) => key)]),
