@@ -50,7 +50,7 @@ function unit(v: number[]): number[] {
   return v.map((c) => c / length);
 }
 
-function mulberry(seed: number): () => number {
+export function mulberry(seed: number): () => number {
   let state = seed;
   return () => {
     state = (state + 0x6d2b79f5) | 0;

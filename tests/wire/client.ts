@@ -40,6 +40,10 @@ export interface ClientOptions {
   /** Whether the client asks for diagnostics itself (default true). */
   readonly pull?: boolean;
   readonly settings?: unknown;
+  /** The server's program (default: the built server). */
+  readonly server?: string;
+  /** A module that Node loads before the server, and that answers what {@link WireClient.askPreloaded} asks. */
+  readonly preload?: string;
 }
 
 /** A client of the built server over a real connection (standard input and output of a process). */
@@ -53,10 +57,11 @@ export class WireClient {
   readonly #exit: Promise<number | null>;
   readonly #waiting: { test: () => boolean; done: () => void }[] = [];
 
-  private constructor(settings: unknown) {
+  private constructor({ settings = {}, server = 'server/dist/server.cjs', preload }: ClientOptions) {
     this.settings = settings;
-    this.#process = spawn('node', [resolve('server/dist/server.cjs'), '--stdio'], {
-      stdio: ['pipe', 'pipe', 'inherit'],
+    const loaded = preload === undefined ? [] : ['--expose-gc', '--require', resolve(preload)];
+    this.#process = spawn('node', [...loaded, resolve(server), '--stdio'], {
+      stdio: ['pipe', 'pipe', 'inherit', ...(preload === undefined ? [] : ['ipc' as const])],
     });
     this.#exit = new Promise((done) => this.#process.on('exit', done));
     this.connection = createProtocolConnection(
@@ -77,8 +82,9 @@ export class WireClient {
     this.connection.listen();
   }
 
-  static async start({ pull = true, settings = {} }: ClientOptions = {}): Promise<WireClient> {
-    const client = new WireClient(settings);
+  static async start(options: ClientOptions = {}): Promise<WireClient> {
+    const { pull = true } = options;
+    const client = new WireClient(options);
     const capabilities: ClientCapabilities = {
       workspace: { configuration: true, diagnostics: { refreshSupport: true } },
       textDocument: pull ? { diagnostic: {} } : {},
@@ -146,6 +152,14 @@ export class WireClient {
 
   hover(uri: string, line: number, character: number): Promise<Hover | null> {
     return this.connection.sendRequest(HoverRequest.type, { textDocument: { uri }, position: { line, character } });
+  }
+
+  /** Sends a message to the module loaded before the server; its next message is the answer. */
+  askPreloaded(question: string): Promise<unknown> {
+    return new Promise((done, failed) => {
+      this.#process.once('message', done);
+      this.#process.send(question, (error) => error && failed(error));
+    });
   }
 
   /** Shuts the server down as the protocol asks; returns its exit status. */
