@@ -1,4 +1,5 @@
 import type { Measured, Reference } from './reference';
+import { median, printTable, shown } from './table';
 
 /** One kernel in up to three versions; each gives a result whose sum must be the same. */
 export interface Case {
@@ -66,25 +67,17 @@ export async function compare(entry: Case, atoms: number, rounds: number, refere
   }
 }
 
-function measure(work: () => unknown, sum: (result: unknown) => number): Measured {
+export function measure(work: () => unknown, sum: (result: unknown) => number): Measured {
   const begin = performance.now();
   const result = work();
   const seconds = (performance.now() - begin) / 1000;
   return { seconds, checksum: sum(result) };
 }
 
-function median(list: readonly number[]): number | null {
-  if (list.length === 0) return null;
-  const sorted = [...list].sort((a, b) => a - b);
-  const middle = sorted.length >> 1;
-  return sorted.length % 2 === 1 ? sorted[middle]! : (sorted[middle - 1]! + sorted[middle]!) / 2;
-}
-
 export function showTable(rows: readonly Row[], rounds: number): void {
   console.log(`Medians of ${rounds} interleaved rounds, ms. Only the ratios of one run are worth quoting.`);
   const ms = (seconds: number | null) => (seconds === null ? '-' : (seconds * 1000).toFixed(1));
   const ratio = (a: number | null, b: number | null) => (a === null || b === null ? null : a / b);
-  const shown = (value: number | null) => (value === null ? '-' : value < 10 ? value.toFixed(2) : value.toFixed(0));
   const table = rows.map((row) => {
     const toC = ratio(row.ours, row.c);
     const toNaive = ratio(row.naive, row.ours);
@@ -103,16 +96,5 @@ export function showTable(rows: readonly Row[], rounds: number): void {
       row.agrees ? (hasGoal ? (met ? 'met' : 'missed') : '') : 'RESULTS DIFFER',
     ];
   });
-  print([['kernel', 'atoms', 'C', 'ours', 'naive', 'ours/C', 'goal', 'naive/ours', 'goal', ''], ...table]);
-  const small = rows.find((row) => row.name === 'covalent fragments');
-  const large = rows.find((row) => row.name === small?.name && row !== small);
-  if (small && large) console.log(`fragments, time(1M)/time(100k): ${shown(large.ours / small.ours)} (goal <= 12)`);
-}
-
-function print(table: readonly (readonly string[])[]): void {
-  const widths = table[0]!.map((_, column) => Math.max(...table.map((row) => row[column]!.length)));
-  for (const row of table) {
-    const cells = row.map((cell, column) => (column === 0 ? cell.padEnd(widths[0]!) : cell.padStart(widths[column]!)));
-    console.log(cells.join('  ').trimEnd());
-  }
+  printTable([['kernel', 'atoms', 'C', 'ours', 'naive', 'ours/C', 'goal', 'naive/ours', 'goal', ''], ...table]);
 }

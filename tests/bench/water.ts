@@ -1,3 +1,6 @@
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+
 /** A box of water as text: one molecule a lattice place (0.1 atoms/Å³), shaken and turned at random from a fixed seed. */
 export interface WaterBox {
   readonly atoms: number;
@@ -58,4 +61,13 @@ export function mulberry(seed: number): () => number {
     t = (t + Math.imul(t ^ (t >>> 7), 61 | t)) ^ t;
     return ((t ^ (t >>> 14)) >>> 0) / 4294967296;
   };
+}
+
+/** Writes the texts of a box where the C reference reads them; returns their folder. */
+export function writeBox({ atoms, xyz, pdb }: WaterBox, folder: string): string {
+  const data = join(folder, String(atoms));
+  mkdirSync(data, { recursive: true });
+  writeFileSync(join(data, 'water.xyz'), xyz);
+  writeFileSync(join(data, 'water.pdb'), pdb);
+  return data;
 }
