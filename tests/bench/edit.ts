@@ -1,6 +1,6 @@
 import type { Diagnostic } from 'vscode-languageserver-protocol';
-import { EditedText } from '../support/edited-text';
 import { WireClient } from '../wire/client';
+import { EditedText } from '../wire/edited-text';
 import { median, metOrMissed, printTable, quantile, shown } from './table';
 import { mulberry, type WaterBox } from './water';
 

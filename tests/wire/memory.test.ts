@@ -1,7 +1,7 @@
 import { afterEach, beforeEach, describe, expect, it } from 'vitest';
 import { mulberry, waterBox } from '../bench/water';
-import { EditedText } from '../support/edited-text';
 import { WireClient } from './client';
+import { EditedText } from './edited-text';
 
 const MB = 2 ** 20;
 
