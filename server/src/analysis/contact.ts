@@ -30,7 +30,8 @@ function pairTable(entry: (z1: number, z2: number) => number): Float64Array {
   return table;
 }
 
-const VDW_SUM2 = pairTable((z1, z2) => (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!) ** 2);
+/** Squares of the sums of van der Waals radii, Å², at `119 z1 + z2`. */
+export const VDW_SUM2_A2 = pairTable((z1, z2) => (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!) ** 2);
 const COVALENT_CLASH2 = pairTable((z1, z2) => {
   const sum = COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!;
   return Number.isNaN(sum) ? 0 : (CLASH_COVALENT * sum) ** 2;
@@ -92,7 +93,7 @@ export function scanAtoms(
       columnSum += qi * columnE[j]! * inverse;
       if (wantFitted) fittedSum += ti * fittedE[j]! * inverse;
       const pair = SIZE * zi + element[j]!;
-      const ratio2 = r2 / VDW_SUM2[pair]!;
+      const ratio2 = r2 / VDW_SUM2_A2[pair]!;
       // Nothing below concerns atoms that are farther than the closest and than any clash.
       const close = ratio2 < CLASH_RATIO * CLASH_RATIO;
       if (ratio2 >= best2 && !close) continue;
@@ -112,7 +113,7 @@ export function scanAtoms(
   return {
     closest1,
     closest2,
-    closestA: hasPair ? Math.sqrt(best2 * VDW_SUM2[SIZE * element[closest1]! + element[closest2]!]!) : Number.NaN,
+    closestA: hasPair ? Math.sqrt(best2 * VDW_SUM2_A2[SIZE * element[closest1]! + element[closest2]!]!) : Number.NaN,
     contactRatio: Math.sqrt(best2),
     clash,
     sharedProton,

@@ -2,14 +2,16 @@ import { type Finding, FindingCollector } from '../base/finding';
 import type { CoordinateTree } from '../formats/tree';
 import { type FrameAnalysis, pairsOf } from './frame-analysis';
 import type { Pair } from './pair';
-import { pairId, reportClash, reportCoincident, reportJoined } from './rules/contacts';
+import { NoteKind, noteOf, PairNotes } from './pair-notes';
+import { reportClashes, reportCoincident, reportJoined } from './rules/contacts';
 import { RuleContext } from './rules/context';
 import { reportDipolesAgainstCharges } from './rules/dipole-charges';
 import { reportFragmentFacts, reportSmallCell } from './rules/fragment-facts';
 import { reportChargeSum, reportDipoleSum, reportElectronParity } from './rules/frame-charge';
 import { reportLengthUnit } from './rules/length-unit';
-import { NearField } from './rules/near-field';
+import { reportNearField } from './rules/near-field';
 import { reportResidues } from './rules/residues';
+import type { PairSurvey } from './survey';
 
 /** Gathers the findings of a file frame by frame. */
 export class FileFindings {
@@ -23,11 +25,29 @@ export class FileFindings {
     for (const problem of file.problems) this.#findings.push(problem);
   }
 
+  /** Adds the findings of a frame whose pairs have been looked through. */
+  addFrame(frame: FrameAnalysis, { notes }: PairSurvey): void {
+    const context = this.#begin(frame);
+    if (context !== null) reportPairs(context, notes);
+  }
+
   /**
    * Yields every pair of the frame's list in order, and adds the findings of the frame when the last one is taken: a caller who
-   * wants the pairs too need not make them twice, and may pause between them.
+   * wants the pairs anyway need not have them looked through as well.
    */
   *pairsOfFrame(frame: FrameAnalysis): Generator<Pair> {
+    const context = this.#begin(frame);
+    const notes = new PairNotes();
+    for (const pair of pairsOf(frame.system)) {
+      const kind = noteOf(frame.system, pair);
+      if (kind !== NoteKind.none) notes.add(pair.first, pair.second, kind, pair.strengthKJPerMol);
+      yield pair;
+    }
+    if (context !== null) reportPairs(context, notes);
+  }
+
+  /** Reports all that needs no pairs; `null` where nothing should be said of them. */
+  #begin(frame: FrameAnalysis): RuleContext | null {
     const { model } = frame;
     for (const code of model.frameNotes.silence) this.#silenced.add(code);
     for (const problem of frame.problems.list()) this.#findings.push(problem);
@@ -35,10 +55,7 @@ export class FileFindings {
     reportElectronParity(context);
     reportResidues(context);
     // Distances in the wrong unit would bring a finding for every atom, and fragments that overlap touch: one cause each.
-    if (reportLengthUnit(context) || frame.problems.count('fragments-overlap') > 0) {
-      yield* pairsOf(frame.system);
-      return;
-    }
+    if (reportLengthUnit(context) || frame.problems.count('fragments-overlap') > 0) return null;
     reportCoincident(context);
     reportChargeSum(context);
     reportDipoleSum(context);
@@ -46,18 +63,7 @@ export class FileFindings {
     // A fragment that could not be read whole is of no kind that anything should be said of.
     if (!this.#hasErrors(frame)) reportFragmentFacts(context);
     reportSmallCell(context);
-    const nearField = new NearField(context);
-    const clashing = new Set<string>();
-    for (const pair of pairsOf(frame.system)) {
-      if (pair.contact === 'clash') {
-        clashing.add(pairId(pair.first, pair.second));
-        reportClash(context, pair);
-      }
-      nearField.add(pair);
-      yield pair;
-    }
-    reportJoined(context, clashing);
-    nearField.report();
+    return context;
   }
 
   #hasErrors({ model, problems }: FrameAnalysis): boolean {
@@ -76,4 +82,9 @@ export class FileFindings {
         more === undefined ? entry : { ...entry, message: `${entry.message} (${more} more like this are not listed.)` },
       );
   }
+}
+
+function reportPairs(context: RuleContext, notes: PairNotes): void {
+  reportJoined(context, reportClashes(context, notes));
+  reportNearField(context, notes);
 }

@@ -4,9 +4,12 @@ import type { System } from './system';
 /** Two ions belong to the list up to this many cutoffs. */
 const ION_CUTOFFS = 3;
 /** Contacts are found whatever the cutoff: no two atoms touch over a longer distance, Å. */
-const CONTACT_REACH_A = 7;
+export const CONTACT_REACH_A = 7;
 /** Each tier holds fragments of up to twice the extent of the one before, so that large ones do not widen the search for small. */
 const FIRST_TIER_EXTENT_A = 4;
+
+/** What a comparison of distances may be off by; whether a pair belongs to the list is decided exactly elsewhere. */
+const ROUNDING = 1 + 1e-9;
 
 interface Tier {
   readonly grid: PointGrid;
@@ -19,7 +22,8 @@ export class Partners {
   readonly #tiers: readonly Tier[];
   /** Ions once more: they see each other three times as far. */
   readonly #ionTiers: readonly Tier[];
-  readonly #buffer = new NeighbourBuffer();
+  readonly #candidates = new NeighbourBuffer();
+  readonly #found = new NeighbourBuffer();
 
   constructor(system: System) {
     this.#system = system;
@@ -33,42 +37,45 @@ export class Partners {
     );
   }
 
-  /**
-   * The partners of a fragment, ascending; with `onlyAfter` those of a larger number alone. Some lie a little beyond the cutoff:
-   * they are in the list only if they touch.
-   */
-  of(f: number, onlyAfter: boolean): number[] {
-    const system = this.#system;
-    const found: number[] = [];
-    if (!system.usable[f]) return found;
-    const { extentA } = system.moments;
-    const reach = reachOf(system) + extentA[f]!;
-    const ion = system.isIon[f] === 1;
-    this.#collect(this.#tiers, f, reach, onlyAfter, (g, d) => {
-      if (!(ion && system.isIon[g]) && d <= reach + extentA[g]!) found.push(g);
-    });
-    if (ion) {
-      const ionReach = ION_CUTOFFS * reachOf(system) + extentA[f]!;
-      this.#collect(this.#ionTiers, f, ionReach, onlyAfter, (g, d) => {
-        if (d <= ionReach + extentA[g]!) found.push(g);
-      });
-    }
-    return found.sort((a, b) => a - b);
+  /** The partners of a fragment, ascending; with `onlyAfter` those of a larger number alone. */
+  of(f: number, onlyAfter: boolean): Int32Array {
+    const { index, count } = this.around(f, onlyAfter);
+    return index.slice(0, count).sort();
   }
 
-  #collect(
-    tiers: readonly Tier[],
-    f: number,
-    reachA: number,
-    onlyAfter: boolean,
-    visit: (g: number, d: number) => void,
-  ): void {
-    const buffer = this.#buffer;
+  /**
+   * The same in no order, with the vectors from the centre of `f` to each (minimum image); valid until the next call. Some lie a little
+   * beyond the cutoff: they are in the list only if they touch.
+   */
+  around(f: number, onlyAfter: boolean): NeighbourBuffer {
+    const system = this.#system;
+    this.#found.count = 0;
+    if (!system.usable[f]) return this.#found;
+    const reach = reachOf(system) + system.moments.extentA[f]!;
+    const ion = system.isIon[f] === 1;
+    this.#collect(this.#tiers, f, reach, onlyAfter, ion);
+    if (ion) {
+      const ionReach = ION_CUTOFFS * reachOf(system) + system.moments.extentA[f]!;
+      this.#collect(this.#ionTiers, f, ionReach, onlyAfter, false);
+    }
+    return this.#found;
+  }
+
+  #collect(tiers: readonly Tier[], f: number, reachA: number, onlyAfter: boolean, leaveIons: boolean): void {
+    const { isIon, moments } = this.#system;
+    const found = this.#found;
+    const candidates = this.#candidates;
     for (const { grid, largestA } of tiers) {
-      grid.gather(f, reachA + largestA, onlyAfter, buffer);
-      for (let k = 0; k < buffer.count; k++) {
-        const d = Math.hypot(buffer.vectorA[3 * k]!, buffer.vectorA[3 * k + 1]!, buffer.vectorA[3 * k + 2]!);
-        visit(buffer.index[k]!, d);
+      grid.gather(f, (reachA + largestA) * ROUNDING, onlyAfter, candidates);
+      const { index, vectorA } = candidates;
+      for (let k = 0; k < candidates.count; k++) {
+        const g = index[k]!;
+        if (leaveIons && isIon[g] === 1) continue;
+        const x = vectorA[3 * k]!;
+        const y = vectorA[3 * k + 1]!;
+        const z = vectorA[3 * k + 2]!;
+        const within = (reachA + moments.extentA[g]!) * ROUNDING;
+        if (x * x + y * y + z * z <= within * within) found.push(g, x, y, z);
       }
     }
   }
@@ -90,7 +97,12 @@ function tiersOf(system: System, members: Int32Array, reachA: number): Tier[] {
   }
   return [...byTier.values()].map((list) => {
     const largestA = list.reduce((most, f) => Math.max(most, extentA[f]!), 0);
-    const grid = new PointGrid(centreA, Int32Array.from(list), reachA + 2 * largestA, system.cell);
+    const grid = new PointGrid(
+      centreA,
+      Int32Array.from(list),
+      (reachA + 2 * largestA) * ROUNDING * ROUNDING,
+      system.cell,
+    );
     return { grid, largestA };
   });
 }

@@ -1,6 +1,7 @@
 import { FileFindings } from '../analysis/findings';
 import { FileAnalysis } from '../analysis/frame-analysis';
 import type { AnalysisRequest } from '../analysis/settings';
+import { surveyPairs } from '../analysis/survey';
 import type { Part } from '../analysis/system';
 import { SEVERITIES, type Severity } from '../base/catalogue';
 import { type FindingRecord, findingRecord } from '../features/records';
@@ -78,10 +79,14 @@ async function reportOf(
   const found = new FileFindings(file);
   for (let index = 0; index < file.frames.length; index++) {
     const progress = () => `${name}: frame ${index + 1} of ${file.frames.length}`;
-    for (const _ of found.pairsOfFrame(analysis.frame(index))) {
+    const frame = analysis.frame(index);
+    const survey = surveyPairs(frame.system);
+    let step = survey.next();
+    for (; !step.done; step = survey.next()) {
       const turn = pacer.pause(progress);
       if (turn !== undefined) await turn;
     }
+    found.addFrame(frame, step.value);
     await pacer.pause(progress);
   }
   const findings = found.list().map((finding) => findingRecord(file.lines, finding));

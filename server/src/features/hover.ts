@@ -190,8 +190,7 @@ export function pairsOfFragment(frame: FrameAnalysis, f: number): Pair[] {
     partners = new Partners(system);
     PARTNERS.set(frame, partners);
   }
-  return partners
-    .of(f, false)
+  return Array.from(partners.of(f, false))
     .map((g) => evaluatePair(system, Math.min(f, g), Math.max(f, g)))
     .filter((pair) => pair.contact !== 'apart' || isWithinCutoff(system, pair.first, pair.second, pair.distanceA));
 }

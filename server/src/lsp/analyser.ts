@@ -1,5 +1,6 @@
 import { FileFindings } from '../analysis/findings';
 import { FileAnalysis, type FrameAnalysis } from '../analysis/frame-analysis';
+import { surveyPairs } from '../analysis/survey';
 import type { Finding } from '../base/finding';
 import { parse } from '../formats/parse';
 import type { CoordinateTree } from '../formats/tree';
@@ -25,7 +26,6 @@ export type Turn = () => Promise<void>;
 
 /** Work goes on for this long before others get a turn, ms. */
 const SLICE_MS = 8;
-const PAIRS_PER_LOOK = 256;
 const FRAMES_KEPT = 8;
 
 /** Thrown inside where a run is no longer wanted; never leaves this module's callers. */
@@ -61,9 +61,11 @@ export async function analyseDocument(
     await rest();
     const frame = kept.frame(index);
     fragments += frame.model.fragments.count;
-    for (const _ of found.pairsOfFrame(frame)) {
-      if (++pairs % PAIRS_PER_LOOK === 0 && now() - sliceStart > SLICE_MS) await rest();
-    }
+    const survey = surveyPairs(frame.system);
+    let step = survey.next();
+    for (; !step.done; step = survey.next()) if (now() - sliceStart > SLICE_MS) await rest();
+    found.addFrame(frame, step.value);
+    pairs += step.value.pairs;
   }
   return {
     document,

@@ -305,19 +305,23 @@ export class PointGrid {
     const sorted = this.#sorted;
     const order = this.#order;
     const cell = this.#cell;
+    // Up to this distance a difference as written is its own minimum image.
+    const safe2 = cell === null ? Number.POSITIVE_INFINITY : cell.safeRadius2;
     for (let slot = from; slot < to; slot++) {
       const j = order[slot]!;
       if (onlyAfter ? j <= i : j === i) continue;
       let dx = sorted[3 * slot]! - x;
       let dy = sorted[3 * slot + 1]! - y;
       let dz = sorted[3 * slot + 2]! - z;
-      if (cell !== null) {
-        minimumImage(cell, dx, dy, dz, this.#image);
+      let d2 = dx * dx + dy * dy + dz * dz;
+      if (d2 > safe2) {
+        minimumImage(cell!, dx, dy, dz, this.#image);
         dx = this.#image.vectorA[0]!;
         dy = this.#image.vectorA[1]!;
         dz = this.#image.vectorA[2]!;
+        d2 = dx * dx + dy * dy + dz * dz;
       }
-      if (dx * dx + dy * dy + dz * dz <= radius2) out.push(j, dx, dy, dz);
+      if (d2 <= radius2) out.push(j, dx, dy, dz);
     }
   }
 

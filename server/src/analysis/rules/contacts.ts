@@ -1,5 +1,6 @@
 import { symbolOf } from '../../physics/elements';
-import type { Pair } from '../pair';
+import { evaluatePair, type Pair } from '../pair';
+import { NoteKind, type PairNotes } from '../pair-notes';
 import { type RuleContext, shown } from './context';
 
 /** Atoms closer than this are at one point, Å. */
@@ -22,8 +23,19 @@ export function reportCoincident(context: RuleContext): void {
   }
 }
 
-/** Reports a clash of two fragments at the closest atom of the second. */
-export function reportClash(context: RuleContext, pair: Pair): void {
+/** Reports each clash of two fragments at the closest atom of the second; returns the pairs that clash. */
+export function reportClashes(context: RuleContext, notes: PairNotes): Set<string> {
+  const clashing = new Set<string>();
+  for (let k = 0; k < notes.count; k++) {
+    if (notes.kind[k] !== NoteKind.clash) continue;
+    const pair = evaluatePair(context.frame.system, notes.first[k]!, notes.second[k]!);
+    clashing.add(pairId(pair.first, pair.second));
+    reportClash(context, pair);
+  }
+  return clashing;
+}
+
+function reportClash(context: RuleContext, pair: Pair): void {
   const { system } = context.frame;
   const numbers = [system.atomNumbers[pair.closest1]!, system.atomNumbers[pair.closest2]!] as const;
   const lines = numbers.map((number) => context.atomLine(number));
@@ -69,6 +81,6 @@ export function reportJoined(context: RuleContext, clashing: ReadonlySet<string>
   }
 }
 
-export function pairId(f: number, g: number): string {
+function pairId(f: number, g: number): string {
   return `${f} ${g}`;
 }

@@ -1,7 +1,7 @@
 import type { FindingCode } from '../../base/catalogue';
 import type { Related } from '../../base/finding';
-import { NOTICEABLE_KT } from '../advice';
-import { evaluatePair, type Pair } from '../pair';
+import { evaluatePair } from '../pair';
+import { NoteKind, type PairNotes } from '../pair-notes';
 import type { Basis } from '../reference';
 import { type RuleContext, shown } from './context';
 
@@ -23,76 +23,96 @@ interface Noted {
   readonly strengthKJPerMol: number;
 }
 
-/** Collects the pairs for which the point dipole does not hold, and reports them by fragment. */
-export class NearField {
+/** Reports the pairs for which the point dipole does not hold: by fragment where they are few, else once for the frame. */
+export function reportNearField(context: RuleContext, notes: PairNotes): void {
+  new NearField(context, notes).report();
+}
+
+class NearField {
   readonly #context: RuleContext;
-  readonly #near = new Map<number, Noted[]>();
-  readonly #edge = new Map<number, Noted[]>();
-  #nearPairs = 0;
-  #edgePairs = 0;
+  readonly #notes: PairNotes;
+  /** 1 for a fragment that is told about a near partner, and so not about the edge too. */
+  readonly #isNear: Uint8Array;
 
-  constructor(context: RuleContext) {
+  constructor(context: RuleContext, notes: PairNotes) {
     this.#context = context;
-  }
-
-  add(pair: Pair): void {
-    const { kTKJPerMol } = this.#context.frame.system;
-    if (pair.contact === 'clash' || pair.contact === 'bonded') return;
-    if (pair.regime === 'near' && pair.strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) {
-      this.#nearPairs++;
-      this.#keep(this.#near, pair);
-    } else if (pair.regime === 'edge') {
-      this.#edgePairs++;
-      this.#keep(this.#edge, pair);
-    }
-  }
-
-  #keep(lists: Map<number, Noted[]>, { first, second, strengthKJPerMol }: Pair): void {
-    const noted: Noted = { first, second, strengthKJPerMol };
-    for (const f of [first, second]) {
-      if (f >= this.#context.ownFragments) continue;
-      const list = lists.get(f);
-      if (list === undefined) lists.set(f, [noted]);
-      else keepWorst(list, noted);
-    }
+    this.#notes = notes;
+    this.#isNear = this.#concerned(NoteKind.near);
   }
 
   report(): void {
-    this.#reportCode('near-field', this.#near);
-    // A fragment that is told about a near partner is not told about the edge too.
-    for (const f of this.#near.keys()) this.#edge.delete(f);
-    this.#reportCode('edge-field', this.#edge);
+    this.#reportCode('near-field', NoteKind.near, this.#isNear);
+    const atEdge = this.#concerned(NoteKind.edge);
+    for (let f = 0; f < atEdge.length; f++) if (this.#isNear[f]) atEdge[f] = 0;
+    this.#reportCode('edge-field', NoteKind.edge, atEdge);
   }
 
-  #reportCode(code: FindingCode, lists: ReadonlyMap<number, Noted[]>): void {
-    const context = this.#context;
-    if (lists.size > MOST_FRAGMENTS) {
-      this.#reportFrame(code, lists);
+  /** 1 for each fragment of this file that takes part in a pair of a kind. */
+  #concerned(kind: NoteKind): Uint8Array {
+    const notes = this.#notes;
+    const own = this.#context.ownFragments;
+    const concerned = new Uint8Array(own);
+    for (let k = 0; k < notes.count; k++) {
+      if (notes.kind[k] !== kind) continue;
+      // A fragment of a companion file lies past the end, where nothing is kept.
+      concerned[notes.first[k]!] = 1;
+      concerned[notes.second[k]!] = 1;
+    }
+    return concerned;
+  }
+
+  #reportCode(code: FindingCode, kind: NoteKind, concerned: Uint8Array): void {
+    let count = 0;
+    for (let f = 0; f < concerned.length; f++) count += concerned[f]!;
+    if (count === 0) return;
+    if (count > MOST_FRAGMENTS) {
+      this.#reportFrame(code, kind, concerned, count);
       return;
     }
-    for (const [f, pairs] of lists) {
-      const [worst, ...others] = [...pairs].sort(byStrength);
-      const span = context.placeOf(f)!;
+    const context = this.#context;
+    for (let f = 0; f < concerned.length; f++) {
+      if (!concerned[f]) continue;
+      const [worst, ...others] = this.#worst(kind, (first, second) => first === f || second === f);
       context.findings.add(
         code,
-        span,
+        context.placeOf(f)!,
         () => this.#sentence(worst!, f),
-        () => ({ related: others.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, f)) }),
+        () => ({ related: others.flatMap((pair) => this.#related(pair, f)) }),
       );
     }
   }
 
-  #reportFrame(code: FindingCode, lists: ReadonlyMap<number, Noted[]>): void {
+  #reportFrame(code: FindingCode, kind: NoteKind, concerned: Uint8Array, fragments: number): void {
     const context = this.#context;
-    const worst = [...new Set([...lists.values()].flat())].sort(byStrength);
+    const worst = this.#worst(kind, (first, second) => concerned[first] === 1 || concerned[second] === 1);
     const where = code === 'near-field' ? 'does not hold' : 'is at its edge';
+    const pairs = this.#notes.kind.subarray(0, this.#notes.count).reduce((sum, k) => sum + (k === kind ? 1 : 0), 0);
     context.findings.add(
       code,
       context.headSpan(),
       () =>
-        `The point dipole ${where} for ${code === 'near-field' ? this.#nearPairs : this.#edgePairs} pairs of ${lists.size} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
+        `The point dipole ${where} for ${pairs} pairs of ${fragments} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
       () => ({ related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)) }),
     );
+  }
+
+  /** The strongest pairs of a kind among those wanted, as many as a finding shows: one and ten others. */
+  #worst(kind: NoteKind, isWanted: (first: number, second: number) => boolean): Noted[] {
+    const { count, kind: kinds, first, second, strengthKJPerMol } = this.#notes;
+    const worst: Noted[] = [];
+    let least = Number.NEGATIVE_INFINITY;
+    for (let k = 0; k < count; k++) {
+      // Of equal ones the first stands, which has come already.
+      if (kinds[k] !== kind || strengthKJPerMol[k]! <= least || !isWanted(first[k]!, second[k]!)) continue;
+      const noted = { first: first[k]!, second: second[k]!, strengthKJPerMol: strengthKJPerMol[k]! };
+      let at = worst.length;
+      while (at > 0 && worst[at - 1]!.strengthKJPerMol < noted.strengthKJPerMol) at--;
+      worst.splice(at, 0, noted);
+      if (worst.length <= MOST_RELATED) continue;
+      worst.length = MOST_RELATED + 1;
+      least = worst[MOST_RELATED]!.strengthKJPerMol;
+    }
+    return worst;
   }
 
   #related(pair: Noted, f: number): Related[] {
@@ -132,18 +152,6 @@ export class NearField {
       `${pair.basis === 'extent' ? 'give' : 'gives'} ${energy(pair.referenceKJPerMol, kTKJPerMol)}.`
     );
   }
-}
-
-/** Adds a pair to a list that holds no more than a finding shows: the worst and ten others. */
-function keepWorst(list: Noted[], noted: Noted): void {
-  list.push(noted);
-  if (list.length <= 4 * MOST_RELATED) return;
-  list.sort(byStrength);
-  list.length = MOST_RELATED + 1;
-}
-
-function byStrength(a: Noted, b: Noted): number {
-  return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
 }
 
 function energy(valueKJPerMol: number, kTKJPerMol: number): string {

@@ -1,0 +1,65 @@
+import { NOTICEABLE_KT } from './advice';
+import type { Pair } from './pair';
+import type { System } from './system';
+
+/** Why a pair is spoken of in the findings; 0 for one that is not. */
+export const NoteKind = { none: 0, clash: 1, near: 2, edge: 3 } as const;
+export type NoteKind = (typeof NoteKind)[keyof typeof NoteKind];
+
+/** What is to be said of an evaluated pair. */
+export function noteOf({ kTKJPerMol }: System, { contact, regime, strengthKJPerMol }: Pair): NoteKind {
+  if (contact === 'clash') return NoteKind.clash;
+  if (contact === 'bonded') return NoteKind.none;
+  if (regime === 'near' && strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) return NoteKind.near;
+  return regime === 'edge' ? NoteKind.edge : NoteKind.none;
+}
+
+const FIRST_ROOM = 64;
+
+/** Pairs to be spoken of, as columns, in order of first and second fragment: millions of others need not be kept. */
+export class PairNotes {
+  count = 0;
+  first = new Int32Array(FIRST_ROOM);
+  second = new Int32Array(FIRST_ROOM);
+  kind = new Uint8Array(FIRST_ROOM);
+  strengthKJPerMol = new Float64Array(FIRST_ROOM);
+
+  add(first: number, second: number, kind: NoteKind, strengthKJPerMol: number): void {
+    if (this.count === this.first.length) this.#grow();
+    const at = this.count++;
+    this.first[at] = first;
+    this.second[at] = second;
+    this.kind[at] = kind;
+    this.strengthKJPerMol[at] = strengthKJPerMol;
+  }
+
+  /** Puts the notes from `from` on, all of one first fragment, in order of the second. */
+  sortRow(from: number): void {
+    const { first, second, kind, strengthKJPerMol } = this;
+    for (let k = from + 1; k < this.count; k++) {
+      const [g, what, strength] = [second[k]!, kind[k]!, strengthKJPerMol[k]!];
+      let at = k;
+      for (; at > from && second[at - 1]! > g; at--) {
+        first[at] = first[at - 1]!;
+        second[at] = second[at - 1]!;
+        kind[at] = kind[at - 1]!;
+        strengthKJPerMol[at] = strengthKJPerMol[at - 1]!;
+      }
+      second[at] = g;
+      kind[at] = what;
+      strengthKJPerMol[at] = strength;
+    }
+  }
+
+  #grow(): void {
+    const room = 2 * this.first.length;
+    const longer = <T extends Int32Array | Uint8Array | Float64Array>(from: T, to: T): T => {
+      to.set(from);
+      return to;
+    };
+    this.first = longer(this.first, new Int32Array(room));
+    this.second = longer(this.second, new Int32Array(room));
+    this.kind = longer(this.kind, new Uint8Array(room));
+    this.strengthKJPerMol = longer(this.strengthKJPerMol, new Float64Array(room));
+  }
+}
