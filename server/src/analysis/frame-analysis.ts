@@ -1,11 +1,12 @@
 import { FindingCollector } from '../base/finding';
+import { finish, type Steps } from '../base/steps';
 import type { CoordinateTree } from '../formats/tree';
-import { buildFrameModel, type FirstFrame, type FrameModel, inheritableFragments } from '../model/frame-model';
-import { computeMoments, type Moments } from './moments';
+import { type FirstFrame, type FrameModel, frameModelSteps, inheritableFragments } from '../model/frame-model';
+import { type Moments, momentSteps } from './moments';
 import { evaluatePair, type Pair } from './pair';
 import { isWithinCutoff, Partners } from './partners';
 import type { AnalysisRequest, AnalysisSettings } from './settings';
-import { buildSystem, type Part, type System } from './system';
+import { type Part, type System, systemSteps } from './system';
 
 /** A frame with its fragments, their moments, and the means to look at their pairs. */
 export interface FrameAnalysis {
@@ -33,32 +34,39 @@ export class FileAnalysis {
   }
 
   frame(index: number): FrameAnalysis {
-    const problems = new FindingCollector();
-    const first = index === 0 ? null : this.#firstFrame();
-    const model = buildFrameModel(this.file, this.file.frames[index]!, first, this.request.periodic, problems);
-    if (index === 0) this.#first = { tree: model.tree, fragments: inheritableFragments(model) };
-    const { forced } = this.request;
-    const settings = {
-      ...this.request.settings,
-      temperatureK: forced.temperatureK ?? model.frameNotes.temperatureK ?? this.request.settings.temperatureK,
-      relativePermittivity:
-        forced.relativePermittivity ??
-        model.frameNotes.relativePermittivity ??
-        this.request.settings.relativePermittivity,
-    };
-    const moments = computeMoments(model, settings.centre);
-    const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
-    return { index, model, moments, settings, system: buildSystem(parts, settings), problems };
+    return finish(this.frameSteps(index));
   }
 
-  #firstFrame(): FirstFrame {
-    if (this.#first === null) {
-      const tree = this.file.frames[0]!;
-      const model = buildFrameModel(this.file, tree, null, this.request.periodic, new FindingCollector());
-      this.#first = { tree, fragments: inheritableFragments(model) };
-    }
+  /** The same with pauses. */
+  *frameSteps(index: number): Steps<FrameAnalysis> {
+    const problems = new FindingCollector();
+    const first = index === 0 ? null : (this.#first ?? (yield* this.#firstSteps()));
+    const tree = this.file.frames[index]!;
+    const model = yield* frameModelSteps(this.file, tree, first, this.request.periodic, problems);
+    if (index === 0) this.#first = { tree, fragments: inheritableFragments(model) };
+    const settings = settingsOf(this.request, model);
+    const moments = yield* momentSteps(model, settings.centre);
+    const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
+    const system = yield* systemSteps(parts, settings);
+    return { index, model, moments, settings, system, problems };
+  }
+
+  *#firstSteps(): Steps<FirstFrame> {
+    const tree = this.file.frames[0]!;
+    const model = yield* frameModelSteps(this.file, tree, null, this.request.periodic, new FindingCollector());
+    this.#first = { tree, fragments: inheritableFragments(model) };
     return this.#first;
   }
+}
+
+/** The settings that hold for a frame: what was asked for expressly beats the file, which beats the rest. */
+function settingsOf({ forced, settings }: AnalysisRequest, { frameNotes }: FrameModel): AnalysisSettings {
+  return {
+    ...settings,
+    temperatureK: forced.temperatureK ?? frameNotes.temperatureK ?? settings.temperatureK,
+    relativePermittivity:
+      forced.relativePermittivity ?? frameNotes.relativePermittivity ?? settings.relativePermittivity,
+  };
 }
 
 /** Every pair of the list, in order of first and second fragment. */

@@ -1,3 +1,4 @@
+import { inStrides, type Steps } from '../base/steps';
 import { AtomFlag } from '../formats/tree';
 import type { Axis, FragmentNotes } from '../model/annotation';
 import type { FrameModel } from '../model/frame-model';
@@ -25,12 +26,12 @@ export interface Moments {
   /** Distance from the centre to the farthest atom. */
   readonly extentA: Float64Array;
   readonly chargeE: Float64Array;
-  readonly chargeSource: readonly ChargeSource[];
+  readonly chargeSource: ChargeSource[];
   /** NaN where size or direction is unknown. */
   readonly dipoleEA: Float64Array;
   /** Known where the size is, even without a direction. */
   readonly dipoleNormEA: Float64Array;
-  readonly dipoleSource: readonly DipoleSource[];
+  readonly dipoleSource: DipoleSource[];
   readonly quadrupoleEA2: Float64Array;
   /** Dipole and sum of the charge column; NaN without one. */
   readonly columnDipoleEA: Float64Array;
@@ -44,49 +45,78 @@ interface FragmentPlace {
   isAtom: boolean;
 }
 
+/** Fragments computed between two pauses. */
+const FRAGMENTS_A_STEP = 512;
+
 /** Computes the moments of every fragment; unusable ones keep NaN. Linear in the atoms. */
-export function computeMoments(model: FrameModel, centre: Centre): Moments {
-  const { fragments, notes, usable } = model;
-  const n = fragments.count;
+export function* momentSteps(model: FrameModel, centre: Centre): Steps<Moments> {
+  const moments = emptyMoments(model.fragments.count);
+  yield* inStrides(moments.count, FRAGMENTS_A_STEP, (f) => fillMoments(model, centre, f, moments));
+  return moments;
+}
+
+/** Moments of so many fragments of which nothing is known. */
+export function emptyMoments(n: number): Moments {
   const unknown = (size: number) => new Float64Array(size).fill(Number.NaN);
-  const chargeSource: ChargeSource[] = [];
-  const dipoleSource: DipoleSource[] = [];
-  const moments = {
+  return {
     count: n,
     isAtom: new Uint8Array(n),
     centreA: unknown(3 * n),
     extentA: unknown(n),
     chargeE: unknown(n),
-    chargeSource,
+    chargeSource: new Array<ChargeSource>(n).fill('assumed'),
     dipoleEA: unknown(3 * n),
     dipoleNormEA: unknown(n),
-    dipoleSource,
+    dipoleSource: new Array<DipoleSource>(n).fill('none'),
     quadrupoleEA2: unknown(6 * n),
     columnDipoleEA: unknown(3 * n),
     columnChargeE: unknown(n),
     polarizabilityA3: unknown(n),
   };
-  for (let f = 0; f < n; f++) {
-    const members = fragments.members.subarray(fragments.starts[f]!, fragments.starts[f + 1]!);
-    const note = notes[f]!;
-    moments.polarizabilityA3[f] = note.polarizabilityA3 ?? Number.NaN;
+}
+
+/** Computes the moments of one fragment whose entries hold nothing yet. */
+export function fillMoments(model: FrameModel, centre: Centre, f: number, moments: Moments): void {
+  const { fragments, notes, usable } = model;
+  const members = fragments.members.subarray(fragments.starts[f]!, fragments.starts[f + 1]!);
+  const note = notes[f]!;
+  moments.polarizabilityA3[f] = note.polarizabilityA3 ?? Number.NaN;
+  if (usable[f]) {
     const place = placeFragment(model, members, centre);
-    if (usable[f]) {
-      moments.centreA.set(place.centre, 3 * f);
-      moments.extentA[f] = place.extent;
-      moments.isAtom[f] = place.isAtom ? 1 : 0;
-      addColumnMoments(model, members, place.centre, f, moments);
-    }
-    const charge = netCharge(model, members, note, moments.columnChargeE[f]!);
-    moments.chargeE[f] = charge.value;
-    chargeSource.push(charge.source);
-    dipoleSource.push(usable[f] ? chooseDipole(model, members, note, f, moments) : 'none');
-    // An atom without charges of its own beside it has no quadrupole about itself.
-    if (moments.isAtom[f] && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
-      moments.quadrupoleEA2.fill(0, 6 * f, 6 * f + 6);
-    }
+    moments.centreA.set(place.centre, 3 * f);
+    moments.extentA[f] = place.extent;
+    moments.isAtom[f] = place.isAtom ? 1 : 0;
+    addColumnMoments(model, members, place.centre, f, moments);
   }
-  return moments;
+  const charge = netCharge(model, members, note, moments.columnChargeE[f]!);
+  moments.chargeE[f] = charge.value;
+  moments.chargeSource[f] = charge.source;
+  moments.dipoleSource[f] = usable[f] ? chooseDipole(model, members, note, f, moments) : 'none';
+  // An atom without charges of its own beside it has no quadrupole about itself.
+  if (moments.isAtom[f] && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
+    moments.quadrupoleEA2.fill(0, 6 * f, 6 * f + 6);
+  }
+}
+
+/** Forgets what is known of one fragment. */
+export function clearMoments(moments: Moments, f: number): void {
+  moments.isAtom[f] = 0;
+  for (const [column, width] of momentColumns(moments)) column.fill(Number.NaN, width * f, width * (f + 1));
+}
+
+/** The columns of numbers, each with how many a fragment has. */
+export function momentColumns(moments: Moments): (readonly [Float64Array, number])[] {
+  return [
+    [moments.centreA, 3],
+    [moments.extentA, 1],
+    [moments.chargeE, 1],
+    [moments.dipoleEA, 3],
+    [moments.dipoleNormEA, 1],
+    [moments.quadrupoleEA2, 6],
+    [moments.columnDipoleEA, 3],
+    [moments.columnChargeE, 1],
+    [moments.polarizabilityA3, 1],
+  ];
 }
 
 /** Mass of an atom, u; 0 for ghosts and unknown elements. */

@@ -1,3 +1,4 @@
+import { inStrides, type Steps } from '../base/steps';
 import { AtomFlag } from '../formats/tree';
 import type { Cell } from '../model/cell';
 import type { FrameModel } from '../model/frame-model';
@@ -56,103 +57,96 @@ export interface System {
   readonly chains: ChainGraph;
 }
 
+/** Fragments laid out between two pauses. */
+const FRAGMENTS_A_STEP = 512;
+
 /** Lays out the fragments of one or two parts for pair work, and fits the charges that the reference energy needs. */
-export function buildSystem(parts: readonly Part[], settings: AnalysisSettings): System {
+export function* systemSteps(parts: readonly Part[], settings: AnalysisSettings): Steps<System> {
   const moments = parts.length === 1 ? parts[0]!.moments : joinMoments(parts.map((part) => part.moments));
-  const count = moments.count;
-  const atomCount = parts.reduce((sum, { model }) => sum + model.fragments.members.length, 0);
-  const starts = new Int32Array(count + 1);
-  const atomNumbers = new Int32Array(atomCount);
-  const element = new Uint8Array(atomCount);
-  const ghost = new Uint8Array(atomCount);
-  const localA = new Float64Array(3 * atomCount);
-  const columnE = new Float64Array(atomCount).fill(Number.NaN);
-  const usable = new Uint8Array(count);
-  let fragment = 0;
-  let at = 0;
-  let numberOffset = 0;
+  const system = emptySystem(parts, moments, settings);
+  let before = 0;
+  let atomsBefore = 0;
   for (const { model } of parts) {
-    const { atoms } = model.tree;
-    for (let f = 0; f < model.fragments.count; f++, fragment++) {
-      usable[fragment] = model.usable[f]!;
-      for (let k = model.fragments.starts[f]!; k < model.fragments.starts[f + 1]!; k++, at++) {
-        const atom = model.fragments.members[k]!;
-        atomNumbers[at] = atom + 1 + numberOffset;
-        element[at] = atoms.element[atom]!;
-        ghost[at] = atoms.flags[atom]! & AtomFlag.ghost ? 1 : 0;
-        if (atoms.chargeE !== null) columnE[at] = atoms.chargeE[atom]!;
-        for (let a = 0; a < 3; a++) {
-          localA[3 * at + a] = model.positionA[3 * atom + a]! - moments.centreA[3 * fragment + a]!;
-        }
-      }
-      starts[fragment + 1] = at;
+    for (let f = 0; f < model.fragments.count; f++) {
+      system.starts[before + f + 1] = atomsBefore + model.fragments.starts[f + 1]!;
     }
-    numberOffset += atoms.count;
+    const numberOffset = before === 0 ? 0 : parts[0]!.model.tree.atoms.count;
+    yield* inStrides(model.fragments.count, FRAGMENTS_A_STEP, (f) =>
+      layOut(system, model, f, before + f, numberOffset),
+    );
+    before += model.fragments.count;
+    atomsBefore += model.fragments.members.length;
   }
-  const flags = {
-    hasColumn: new Uint8Array(count),
-    ownCharges: new Uint8Array(count),
-    fitted: new Uint8Array(count),
-    featureless: new Uint8Array(count),
-    isIon: new Uint8Array(count),
-  };
-  const fittedE = columnE.slice();
-  for (let f = 0; f < count; f++) {
-    if (usable[f]) describeCharges(f, starts, localA, ghost, fittedE, moments, flags);
-  }
+  return system;
+}
+
+/** A system with room for all fragments of its parts, none of them laid out. */
+export function emptySystem(parts: readonly Part[], moments: Moments, settings: AnalysisSettings): System {
+  const { count } = moments;
+  const atomCount = parts.reduce((sum, { model }) => sum + model.fragments.members.length, 0);
   return {
     settings,
     kTKJPerMol: thermalEnergyKJPerMol(settings.temperatureK),
     couplingKJA: COULOMB_KJ_A_PER_MOL / settings.relativePermittivity,
     cell: parts[0]!.model.cell,
     count,
-    starts,
-    atomNumbers,
-    element,
-    ghost,
-    localA,
-    columnE,
-    fittedE,
+    starts: new Int32Array(count + 1),
+    atomNumbers: new Int32Array(atomCount),
+    element: new Uint8Array(atomCount),
+    ghost: new Uint8Array(atomCount),
+    localA: new Float64Array(3 * atomCount),
+    columnE: new Float64Array(atomCount),
+    fittedE: new Float64Array(atomCount),
     moments,
-    usable,
-    ...flags,
+    usable: new Uint8Array(count),
+    hasColumn: new Uint8Array(count),
+    ownCharges: new Uint8Array(count),
+    fitted: new Uint8Array(count),
+    featureless: new Uint8Array(count),
+    isIon: new Uint8Array(count),
     chains: new ChainGraph(parts.map((part) => part.model)),
   };
 }
 
-interface ChargeFlags {
-  readonly hasColumn: Uint8Array;
-  readonly ownCharges: Uint8Array;
-  readonly fitted: Uint8Array;
-  readonly featureless: Uint8Array;
-  readonly isIon: Uint8Array;
+/** Writes fragment `f` of a model into a system at `fragment`, where its atoms start already; what stood there is overwritten. */
+export function layOut(system: System, model: FrameModel, f: number, fragment: number, numberOffset: number): void {
+  const { atoms } = model.tree;
+  const { centreA } = system.moments;
+  let at = system.starts[fragment]!;
+  const begin = at;
+  for (let k = model.fragments.starts[f]!; k < model.fragments.starts[f + 1]!; k++, at++) {
+    const atom = model.fragments.members[k]!;
+    system.atomNumbers[at] = atom + 1 + numberOffset;
+    system.element[at] = atoms.element[atom]!;
+    system.ghost[at] = atoms.flags[atom]! & AtomFlag.ghost ? 1 : 0;
+    system.columnE[at] = atoms.chargeE === null ? Number.NaN : atoms.chargeE[atom]!;
+    system.fittedE[at] = system.columnE[at]!;
+    for (let a = 0; a < 3; a++) {
+      system.localA[3 * at + a] = model.positionA[3 * atom + a]! - centreA[3 * fragment + a]!;
+    }
+  }
+  system.usable[fragment] = model.usable[f]!;
+  const flags = [system.hasColumn, system.ownCharges, system.fitted, system.featureless, system.isIon];
+  for (const flag of flags) flag[fragment] = 0;
+  if (model.usable[f]) describeCharges(fragment, begin, at, system);
 }
 
-function describeCharges(
-  f: number,
-  starts: Int32Array,
-  localA: Float64Array,
-  ghost: Uint8Array,
-  fittedE: Float64Array,
-  moments: Moments,
-  flags: ChargeFlags,
-): void {
+function describeCharges(f: number, from: number, to: number, system: System): void {
+  const { localA, ghost, fittedE, moments } = system;
   const { chargeE, columnChargeE, columnDipoleEA, dipoleEA } = moments;
-  const from = starts[f]!;
-  const to = starts[f + 1]!;
   const hasColumn = !Number.isNaN(columnChargeE[f]!);
   const dipole: [number, number, number] = [dipoleEA[3 * f]!, dipoleEA[3 * f + 1]!, dipoleEA[3 * f + 2]!];
   const norm = Math.hypot(...dipole);
-  flags.hasColumn[f] = hasColumn ? 1 : 0;
-  flags.isIon[f] = Math.abs(chargeE[f]!) > ION_CHARGE_E ? 1 : 0;
+  system.hasColumn[f] = hasColumn ? 1 : 0;
+  system.isIon[f] = Math.abs(chargeE[f]!) > ION_CHARGE_E ? 1 : 0;
   // NaN compares as unknown, which tells as little as zero.
-  flags.featureless[f] = !moments.isAtom[f] && !hasColumn && !(norm >= ZERO_DIPOLE_EA) ? 1 : 0;
+  system.featureless[f] = !moments.isAtom[f] && !hasColumn && !(norm >= ZERO_DIPOLE_EA) ? 1 : 0;
   if (hasColumn) {
     const off = Math.hypot(...dipole.map((value, a) => value - columnDipoleEA[3 * f + a]!));
     const matches = off <= Math.max(OWN_SHARE * norm, OWN_DIPOLE_EA);
-    flags.ownCharges[f] = matches && Math.abs(chargeE[f]! - columnChargeE[f]!) <= OWN_CHARGE_E ? 1 : 0;
+    system.ownCharges[f] = matches && Math.abs(chargeE[f]! - columnChargeE[f]!) <= OWN_CHARGE_E ? 1 : 0;
   } else fittedE.fill(0, from, to);
-  if (Number.isNaN(norm) || flags.featureless[f]) return;
+  if (Number.isNaN(norm) || system.featureless[f]) return;
   // Ghosts are charge sites only where a charge column makes them so.
   const movable: number[] = [];
   for (let k = from; k < to; k++) if (!ghost[k] || hasColumn) movable.push(k);
@@ -164,7 +158,7 @@ function describeCharges(
   }
   if (!fitCharges(movable.length, positions, charges, chargeE[f]!, dipole, [0, 0, 0])) return;
   for (const [index, k] of movable.entries()) fittedE[k] = charges[index]!;
-  flags.fitted[f] = 1;
+  system.fitted[f] = 1;
 }
 
 function joinMoments(all: readonly Moments[]): Moments {

@@ -1,7 +1,8 @@
-import { computeMoments } from '../analysis/moments';
+import { momentSteps } from '../analysis/moments';
 import type { AnalysisRequest } from '../analysis/settings';
 import type { Part } from '../analysis/system';
 import { FindingCollector } from '../base/finding';
+import { finish } from '../base/steps';
 import { buildFrameModel } from '../model/frame-model';
 import { readCoordinates, UsageError } from './input';
 
@@ -11,5 +12,5 @@ export async function readCompanion(name: string, request: AnalysisRequest): Pro
   const tree = file.frames[0];
   if (tree === undefined) throw new UsageError(`${name}: holds no frame`);
   const model = buildFrameModel(file, tree, null, false, new FindingCollector());
-  return { model, moments: computeMoments(model, request.settings.centre) };
+  return { model, moments: finish(momentSteps(model, request.settings.centre)) };
 }

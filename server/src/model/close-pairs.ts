@@ -1,3 +1,4 @@
+import { finish, inStrides, type Steps } from '../base/steps';
 import { AtomFlag, type AtomTable } from '../formats/tree';
 import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, MAX_ATOMIC_NUMBER, VDW_RADIUS_A } from '../physics/elements';
 import type { Cell } from './cell';
@@ -67,44 +68,107 @@ export function solidAtoms(atoms: AtomTable): Int32Array {
   return solid.subarray(0, count);
 }
 
+/** Atoms looked at between two pauses. */
+const ATOMS_A_STEP = 2048;
+
 /**
  * Finds the close pairs of a frame with cells, and decides which are bonds: d ≤ c_i + c_j + 0.4 Å between non-metals
  * (c: Cordero 2008), + 0.3 Å between a non-metal and a metal outside groups 1 and 2, which are never bonded by distance. A hydrogen
  * keeps its nearest neighbour alone, unless two N, O or F neighbours lie within 10 % of each other (shared proton).
  */
 export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): ClosePairs {
+  return finish(closePairSteps(atoms, positionA, cell));
+}
+
+/** The same with pauses. */
+export function* closePairSteps(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): Steps<ClosePairs> {
+  const grid = closePairGrid(atoms, positionA, cell);
+  yield;
+  if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
+  const list = new ClosePairList(atoms.count + (atoms.count >> 1));
+  const search = new ClosePairSearch(atoms, grid);
+  const solid = solidAtoms(atoms);
+  yield* inStrides(solid.length, ATOMS_A_STEP, (s) => search.addPartners(solid[s]!, true, list));
+  const pairs = list.build();
+  yield;
+  markBonds(atoms, pairs);
+  return pairs;
+}
+
+/** The solid atoms of a frame in cells as wide as its elements need. */
+export function closePairGrid(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): PointGrid {
   const solid = solidAtoms(atoms);
   const isPresent = new Uint8Array(SIZE);
   for (let k = 0; k < solid.length; k++) isPresent[atoms.element[solid[k]!]!] = 1;
   const present = [...isPresent.keys()].filter((z) => isPresent[z] === 1);
   let radius = 0.1;
   for (const z1 of present) for (const z2 of present) radius = Math.max(radius, CLOSE_LIMITS_A[SIZE * z1 + z2]!);
-  const grid = new PointGrid(positionA, solid, radius, cell);
-  if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
-  const { element } = atoms;
-  let room = Math.max(64, solid.length + (solid.length >> 1));
-  let first = new Int32Array(room);
-  let second = new Int32Array(room);
-  let distanceA = new Float64Array(room);
-  let count = 0;
-  const buffer = new NeighbourBuffer();
-  for (let s = 0; s < solid.length; s++) {
-    const i = solid[s]!;
-    grid.gather(i, radius, true, buffer);
-    if (count + buffer.count > room) {
-      room = 2 * room + buffer.count;
-      first = extended(first, new Int32Array(room));
-      second = extended(second, new Int32Array(room));
-      distanceA = extended(distanceA, new Float64Array(room));
-    }
-    const begin = count;
+  return new PointGrid(positionA, solid, radius, cell);
+}
+
+/** Close pairs as they are found, in columns that grow. */
+export class ClosePairList {
+  count = 0;
+  first: Int32Array;
+  second: Int32Array;
+  distanceA: Float64Array;
+
+  constructor(room: number) {
+    this.first = new Int32Array(Math.max(64, room));
+    this.second = new Int32Array(this.first.length);
+    this.distanceA = new Float64Array(this.first.length);
+  }
+
+  reserve(more: number): void {
+    if (this.count + more <= this.first.length) return;
+    const room = 2 * this.first.length + more;
+    this.first = extended(this.first, new Int32Array(room));
+    this.second = extended(this.second, new Int32Array(room));
+    this.distanceA = extended(this.distanceA, new Float64Array(room));
+  }
+
+  /** The list as it stands; which pairs are bonds is not decided yet. */
+  build(): ClosePairs {
+    const { count } = this;
+    return {
+      count,
+      first: this.first.slice(0, count),
+      second: this.second.slice(0, count),
+      distanceA: this.distanceA.slice(0, count),
+      bonded: new Uint8Array(count),
+      tooDense: false,
+    };
+  }
+}
+
+/** Finds the close partners of single atoms. */
+export class ClosePairSearch {
+  readonly #element: Uint8Array;
+  readonly #grid: PointGrid;
+  readonly #buffer = new NeighbourBuffer();
+
+  constructor(atoms: AtomTable, grid: PointGrid) {
+    this.#element = atoms.element;
+    this.#grid = grid;
+  }
+
+  /** Adds the partners of an atom to the end of a list, in order of their number; with `onlyAfter`, those of a larger number alone. */
+  addPartners(i: number, onlyAfter: boolean, list: ClosePairList): void {
+    const buffer = this.#buffer;
+    const element = this.#element;
+    this.#grid.gather(i, this.#grid.radiusA, onlyAfter, buffer);
+    list.reserve(buffer.count);
     const { index, vectorA } = buffer;
+    const { first, second, distanceA } = list;
+    const begin = list.count;
+    let count = begin;
+    const row = SIZE * element[i]!;
     for (let k = 0; k < buffer.count; k++) {
       const j = index[k]!;
       const x = vectorA[3 * k]!;
       const y = vectorA[3 * k + 1]!;
       const z = vectorA[3 * k + 2]!;
-      const elements = SIZE * element[i]! + element[j]!;
+      const elements = row + element[j]!;
       if (x * x + y * y + z * z > SURELY_BEYOND_A2[elements]!) continue;
       const d = Math.hypot(x, y, z);
       if (d > CLOSE_LIMITS_A[elements]!) continue;
@@ -119,17 +183,8 @@ export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: 
       distanceA[at] = d;
       first[count++] = i;
     }
+    list.count = count;
   }
-  const pairs = {
-    count,
-    first: first.slice(0, count),
-    second: second.slice(0, count),
-    distanceA: distanceA.slice(0, count),
-    bonded: new Uint8Array(count),
-    tooDense: false,
-  };
-  markBonds(atoms, pairs);
-  return pairs;
 }
 
 function extended<T extends Int32Array | Float64Array>(from: T, to: T): T {
@@ -146,7 +201,8 @@ const NO_PAIRS: ClosePairs = {
   tooDense: false,
 };
 
-function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
+/** Decides which close pairs are bonds. */
+export function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
   const { element } = atoms;
   const nearest = new Int32Array(atoms.count).fill(-1);
   const nearestA = new Float64Array(atoms.count).fill(Number.POSITIVE_INFINITY);

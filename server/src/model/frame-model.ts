@@ -1,14 +1,15 @@
 import type { FindingCollector } from '../base/finding';
+import { finish, inStrides, type Steps } from '../base/steps';
 import { AtomFlag, type CoordinateTree, type FrameTree } from '../formats/tree';
 import { annotatePdb } from './annotate-pdb';
 import { annotateXyz } from './annotate-xyz';
 import { type FragmentNotes, type FrameNotes, ValueReader } from './annotation';
 import { type Cell, createCell } from './cell';
-import { type ClosePairs, findClosePairs } from './close-pairs';
+import { type ClosePairs, closePairSteps } from './close-pairs';
 import { hillFormula } from './formula';
 import { atomsOf, type FragmentSet } from './fragment-set';
 import { chainBonds, formFragments } from './perceive';
-import { makeWhole } from './whole';
+import { wholeSteps } from './whole';
 
 /** A frame understood: its fragments, what the file says of them, and the atoms put side by side. */
 export interface FrameModel {
@@ -39,6 +40,9 @@ export interface FirstFrame {
   readonly fragments: FragmentSet | null;
 }
 
+/** Fragments looked at between two pauses. */
+const FRAGMENTS_A_STEP = 1024;
+
 /** Understands one frame. `periodic` switches on a cell that the format by itself does not use. */
 export function buildFrameModel(
   file: CoordinateTree,
@@ -47,36 +51,58 @@ export function buildFrameModel(
   periodic: boolean,
   problems: FindingCollector,
 ): FrameModel {
+  return finish(frameModelSteps(file, tree, first, periodic, problems));
+}
+
+/** The same with pauses. */
+export function* frameModelSteps(
+  file: CoordinateTree,
+  tree: FrameTree,
+  first: FirstFrame | null,
+  periodic: boolean,
+  problems: FindingCollector,
+): Steps<FrameModel> {
   const { text } = file;
   const reader = new ValueReader(text, problems);
   const fileEntries = file.remarks.filter((remark) => remark.selector === null).flatMap((remark) => remark.entries);
   const frameNotes = reader.frameNotes([...tree.entries, ...fileEntries]);
   const cell = usableCell(file, tree, periodic || frameNotes.periodic === true, problems);
-  const pairs = findClosePairs(tree.atoms, tree.atoms.positionA, cell);
+  const pairs = yield* closePairSteps(tree.atoms, tree.atoms.positionA, cell);
+  yield;
   const heir = first !== null && sameElements(first.tree, tree) ? first : null;
   const fragments = pairs.tooDense
     ? noFragments(tree.atoms.count)
     : formFragments(text, tree, pairs, cell, heir?.fragments ?? null, problems);
-  const formulas = Array.from({ length: fragments.count }, (_, f) => hillFormula(tree.atoms, atomsOf(fragments, f)));
+  yield;
+  const formulas: string[] = [];
+  yield* inStrides(fragments.count, FRAGMENTS_A_STEP, (f) => {
+    formulas.push(hillFormula(tree.atoms, atomsOf(fragments, f)));
+  });
   // Without fragments the lists of the annotation have nothing to fit.
   const notes = pairs.tooDense
     ? []
     : file.language === 'pdb'
       ? annotatePdb(text, tree, fragments, file.remarks, problems)
       : annotateXyz(text, tree, fragments, formulas, heir?.tree ?? null, problems);
-  const { positionA, endless } = makeWhole(tree.atoms, fragments, pairs, cell);
-  const usable = Uint8Array.from({ length: fragments.count }, (_, f) =>
-    endless[f] || hasHoles(tree, fragments, f) ? 0 : 1,
-  );
-  const residueNames = Array.from({ length: fragments.count }, (_, f) => residueName(tree, fragments, f));
+  yield;
+  const { positionA, endless } = yield* wholeSteps(tree.atoms, fragments, pairs, cell);
+  const usable = new Uint8Array(fragments.count);
+  const names: string[] = [];
+  const labels: string[] = [];
+  yield* inStrides(fragments.count, FRAGMENTS_A_STEP, (f) => {
+    usable[f] = endless[f] || hasHoles(tree, fragments, f) ? 0 : 1;
+    const residue = residueName(tree, fragments, f);
+    names.push(notes[f]!.name ?? residue?.name ?? formulas[f]!);
+    labels.push(residue?.label ?? '');
+  });
   return {
     tree,
     cell,
     pairs,
     fragments,
     formulas,
-    names: notes.map((note, f) => note.name ?? residueNames[f]?.name ?? formulas[f]!),
-    labels: residueNames.map((residue) => residue?.label ?? ''),
+    names,
+    labels,
     notes,
     frameNotes,
     positionA,

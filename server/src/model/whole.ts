@@ -1,3 +1,4 @@
+import { inStrides, type Steps } from '../base/steps';
 import { AtomFlag, type AtomTable } from '../formats/tree';
 import { type Cell, imageResult, minimumImage } from './cell';
 import { bondLimitA, type ClosePairs } from './close-pairs';
@@ -17,60 +18,106 @@ const LONGEST_BOND_A = 4;
 /** Fragments up to this size place an unbonded member beside its nearest placed one; larger ones beside the first. */
 const NEAREST_SEARCH_LIMIT = 200;
 
+/** Fragments placed between two pauses. */
+const FRAGMENTS_A_STEP = 1024;
+
 /**
  * Moves the atoms of each fragment by whole cell vectors so that bonded atoms stand side by side, starting from its first atom as
  * written. A member that no bond reaches goes to its image nearest to the members placed so far.
  */
-export function makeWhole(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, cell: Cell | null): WholePositions {
+export function* wholeSteps(
+  atoms: AtomTable,
+  set: FragmentSet,
+  pairs: ClosePairs,
+  cell: Cell | null,
+): Steps<WholePositions> {
   const endless = new Uint8Array(set.count);
   if (cell === null) return { positionA: atoms.positionA, endless };
-  const positionA = atoms.positionA.slice();
-  const neighbours = bondLists(atoms.count, set, pairs);
-  const placed = new Uint8Array(atoms.count);
-  const image = imageResult();
-  const placeBeside = (atom: number, beside: number) => {
-    const difference = [0, 1, 2].map((a) => atoms.positionA[3 * atom + a]! - positionA[3 * beside + a]!);
-    minimumImage(cell, difference[0]!, difference[1]!, difference[2]!, image);
-    for (let a = 0; a < 3; a++) positionA[3 * atom + a] = positionA[3 * beside + a]! + image.vectorA[a]!;
-    placed[atom] = 1;
-  };
-  const isPlaceable = (atom: number) => (atoms.flags[atom]! & AtomFlag.noPosition) === 0;
-  markSelfBonded(atoms, set, pairs, cell, endless);
-  for (let f = 0; f < set.count; f++) {
-    const members = set.members.subarray(set.starts[f]!, set.starts[f + 1]!);
+  const whole = { positionA: atoms.positionA.slice(), endless };
+  const placer = new WholePlacer(atoms, set, pairs, cell, whole);
+  yield;
+  if (isNarrow(cell)) markSelfBonded(atoms, set, pairs, cell, endless);
+  yield* inStrides(set.count, FRAGMENTS_A_STEP, (f) => placer.place(f));
+  return whole;
+}
+
+/** Makes single fragments whole, into positions and marks that are there already. */
+export class WholePlacer {
+  readonly #atoms: AtomTable;
+  readonly #set: FragmentSet;
+  readonly #cell: Cell;
+  readonly #whole: WholePositions;
+  readonly #bonds: { readonly starts: Int32Array; readonly partners: Int32Array };
+  readonly #placed: Uint8Array;
+  readonly #image = imageResult();
+
+  constructor(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, cell: Cell, whole: WholePositions) {
+    this.#atoms = atoms;
+    this.#set = set;
+    this.#cell = cell;
+    this.#whole = whole;
+    this.#bonds = bondLists(atoms.count, set, pairs);
+    this.#placed = new Uint8Array(atoms.count);
+  }
+
+  /** Places the atoms of a fragment, each of which belongs to it alone. */
+  place(f: number): void {
+    const { starts: memberStarts, members } = this.#set;
+    const { starts, partners } = this.#bonds;
+    const placed = this.#placed;
+    const from = memberStarts[f]!;
+    const to = memberStarts[f + 1]!;
     const order: number[] = [];
-    for (const start of members) {
-      if (placed[start] || !isPlaceable(start)) continue;
+    for (let k = from; k < to; k++) {
+      const start = members[k]!;
+      if (placed[start] || (this.#atoms.flags[start]! & AtomFlag.noPosition) !== 0) continue;
       if (order.length > 0) {
-        placeBeside(start, members.length <= NEAREST_SEARCH_LIMIT ? nearest(start, order) : order[0]!);
+        this.#putBeside(start, to - from <= NEAREST_SEARCH_LIMIT ? this.#nearest(start, order) : order[0]!);
       }
       placed[start] = 1;
-      const queue = [start];
       order.push(start);
-      for (let at = 0; at < queue.length; at++) {
-        const atom = queue[at]!;
-        for (let k = neighbours.starts[atom]!; k < neighbours.starts[atom + 1]!; k++) {
-          const other = neighbours.partners[k]!;
+      for (let at = order.length - 1; at < order.length; at++) {
+        const atom = order[at]!;
+        for (let n = starts[atom]!; n < starts[atom + 1]!; n++) {
+          const other = partners[n]!;
           if (placed[other]) {
-            if (isFarFromBonded(atom, other)) endless[f] = 1;
+            if (this.#isFarFromBonded(atom, other)) this.#whole.endless[f] = 1;
             continue;
           }
-          placeBeside(other, atom);
-          queue.push(other);
+          this.#putBeside(other, atom);
+          placed[other] = 1;
           order.push(other);
         }
       }
     }
   }
-  return { positionA, endless };
 
-  function nearest(atom: number, order: readonly number[]): number {
+  #putBeside(atom: number, beside: number): void {
+    const { positionA } = this.#whole;
+    this.#difference(this.#atoms.positionA, atom, beside);
+    const { vectorA } = this.#image;
+    for (let a = 0; a < 3; a++) positionA[3 * atom + a] = positionA[3 * beside + a]! + vectorA[a]!;
+  }
+
+  /** Leaves the shortest difference between an atom (of given positions) and a placed one. */
+  #difference(positionA: Float64Array, atom: number, from: number): void {
+    const placed = this.#whole.positionA;
+    minimumImage(
+      this.#cell,
+      positionA[3 * atom]! - placed[3 * from]!,
+      positionA[3 * atom + 1]! - placed[3 * from + 1]!,
+      positionA[3 * atom + 2]! - placed[3 * from + 2]!,
+      this.#image,
+    );
+  }
+
+  #nearest(atom: number, order: readonly number[]): number {
     let best = order[0]!;
     let best2 = Number.POSITIVE_INFINITY;
     for (const other of order) {
-      const d = [0, 1, 2].map((a) => atoms.positionA[3 * atom + a]! - positionA[3 * other + a]!);
-      minimumImage(cell!, d[0]!, d[1]!, d[2]!, image);
-      const length2 = image.vectorA[0]! ** 2 + image.vectorA[1]! ** 2 + image.vectorA[2]! ** 2;
+      this.#difference(this.#atoms.positionA, atom, other);
+      const [x, y, z] = this.#image.vectorA as unknown as [number, number, number];
+      const length2 = x * x + y * y + z * z;
       if (length2 < best2) {
         best2 = length2;
         best = other;
@@ -79,19 +126,25 @@ export function makeWhole(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs,
     return best;
   }
 
-  function isFarFromBonded(atom: number, other: number): boolean {
-    const d = [0, 1, 2].map((a) => positionA[3 * other + a]! - positionA[3 * atom + a]!);
-    minimumImage(cell!, d[0]!, d[1]!, d[2]!, image);
-    return Math.hypot(...d) > Math.hypot(...image.vectorA) + IMAGE_STEP_A;
+  #isFarFromBonded(atom: number, other: number): boolean {
+    const { positionA } = this.#whole;
+    const x = positionA[3 * other]! - positionA[3 * atom]!;
+    const y = positionA[3 * other + 1]! - positionA[3 * atom + 1]!;
+    const z = positionA[3 * other + 2]! - positionA[3 * atom + 2]!;
+    if (x * x + y * y + z * z <= this.#cell.safeRadius2) return false;
+    this.#difference(positionA, other, atom);
+    const { vectorA } = this.#image;
+    return Math.hypot(x, y, z) > Math.hypot(vectorA[0]!, vectorA[1]!, vectorA[2]!) + IMAGE_STEP_A;
   }
 }
 
-/**
- * Marks fragments in a cell so narrow that an atom is bonded to its own image, or to two images of one neighbour: the list of close
- * pairs holds only the nearest image, so no ring of bonds would show it.
- */
-function markSelfBonded(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, cell: Cell, endless: Uint8Array): void {
-  const { reducedA, periodic } = cell;
+/** Whether a cell is so narrow that an atom may be bonded to its own image, or to two images of a neighbour. */
+export function isNarrow(cell: Cell): boolean {
+  return shortSteps(cell).length > 0;
+}
+
+/** The shifts between images that are short enough for bonds across them. */
+function shortSteps({ reducedA, periodic }: Cell): (readonly [number, number, number])[] {
   const steps: (readonly [number, number, number])[] = [];
   for (const i of periodic[0] ? [-1, 0, 1] : [0]) {
     for (const j of periodic[1] ? [-1, 0, 1] : [0]) {
@@ -102,7 +155,15 @@ function markSelfBonded(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, c
       }
     }
   }
-  if (steps.length === 0) return;
+  return steps;
+}
+
+/**
+ * Marks fragments in a cell so narrow that an atom is bonded to its own image, or to two images of one neighbour: the list of close
+ * pairs holds only the nearest image, so no ring of bonds would show it.
+ */
+function markSelfBonded(atoms: AtomTable, set: FragmentSet, pairs: ClosePairs, cell: Cell, endless: Uint8Array): void {
+  const steps = shortSteps(cell);
   const bonds = (z1: number, z2: number, x: number, y: number, z: number) => Math.hypot(x, y, z) <= bondLimitA(z1, z2);
   const image = imageResult();
   for (let i = 0; i < atoms.count; i++) {
