@@ -8,7 +8,8 @@ import { FindingCollector } from '../../server/src/base/finding';
 import type { CoordinateTree } from '../../server/src/formats/tree';
 import { parseXyz } from '../../server/src/formats/xyz/parse';
 import { buildFrameModel, type FrameModel } from '../../server/src/model/frame-model';
-import { NeighbourBuffer, PointGrid } from '../../server/src/model/point-grid';
+import { NeighbourBuffer } from '../../server/src/model/neighbour-buffer';
+import { PointGrid } from '../../server/src/model/point-grid';
 import { VDW_RADIUS_A } from '../../server/src/physics/elements';
 import { dipoleDipole } from '../../server/src/physics/multipole-energies';
 import { snapshotOf } from '../../server/src/text/snapshot';
@@ -27,7 +28,8 @@ export function pairCases(box: WaterBox, folder: string): Case[] {
   const text = box.xyz
     .replace('water', 'Properties=species:S:1:pos:R:3:charge:R:1')
     .replace(/^([OH]) .*$/gm, (line, symbol) => `${line} ${symbol === 'O' ? '-0.834' : '0.417'}`);
-  const { system } = new FileAnalysis(parseXyz(snapshotOf(text)), DEFAULT_REQUEST).frame(0);
+  const frame = new FileAnalysis(parseXyz(snapshotOf(text)), DEFAULT_REQUEST).frame(0);
+  const { system } = frame;
   const pairs = pairsWithin(system);
   const { centreA, dipoleEA } = system.moments;
   const files = {
@@ -66,7 +68,7 @@ export function pairCases(box: WaterBox, folder: string): Case[] {
       name: 'whole pair list',
       ours: () => {
         let count = 0;
-        for (const pair of pairsOf(system)) count += pair.first < pair.second ? 1 : 0;
+        for (const pair of pairsOf(frame)) count += pair.first < pair.second ? 1 : 0;
         return count;
       },
       sum: number,

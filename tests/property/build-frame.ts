@@ -67,7 +67,7 @@ export function analyse(text: string, settings: Partial<AnalysisSettings> = {}, 
   const tree = parse(snapshotOf(text), language);
   const request = { ...DEFAULT_REQUEST, settings: { ...DEFAULT_SETTINGS, ...settings } };
   const frame = new FileAnalysis(tree, request).frame(0);
-  const pairs = [...pairsOf(frame.system)];
+  const pairs = [...pairsOf(frame)];
   let records: PairRecord[] | undefined;
   return {
     frame,

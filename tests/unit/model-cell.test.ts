@@ -1,6 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { type Cell, createCell, imageResult, minimumImage } from '../../server/src/model/cell';
-import { NeighbourBuffer, PointGrid } from '../../server/src/model/point-grid';
+import { NeighbourBuffer } from '../../server/src/model/neighbour-buffer';
+import { PointGrid } from '../../server/src/model/point-grid';
 import { add, dot, randomDirection, scaled, seeded, type Vector } from '../property/build-frame';
 
 /** The geometry of periodic cells against a search over every image. */

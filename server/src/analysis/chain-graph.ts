@@ -38,6 +38,16 @@ export class ChainGraph {
     return this.#partners.get(f)?.has(g) ?? false;
   }
 
+  /** Whether fragment `f` has the partners of fragment `g` of another graph, whose fragments are numbered on by `g − f`. */
+  hasSamePartners(f: number, other: ChainGraph, g: number): boolean {
+    const own = this.#partners.get(f);
+    const others = other.#partners.get(g);
+    if (own === undefined || others === undefined) return own === others;
+    if (own.size !== others.size) return false;
+    for (const partner of own) if (!others.has(partner + g - f)) return false;
+    return true;
+  }
+
   /** Whether a fragment is cut from a chain. */
   isCut(f: number): boolean {
     return this.#partners.has(f);

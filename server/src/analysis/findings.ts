@@ -38,7 +38,7 @@ export class FileFindings {
   *pairsOfFrame(frame: FrameAnalysis): Generator<Pair> {
     const context = this.#begin(frame);
     const notes = new PairNotes();
-    for (const pair of pairsOf(frame.system)) {
+    for (const pair of pairsOf(frame)) {
       const kind = noteOf(frame.system, pair);
       if (kind !== NoteKind.none) notes.add(pair.first, pair.second, kind, pair.strengthKJPerMol);
       yield pair;

@@ -15,6 +15,7 @@ export interface FrameAnalysis {
   readonly moments: Moments;
   readonly settings: AnalysisSettings;
   readonly system: System;
+  readonly partners: Partners;
   /** Problems met while understanding the frame (annotation, cell, fragments). */
   readonly problems: FindingCollector;
 }
@@ -48,7 +49,8 @@ export class FileAnalysis {
     const moments = yield* momentSteps(model, settings.centre);
     const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
     const system = yield* systemSteps(parts, settings);
-    return { index, model, moments, settings, system, problems };
+    const partners = new Partners(system);
+    return { index, model, moments, settings, system, partners, problems };
   }
 
   *#firstSteps(): Steps<FirstFrame> {
@@ -70,8 +72,7 @@ function settingsOf({ forced, settings }: AnalysisRequest, { frameNotes }: Frame
 }
 
 /** Every pair of the list, in order of first and second fragment. */
-export function* pairsOf(system: System): Generator<Pair> {
-  const partners = new Partners(system);
+export function* pairsOf({ system, partners }: Pick<FrameAnalysis, 'system' | 'partners'>): Generator<Pair> {
   for (let f = 0; f < system.count; f++) {
     for (const g of partners.of(f, true)) {
       const pair = evaluatePair(system, f, g);

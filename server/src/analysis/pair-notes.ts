@@ -51,6 +51,21 @@ export class PairNotes {
     }
   }
 
+  /** The same notes in order of first and second fragment. */
+  sorted(): PairNotes {
+    const { first, second } = this;
+    const order = Array.from({ length: this.count }, (_, k) => k);
+    order.sort((a, b) => first[a]! - first[b]! || second[a]! - second[b]!);
+    const sorted = new PairNotes();
+    for (const k of order) sorted.take(this, k);
+    return sorted;
+  }
+
+  /** Adds note `k` of another list. */
+  take(from: PairNotes, k: number): void {
+    this.add(from.first[k]!, from.second[k]!, from.kind[k] as NoteKind, from.strengthKJPerMol[k]!);
+  }
+
   #grow(): void {
     const room = 2 * this.first.length;
     const longer = <T extends Int32Array | Uint8Array | Float64Array>(from: T, to: T): T => {
@@ -62,4 +77,29 @@ export class PairNotes {
     this.kind = longer(this.kind, new Uint8Array(room));
     this.strengthKJPerMol = longer(this.strengthKJPerMol, new Float64Array(room));
   }
+}
+
+/** The notes of pairs whose fragments both stay, under their new numbers (−1: gone; ascending among those that stay). */
+export function keptNotes(notes: PairNotes, newOf: Int32Array): PairNotes {
+  const kept = new PairNotes();
+  for (let k = 0; k < notes.count; k++) {
+    const first = newOf[notes.first[k]!]!;
+    const second = newOf[notes.second[k]!]!;
+    if (first < 0 || second < 0) continue;
+    kept.add(first, second, notes.kind[k] as NoteKind, notes.strengthKJPerMol[k]!);
+  }
+  return kept;
+}
+
+/** Two ordered lists without a pair in common, as one ordered list. */
+export function mergedNotes(a: PairNotes, b: PairNotes): PairNotes {
+  if (b.count === 0) return a;
+  const merged = new PairNotes();
+  let [i, j] = [0, 0];
+  while (i < a.count || j < b.count) {
+    const takesA = j === b.count || (i < a.count && (a.first[i]! - b.first[j]! || a.second[i]! - b.second[j]!) < 0);
+    if (takesA) merged.take(a, i++);
+    else merged.take(b, j++);
+  }
+  return merged;
 }

@@ -1,4 +1,5 @@
-import { NeighbourBuffer, PointGrid } from '../model/point-grid';
+import { NeighbourBuffer } from '../model/neighbour-buffer';
+import { PointGrid } from '../model/point-grid';
 import type { System } from './system';
 
 /** Two ions belong to the list up to this many cutoffs. */
@@ -14,6 +15,13 @@ const ROUNDING = 1 + 1e-9;
 interface Tier {
   readonly grid: PointGrid;
   readonly largestA: number;
+}
+
+/** Where a fragment was, and what it was, before it moved. */
+export interface PlaceBefore {
+  readonly centreA: readonly [number, number, number];
+  readonly usable: number;
+  readonly isIon: number;
 }
 
 /** Finds the partners of each fragment within the cutoff with cells, whatever the mixture of sizes. */
@@ -35,6 +43,28 @@ export class Partners {
       all.filter((f) => system.isIon[f] === 1),
       ION_CUTOFFS * reach,
     );
+  }
+
+  /**
+   * Takes note that a fragment, whose moments are written anew, was at another place before. Returns false where partners must be searched
+   * for with a new object.
+   */
+  follow(f: number, before: PlaceBefore): boolean {
+    const { usable, isIon, moments } = this.#system;
+    if (usable[f] !== before.usable || isIon[f] !== before.isIon) return false;
+    if (!usable[f]) return true;
+    const { centreA, extentA } = moments;
+    const now = [centreA[3 * f]!, centreA[3 * f + 1]!, centreA[3 * f + 2]!] as const;
+    const tiers = [this.#tiers, ...(isIon[f] ? [this.#ionTiers] : [])].map((all) => {
+      centreA.set(before.centreA, 3 * f);
+      return all.find(({ grid, largestA }) => extentA[f]! <= largestA && grid.canMove(f, ...now));
+    });
+    for (const tier of tiers) {
+      centreA.set(before.centreA, 3 * f);
+      tier?.grid.move(f, ...now);
+    }
+    centreA.set(now, 3 * f);
+    return !tiers.includes(undefined);
   }
 
   /** The partners of a fragment, ascending; with `onlyAfter` those of a larger number alone. */

@@ -1,7 +1,7 @@
 import { FileFindings } from '../analysis/findings';
 import { FileAnalysis } from '../analysis/frame-analysis';
 import type { AnalysisRequest } from '../analysis/settings';
-import { surveyPairs } from '../analysis/survey';
+import { surveySteps } from '../analysis/survey';
 import type { Part } from '../analysis/system';
 import { SEVERITIES, type Severity } from '../base/catalogue';
 import { type FindingRecord, findingRecord } from '../features/records';
@@ -80,7 +80,7 @@ async function reportOf(
   for (let index = 0; index < file.frames.length; index++) {
     const progress = () => `${name}: frame ${index + 1} of ${file.frames.length}`;
     const frame = analysis.frame(index);
-    const survey = surveyPairs(frame.system);
+    const survey = surveySteps(frame.system, frame.partners);
     let step = survey.next();
     for (; !step.done; step = survey.next()) {
       const turn = pacer.pause(progress);

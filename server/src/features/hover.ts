@@ -2,10 +2,12 @@ import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { pairsOf } from '../analysis/frame-analysis';
 import type { Pair } from '../analysis/pair';
 import { evaluatePair } from '../analysis/pair';
-import { isWithinCutoff, Partners } from '../analysis/partners';
+import { isWithinCutoff } from '../analysis/partners';
 import { ZERO_DIPOLE_EA } from '../analysis/settings';
 import type { Span } from '../base/span';
+import type { Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
+import { atomAtLine } from '../formats/reread';
 import type { CoordinateTree, FrameTree } from '../formats/tree';
 import { KEY_DOCS } from './key-docs';
 import { type FragmentName, type FragmentRecord, fragmentRecord, type PairRecord, pairRecord } from './records';
@@ -63,6 +65,8 @@ export type HoverData =
 const MOST_PARTNERS = 5;
 /** A frame with more pairs is not summed up in a hover. */
 const MOST_PAIRS = 200000;
+/** Pairs looked at between two pauses. */
+const PAIRS_A_STEP = 512;
 
 /** The frame that holds a line, or `undefined` between frames. */
 export function frameAtLine(file: CoordinateTree, line: number): FrameTree | undefined {
@@ -78,25 +82,30 @@ export function frameAtLine(file: CoordinateTree, line: number): FrameTree | und
   return undefined;
 }
 
-/** What to show at an offset, or `null` where there is nothing to say. `frameOf` analyses a frame (from 0) or finds it analysed. */
-export function hoverAt(
+/** The frame (from 0) that a hover at an offset speaks of, −1 where it speaks of none. */
+export function frameIndexAt(file: CoordinateTree, offset: number): number {
+  const line = file.lines.lineAt(offset);
+  const tree = frameAtLine(file, line);
+  if (tree !== undefined) return tree.index;
+  // A REMARK stands before the models; the first of them shows what it does.
+  return file.frames.length > 0 && file.remarks.some((remark) => remark.line === line) ? 0 : -1;
+}
+
+/** What to show at an offset, or `null` where there is nothing to say. `frame` is the one of {@link frameIndexAt}, `null` for none. */
+export function* hoverSteps(
   file: CoordinateTree,
   offset: number,
-  frameOf: (index: number) => FrameAnalysis,
-): HoverData | null {
+  frame: FrameAnalysis | null,
+): Steps<HoverData | null> {
   const line = file.lines.lineAt(offset);
   const tree = frameAtLine(file, line);
   const onLine = file.remarks.filter((remark) => remark.line === line).flatMap((remark) => remark.entries);
   const key = keyAt([...(tree?.entries ?? []), ...onLine], offset);
-  if (key !== null) {
-    // A REMARK stands before the models; the first of them shows what it does.
-    const frame = tree ?? file.frames[0];
-    return frame === undefined ? key : (dipoleAt(frameOf(frame.index), key, offset) ?? key);
-  }
-  if (tree === undefined) return null;
+  if (key !== null) return frame === null ? key : (dipoleAt(frame, key, offset) ?? key);
+  if (tree === undefined || frame === null) return null;
   const atom = atomAtLine(tree, line);
-  if (atom >= 0) return fragmentHover(frameOf(tree.index), atom);
-  if (line === tree.headLine || line === tree.firstLine) return frameHover(file, frameOf(tree.index), line);
+  if (atom >= 0) return fragmentHover(frame, atom);
+  if (line === tree.headLine || line === tree.firstLine) return yield* frameHover(file, frame, line);
   return null;
 }
 
@@ -142,20 +151,6 @@ function keyAt(entries: readonly Entry[], offset: number): KeyHover | null {
   return { kind: 'key', span: { start: entry.keySpan.start, end: entry.value.end }, key: entry.key, text };
 }
 
-/** Index of the atom on a line, or −1. Lines of atoms ascend. */
-export function atomAtLine(tree: FrameTree, line: number): number {
-  const lines = tree.atoms.line;
-  let low = 0;
-  let high = lines.length - 1;
-  while (low <= high) {
-    const middle = (low + high) >> 1;
-    if (lines[middle]! < line) low = middle + 1;
-    else if (lines[middle]! > line) high = middle - 1;
-    else return middle;
-  }
-  return -1;
-}
-
 function namesOf(frame: FrameAnalysis): (fragment: number) => FragmentName {
   return (f) => ({ name: frame.model.names[f]!, label: frame.model.labels[f] === '' ? null : frame.model.labels[f]! });
 }
@@ -180,16 +175,9 @@ function fragmentHover(frame: FrameAnalysis, atom: number): HoverData | null {
   };
 }
 
-const PARTNERS = new WeakMap<FrameAnalysis, Partners>();
-
 /** All pairs of one fragment. */
 export function pairsOfFragment(frame: FrameAnalysis, f: number): Pair[] {
-  const { system } = frame;
-  let partners = PARTNERS.get(frame);
-  if (partners === undefined) {
-    partners = new Partners(system);
-    PARTNERS.set(frame, partners);
-  }
+  const { system, partners } = frame;
   return Array.from(partners.of(f, false))
     .map((g) => evaluatePair(system, Math.min(f, g), Math.max(f, g)))
     .filter((pair) => pair.contact !== 'apart' || isWithinCutoff(system, pair.first, pair.second, pair.distanceA));
@@ -215,15 +203,16 @@ function turned(record: PairRecord, isTurned: boolean): PairRecord {
   return { ...record, theta1Deg: opposite(record.theta2Deg), theta2Deg: opposite(record.theta1Deg) };
 }
 
-function frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): HoverData {
+function* frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): Steps<HoverData> {
   const { tree } = frame.model;
   const strongest: Pair[] = [];
   const regimes = { far: 0, edge: 0, near: 0, none: 0 };
   let sum = 0;
   let summed = 0;
   let count = 0;
-  for (const pair of pairsOf(frame.system)) {
+  for (const pair of pairsOf(frame)) {
     if (++count > MOST_PAIRS) break;
+    if (count % PAIRS_A_STEP === 0) yield;
     regimes[pair.regime ?? 'none']++;
     const energy = finite(pair.referenceKJPerMol) ?? finite(pair.energies.pointDipole);
     if (energy !== undefined) {

@@ -59,6 +59,16 @@ export interface Residue {
 /** The parts of an atom line that a finding can point at; `name` is what names its fragment: the residue, or the element. */
 export type AtomField = 'line' | 'name' | 'element' | 'x' | 'y' | 'z' | 'charge';
 
+/** The numbers of one atom line, and all else of it. */
+export interface AtomReading {
+  readonly positionA: readonly [number, number, number];
+  /** Where the file has such columns. */
+  readonly chargeE: number | null;
+  readonly dipoleEA: readonly [number, number, number] | null;
+  /** The line without those numbers: where it is the same, so is everything but them. */
+  readonly rest: string;
+}
+
 /** One frame (XYZ) or model (PDB) as read. */
 export interface FrameTree {
   /** Running number from 0. */
@@ -85,6 +95,10 @@ export interface FrameTree {
   readonly bonds: Int32Array;
   /** Where a field of an atom stands. */
   fieldSpan(atom: number, field: AtomField): Span;
+  /** The line of an atom as it stands in the text now; `null` where anything would have to be said of it. */
+  readAtom(atom: number): AtomReading | null;
+  /** The same frame in a later text, in which nothing but the numbers of its atoms differs. */
+  inText(text: Snapshot, lines: LineIndex): FrameTree;
 }
 
 /** An annotation line of a PDB file: keys for the file, or for the fragments that a selector names. */

@@ -9,21 +9,19 @@ import {
   ResponseError,
   TextDocumentSyncKind,
 } from 'vscode-languageserver';
-import { hoverAt } from '../features/hover';
 import type { PictureTheme } from '../features/pair-picture-parts';
 import type { Language } from '../formats/tree';
-import type { Turn } from './analyser';
 import { diagnosticsOf, rangeOf } from './diagnostics';
+import type { Clock } from './pace';
 import { renderHover } from './render-hover';
-import { readSettings, type ServerSettings } from './settings';
+import { SettingsStore } from './settings';
 import { busyStatus, failedStatus, readyStatus, STATUS_NOTIFICATION, type StatusParams } from './status';
 import { offsetOf } from './text-store';
 import { Workspace } from './workspace';
 
 /** What the entry gives the server of its platform. */
 export interface Platform {
-  readonly turn: Turn;
-  readonly now: () => number;
+  readonly clock: Clock;
   readonly version: string;
   /** Base64 of the UTF-8 bytes of a text. */
   base64(text: string): string;
@@ -50,13 +48,12 @@ export function startServer(connection: Connection, platform: Platform): void {
   let pushed: unknown = {};
   let theme: PictureTheme | null = null;
 
-  const settingsOf = async (uri: string): Promise<ServerSettings> => {
-    if (!client.configuration) return readSettings(pushed);
-    return readSettings(await connection.workspace.getConfiguration({ scopeUri: uri, section: 'polewise' }));
-  };
+  const settings = new SettingsStore(async (uri) =>
+    client.configuration ? connection.workspace.getConfiguration({ scopeUri: uri, section: 'polewise' }) : pushed,
+  );
   const tell = (status: StatusParams) => void connection.sendNotification(STATUS_NOTIFICATION, status);
   const workspace = new Workspace(
-    { turn: platform.turn, now: platform.now, settingsOf },
+    { clock: platform.clock, settingsOf: (uri) => settings.of(uri) },
     {
       busy: (uri) => tell(busyStatus(uri)),
       failed: (uri, reason) => tell(failedStatus(uri, reason)),
@@ -92,8 +89,9 @@ export function startServer(connection: Connection, platform: Platform): void {
     if (client.configuration) void connection.client.register(DidChangeConfigurationNotification.type, undefined);
   });
 
-  connection.onDidChangeConfiguration(({ settings }) => {
-    pushed = (settings as { polewise?: unknown } | null)?.polewise ?? {};
+  connection.onDidChangeConfiguration((change) => {
+    pushed = (change.settings as { polewise?: unknown } | null)?.polewise ?? {};
+    settings.clear();
     workspace.refresh();
     if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
   });
@@ -107,6 +105,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   });
   connection.onDidCloseTextDocument(({ textDocument: { uri } }) => {
     workspace.close(uri);
+    settings.forget(uri);
     if (!client.pull) void connection.sendDiagnostics({ uri, diagnostics: [] });
   });
 
@@ -122,13 +121,15 @@ export function startServer(connection: Connection, platform: Platform): void {
   connection.onHover(async ({ textDocument: { uri }, position }, token): Promise<Hover | null> => {
     const analysed = await workspace.analysed(uri);
     if (analysed === null || token.isCancellationRequested) return null;
-    const { document, tree, settings } = analysed;
-    const data = hoverAt(tree, offsetOf(document, position), (index) => analysed.frame(index));
+    const { document } = analysed;
+    const offset = offsetOf(document, position);
+    const data = await workspace.hover(analysed, offset);
+    if (token.isCancellationRequested) return null;
     if (data === null) return null;
     return {
       contents: {
         kind: MarkupKind.Markdown,
-        value: renderHover(data, { unit: settings.energyUnit, theme, base64: platform.base64 }),
+        value: renderHover(data, { unit: analysed.settings.energyUnit, theme, base64: platform.base64 }),
       },
       range: rangeOf(document.lines, data.span),
     };

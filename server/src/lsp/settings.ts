@@ -114,3 +114,33 @@ class SettingsReader {
     return severities;
   }
 }
+
+/** The settings of each resource, asked for once until they change. */
+export class SettingsStore {
+  readonly #ask: (uri: string) => Promise<unknown>;
+  readonly #known = new Map<string, Promise<ServerSettings>>();
+
+  constructor(ask: (uri: string) => Promise<unknown>) {
+    this.#ask = ask;
+  }
+
+  /** The same object as long as the settings are the same. */
+  of(uri: string): Promise<ServerSettings> {
+    let settings = this.#known.get(uri);
+    if (settings === undefined) {
+      settings = this.#ask(uri).then(readSettings);
+      this.#known.set(uri, settings);
+      // What could not be had is asked for again.
+      settings.catch(() => this.#known.delete(uri));
+    }
+    return settings;
+  }
+
+  forget(uri: string): void {
+    this.#known.delete(uri);
+  }
+
+  clear(): void {
+    this.#known.clear();
+  }
+}

@@ -1,6 +1,7 @@
 import type { Language } from '../formats/tree';
-import { indexLines, type LineIndex } from '../text/lines';
-import { type Snapshot, snapshotOf } from '../text/snapshot';
+import { indexLines } from '../text/lines';
+import { snapshotOf } from '../text/snapshot';
+import { type IndexedText, type Splice, splicedText } from '../text/splice';
 
 /** A place as the protocol gives it: from 0, in UTF-16 units; may lie outside the text. */
 export interface PlaceInText {
@@ -15,26 +16,31 @@ export interface TextChange {
 }
 
 /** One open document at one version; immutable. */
-export interface OpenDocument {
+export interface OpenDocument extends IndexedText {
   readonly uri: string;
   readonly language: Language;
   readonly version: number;
-  readonly text: string;
-  readonly snapshot: Snapshot;
-  readonly lines: LineIndex;
+  /** Rises by one with every change of an open document. */
+  readonly serial: number;
+  /** What was done to the version before, where it can be told in pieces of that; `null` for a text given whole. */
+  readonly splices: readonly Splice[] | null;
+}
+
+/** What was done to one version of a document to make the next; `null` where another lies between, or it is not known. */
+export function splicesSince(earlier: OpenDocument, document: OpenDocument): readonly Splice[] | null {
+  return document.serial === earlier.serial + 1 ? document.splices : null;
 }
 
 export function openDocument(uri: string, language: Language, version: number, text: string): OpenDocument {
   const snapshot = snapshotOf(text);
-  return { uri, language, version, text, snapshot, lines: indexLines(snapshot) };
+  return { uri, language, version, snapshot, lines: indexLines(snapshot), serial: 0, splices: null };
 }
 
 /** Offset of a place, clamped into the text and onto its line. */
-export function offsetOf(document: Pick<OpenDocument, 'lines' | 'text'>, { line, character }: PlaceInText): number {
-  const { lines, text } = document;
+export function offsetOf({ lines, snapshot }: IndexedText, { line, character }: PlaceInText): number {
   if (line < 0) return 0;
   // After a last line end there is one more, empty line for the editor.
-  if (line >= lines.count) return text.length;
+  if (line >= lines.count) return snapshot.length;
   return Math.min(lines.starts[line]! + Math.max(0, character), lines.end(line));
 }
 
@@ -45,34 +51,33 @@ export function offsetOf(document: Pick<OpenDocument, 'lines' | 'text'>, { line,
  */
 export function changeDocument(document: OpenDocument, version: number, changes: readonly TextChange[]): OpenDocument {
   const { uri, language } = document;
-  const pieces = piecesFromBehind(document, changes);
-  if (pieces !== null) return openDocument(uri, language, version, pieces.join(''));
-  let current = document;
-  for (const change of changes) {
-    const text = change.range === undefined ? change.text : replaced(current, change.range, change.text);
-    current = openDocument(uri, language, version, text);
+  const serial = document.serial + 1;
+  const splices = splicesFromBehind(document, changes);
+  if (splices !== null) return { uri, language, version, serial, ...splicedText(document, splices), splices };
+  let current: IndexedText = document;
+  for (const { range, text } of changes) {
+    if (range === undefined) current = openDocument(uri, language, version, text);
+    else current = splicedText(current, [spliceOf(current, range, text)]);
   }
-  return { ...current, version };
+  const { snapshot, lines } = current;
+  return { uri, language, version, serial, snapshot, lines, splices: null };
 }
 
-function replaced(document: OpenDocument, range: NonNullable<TextChange['range']>, text: string): string {
+function spliceOf(document: IndexedText, range: NonNullable<TextChange['range']>, text: string): Splice {
   const start = offsetOf(document, range.start);
-  const end = Math.max(start, offsetOf(document, range.end));
-  return document.text.slice(0, start) + text + document.text.slice(end);
+  return { start, end: Math.max(start, offsetOf(document, range.end)), text };
 }
 
-/** The pieces of the new text where every change lies before the one sent before it, else `null`. */
-function piecesFromBehind(document: OpenDocument, changes: readonly TextChange[]): string[] | null {
-  const pieces: string[] = [];
-  let before = document.text.length;
+/** The changes as pieces of the old text, ascending, where every one lies before the one sent before it, else `null`. */
+function splicesFromBehind(document: OpenDocument, changes: readonly TextChange[]): Splice[] | null {
+  const splices: Splice[] = [];
+  let before = document.snapshot.length;
   for (const { range, text } of changes) {
     if (range === undefined) return null;
-    const start = offsetOf(document, range.start);
-    const end = Math.max(start, offsetOf(document, range.end));
-    if (end > before) return null;
-    pieces.push(document.text.slice(end, before), text);
-    before = start;
+    const splice = spliceOf(document, range, text);
+    if (splice.end > before) return null;
+    splices.push(splice);
+    before = splice.start;
   }
-  pieces.push(document.text.slice(0, before));
-  return pieces.reverse();
+  return splices.reverse();
 }

@@ -1,12 +1,13 @@
+import { frameIndexAt, type HoverData, hoverSteps } from '../features/hover';
 import type { Language } from '../formats/tree';
-import { type Analysed, analyseDocument, Outdated, type Turn } from './analyser';
+import { type Analysed, analyseDocument } from './analyser';
+import { type Clock, Outdated, Pace } from './pace';
 import type { ServerSettings } from './settings';
 import { changeDocument, type OpenDocument, openDocument, type TextChange } from './text-store';
 
-/** What the surroundings give: ways to wait and to tell time, and the settings of a document. */
+/** What the surroundings give: ways to wait and to tell time, and the settings of a document (the same object while they are the same). */
 export interface Surroundings {
-  readonly turn: Turn;
-  readonly now: () => number;
+  readonly clock: Clock;
   settingsOf(uri: string): Promise<ServerSettings>;
 }
 
@@ -16,7 +17,10 @@ interface Entry {
   round: number;
   running: Promise<Analysed | null> | null;
   runningRound: number;
+  /** The analysis of the newest version, once it is done. */
   latest: Analysed | null;
+  /** The last one done, of whatever version, for the next to go on from. */
+  earlier: Analysed | null;
 }
 
 /** What is told of a document's analysis as it goes on. */
@@ -56,6 +60,7 @@ export class Workspace {
       running: null,
       runningRound: -1,
       latest: null,
+      earlier: null,
     });
     void this.analysed(uri);
   }
@@ -73,6 +78,7 @@ export class Workspace {
     if (entry === undefined) return;
     entry.round++;
     entry.latest = null;
+    entry.earlier = null;
     this.#entries.delete(uri);
   }
 
@@ -100,16 +106,31 @@ export class Workspace {
     return entry.running;
   }
 
+  /** What to show at an offset of an analysis, as long as that is the newest; `null` where it is not any more, or there is nothing. */
+  async hover(analysed: Analysed, offset: number): Promise<HoverData | null> {
+    const isWanted = () => this.#entries.get(analysed.document.uri)?.latest === analysed;
+    const pace = new Pace(this.#surroundings.clock, isWanted);
+    const index = frameIndexAt(analysed.tree, offset);
+    try {
+      const frame = index < 0 ? null : await analysed.frames.frame(index, pace);
+      return await pace.finish(hoverSteps(analysed.tree, offset, frame));
+    } catch (error) {
+      if (error instanceof Outdated) return null;
+      throw error;
+    }
+  }
+
   async #run(uri: string, entry: Entry, round: number): Promise<Analysed | null> {
     const isWanted = () => this.#entries.get(uri) === entry && entry.round === round;
     this.#listener.busy(uri);
     try {
       const settings = await this.#surroundings.settingsOf(uri);
       if (!isWanted()) return null;
-      const { turn, now } = this.#surroundings;
-      const analysed = await analyseDocument(entry.document, settings, turn, now, isWanted);
+      const pace = new Pace(this.#surroundings.clock, isWanted);
+      const analysed = await analyseDocument(entry.document, settings, pace, entry.earlier);
       if (!isWanted()) return null;
       entry.latest = analysed;
+      entry.earlier = analysed;
       this.#listener.ready(analysed);
       return analysed;
     } catch (error) {

@@ -6,7 +6,7 @@ import { AtomFlag, type FrameTree } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
-import { type Axis, emptyNotes, type FragmentNotes, ValueReader } from './annotation';
+import { type Axis, emptyNotes, type FragmentNotes, ValueReader, type WrittenDipole } from './annotation';
 import { canonicalFormula } from './formula';
 import { atomsInRanges, rangesOf } from './fragment-list';
 import { atomsOf, type FragmentSet } from './fragment-set';
@@ -44,12 +44,49 @@ export function annotateXyz(
   return notes;
 }
 
+/** Keys whose value has an entry for every fragment, in order. */
+export const LISTED_KEYS: ReadonlySet<string> = new Set([
+  'fragment_names',
+  'fragment_charges',
+  'fragment_polarizabilities',
+  'fragment_dipoles',
+  'fragment_dipole_sizes',
+  'fragment_axes',
+]);
+
+/** The compositions that the keys of a comment line speak of. */
+export function kindFormulas(text: Snapshot, entries: readonly Entry[]): string[] {
+  const kinds = entries.filter(({ key }) => key === 'kind_dipole_sizes' || key === 'kind_axes');
+  return kinds.flatMap((entry) =>
+    listGroups(text, entry).flatMap(({ start, end }) => {
+      const words = text.slice(start, end);
+      return canonicalFormula(words.slice(0, Math.max(0, words.indexOf(':')))) ?? [];
+    }),
+  );
+}
+
+/** Binds the keys that speak of compositions to some fragments of a frame without {@link LISTED_KEYS}; their notes hold nothing yet. */
+export function annotateSome(
+  text: Snapshot,
+  frame: FrameTree,
+  set: FragmentSet,
+  formulas: readonly string[],
+  notes: FragmentNotes[],
+  fragments: readonly number[],
+  problems: FindingCollector,
+): void {
+  const binder = new XyzBinder(new ValueReader(text, problems), frame, set, formulas, notes, fragments);
+  binder.bind(frame.entries, (key) => key.startsWith('kind_'));
+}
+
 class XyzBinder {
   readonly #reader: ValueReader;
   readonly #frame: FrameTree;
   readonly #set: FragmentSet;
   readonly #formulas: readonly string[];
   readonly #notes: FragmentNotes[];
+  /** The fragments to be looked at where they are not all. */
+  readonly #some: readonly number[] | null;
   #byFormula: Map<string, number[]> | null = null;
 
   constructor(
@@ -58,7 +95,9 @@ class XyzBinder {
     set: FragmentSet,
     formulas: readonly string[],
     notes: FragmentNotes[],
+    some: readonly number[] | null = null,
   ) {
+    this.#some = some;
     this.#reader = reader;
     this.#frame = frame;
     this.#set = set;
@@ -93,9 +132,14 @@ class XyzBinder {
         this.#notes[f]!.dipoleEA = vector.dipoleEA;
         this.#notes[f]!.writtenDipole = vector.written;
       });
-      each('fragment_dipole_sizes', 1, (f, [item]) => this.#setSize(f, item!, unit));
+      each('fragment_dipole_sizes', 1, (f, [item]) => this.#setSize(f, this.#sizeReader(item!, unit)));
       const sizes = entryOf('kind_dipole_sizes');
-      if (sizes !== undefined) this.#bindKinds(sizes, (f, value) => this.#setSize(f, value, unit));
+      if (sizes !== undefined) {
+        this.#bindKinds(sizes, (value) => {
+          const read = this.#sizeReader(value, unit);
+          return (f) => this.#setSize(f, read);
+        });
+      }
     }
     const axes = entryOf('fragment_axes');
     if (axes !== undefined) {
@@ -106,8 +150,11 @@ class XyzBinder {
     }
     const kindAxes = entryOf('kind_axes');
     if (kindAxes !== undefined) {
-      this.#bindKinds(kindAxes, (f, value) => {
-        this.#notes[f]!.axis ??= this.#axisBySymbols(f, value);
+      this.#bindKinds(kindAxes, (value) => {
+        const axisOf = this.#axisReader(value);
+        return (f) => {
+          this.#notes[f]!.axis ??= axisOf(f);
+        };
       });
     }
   }
@@ -153,22 +200,34 @@ class XyzBinder {
     return false;
   }
 
-  #setSize(f: number, item: Span, unit: string): void {
+  #setSize(f: number, read: () => Size | null): void {
     const note = this.#notes[f]!;
     if (note.dipoleSizeEA !== null) return;
-    if (this.#reader.text.slice(item.start, item.end).toLowerCase() === 'nan') return;
-    const size = this.#reader.quantity(item, 'dipoleEA', 'dipole size', dipoleUnitEA(unit)!);
+    const size = read();
     if (size === null) return;
-    if (size < 0) {
-      this.#reader.invalid(item, 'A dipole size cannot be negative; turn the axis round instead.');
-      return;
-    }
-    note.dipoleSizeEA = size;
-    note.writtenSize = { items: [item], unit, span: item };
+    note.dipoleSizeEA = size.sizeEA;
+    note.writtenSize = size.written;
   }
 
-  /** Reads `FORMULA:VALUE` items and gives each value to the fragments of that composition. */
-  #bindKinds(entry: Entry, assign: (f: number, value: Span) => void): void {
+  /** Reads a size at the first call, for all fragments that it is given to. */
+  #sizeReader(item: Span, unit: string): () => Size | null {
+    let size: Size | null | undefined;
+    return () => {
+      if (size === undefined) size = this.#readSize(item, unit);
+      return size;
+    };
+  }
+
+  #readSize(item: Span, unit: string): Size | null {
+    if (this.#reader.text.slice(item.start, item.end).toLowerCase() === 'nan') return null;
+    const sizeEA = this.#reader.quantity(item, 'dipoleEA', 'dipole size', dipoleUnitEA(unit)!);
+    if (sizeEA === null) return null;
+    if (sizeEA < 0) return this.#reader.invalid(item, 'A dipole size cannot be negative; turn the axis round instead.');
+    return { sizeEA, written: { items: [item], unit, span: item } };
+  }
+
+  /** Reads `FORMULA:VALUE` items and gives what is read of each value to the fragments of that composition. */
+  #bindKinds(entry: Entry, read: (value: Span) => (f: number) => void): void {
     const { text, problems } = this.#reader;
     for (const group of listGroups(text, entry)) {
       const words = text.slice(group.start, group.end);
@@ -180,7 +239,8 @@ class XyzBinder {
       }
       const value = { start: group.start + colon + 1, end: group.end };
       const matches = this.#ofKind(formula);
-      for (const f of matches) assign(f, value);
+      const assign = read(value);
+      for (const f of matches) assign(f);
       // A fragment with a hole has another composition than was meant; the hole has been told.
       if (matches.length === 0 && !this.#hasHoles()) {
         problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {
@@ -199,7 +259,8 @@ class XyzBinder {
   #ofKind(formula: string): readonly number[] {
     if (this.#byFormula === null) {
       this.#byFormula = new Map();
-      for (const [f, kind] of this.#formulas.entries()) {
+      for (const f of this.#some ?? this.#formulas.keys()) {
+        const kind = this.#formulas[f]!;
         const list = this.#byFormula.get(kind);
         if (list === undefined) this.#byFormula.set(kind, [f]);
         else list.push(f);
@@ -228,32 +289,45 @@ class XyzBinder {
     return this.#reader.invalid(group, `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`);
   }
 
-  #axisBySymbols(f: number, value: Span): Axis | null {
+  /** Reads an axis by symbols (`O>H`), for all fragments that it is given to. */
+  #axisReader(value: Span): (f: number) => Axis | null {
     const words = this.#reader.text.slice(value.start, value.end);
-    const names = words.split('>').map((side) => new Set(side.split(',')));
-    const few = names.every((side) => side.size <= MOST_AXIS_NAMES);
-    const sides = few ? names.map((side) => this.#atomsNamed(f, side)) : [];
-    if (sides.length === 2 && sides[0]!.length > 0 && sides[1]!.length > 0) {
-      return { before: sides[0]!, after: sides[1]!, span: value };
-    }
-    return this.#reader.invalid(
-      value,
-      `"${this.#reader.shown(value)}" names no atoms on both sides of ">"; write symbols as in O>H.`,
-    );
+    const sides = words.split('>').map((side) => [...new Set(side.split(','))].map((name) => name.trim()));
+    const isAxis = sides.length === 2 && sides.every((side) => side.length <= MOST_AXIS_NAMES);
+    const elements = sides.map((side) => side.map((name) => [name, atomicNumberOf(name)] as const));
+    return (f) => {
+      const [before, after] = isAxis ? elements.map((side) => this.#atomsNamed(f, side)) : [];
+      if (before?.length && after?.length) return { before, after, span: value };
+      return this.#reader.invalid(
+        value,
+        `"${this.#reader.shown(value)}" names no atoms on both sides of ">"; write symbols as in O>H.`,
+      );
+    };
   }
 
-  /** Atoms of a fragment by element symbol, or by the label that stands in the file. */
-  #atomsNamed(f: number, names: ReadonlySet<string>): number[] {
-    const members = [...atomsOf(this.#set, f)];
-    return [...names].flatMap((name) => {
-      const z = atomicNumberOf(name.trim());
-      if (z > 0) return members.filter((atom) => this.#frame.atoms.element[atom] === z);
-      return members.filter((atom) => {
-        const { start, end } = this.#frame.fieldSpan(atom, 'element');
-        return this.#reader.text.slice(start, end) === name.trim();
-      });
-    });
+  /** Atoms of a fragment by element, or by the label that stands in the file. */
+  #atomsNamed(f: number, names: readonly (readonly [name: string, element: number])[]): number[] {
+    const { starts, members } = this.#set;
+    const { element } = this.#frame.atoms;
+    const named: number[] = [];
+    for (const [name, z] of names) {
+      for (let k = starts[f]!; k < starts[f + 1]!; k++) {
+        const atom = members[k]!;
+        if (z > 0 ? element[atom] === z : this.#labelOf(atom) === name) named.push(atom);
+      }
+    }
+    return named;
   }
+
+  #labelOf(atom: number): string {
+    const { start, end } = this.#frame.fieldSpan(atom, 'element');
+    return this.#reader.text.slice(start, end);
+  }
+}
+
+interface Size {
+  readonly sizeEA: number;
+  readonly written: WrittenDipole;
 }
 
 /** Fills a list up with `nan`, or takes away what is too much; a bare value needs quotes to become a list. */

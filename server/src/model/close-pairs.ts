@@ -2,7 +2,8 @@ import { finish, inStrides, type Steps } from '../base/steps';
 import { AtomFlag, type AtomTable } from '../formats/tree';
 import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, MAX_ATOMIC_NUMBER, VDW_RADIUS_A } from '../physics/elements';
 import type { Cell } from './cell';
-import { NeighbourBuffer, PointGrid } from './point-grid';
+import { NeighbourBuffer } from './neighbour-buffer';
+import { PointGrid } from './point-grid';
 
 /** Allowance on the sum of covalent radii of two non-metals, Å (common practice, no source). */
 const NON_METAL_ALLOWANCE_A = 0.4;

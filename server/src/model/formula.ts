@@ -28,6 +28,37 @@ function hillText(counts: ReadonlyMap<string, number>): string {
     .join('');
 }
 
+/** What is known of the sequences of atoms that begin alike. */
+interface Branch {
+  formula: string | undefined;
+  readonly next: Map<number, Branch>;
+}
+
+/** Longer sequences of atoms are seldom met twice. */
+const LONGEST_KNOWN = 24;
+
+/** Finds the formulas of many fragments of few kinds: each sequence of elements is counted once. */
+export class FormulaBook {
+  readonly #root: Branch = { formula: undefined, next: new Map() };
+
+  formulaOf(atoms: AtomTable, members: ArrayLike<number>): string {
+    if (members.length > LONGEST_KNOWN) return hillFormula(atoms, members);
+    let branch = this.#root;
+    for (let k = 0; k < members.length; k++) {
+      const atom = members[k]!;
+      const key = (atoms.element[atom]! << 8) | atoms.flags[atom]!;
+      let next = branch.next.get(key);
+      if (next === undefined) {
+        next = { formula: undefined, next: new Map() };
+        branch.next.set(key, next);
+      }
+      branch = next;
+    }
+    branch.formula ??= hillFormula(atoms, members);
+    return branch.formula;
+  }
+}
+
 const LONGEST_FORMULA = 60;
 
 /**

@@ -6,7 +6,7 @@ import { annotateXyz } from './annotate-xyz';
 import { type FragmentNotes, type FrameNotes, ValueReader } from './annotation';
 import { type Cell, createCell } from './cell';
 import { type ClosePairs, closePairSteps } from './close-pairs';
-import { hillFormula } from './formula';
+import { FormulaBook } from './formula';
 import { atomsOf, type FragmentSet } from './fragment-set';
 import { chainBonds, formFragments } from './perceive';
 import { wholeSteps } from './whole';
@@ -75,8 +75,9 @@ export function* frameModelSteps(
     : formFragments(text, tree, pairs, cell, heir?.fragments ?? null, problems);
   yield;
   const formulas: string[] = [];
+  const book = new FormulaBook();
   yield* inStrides(fragments.count, FRAGMENTS_A_STEP, (f) => {
-    formulas.push(hillFormula(tree.atoms, atomsOf(fragments, f)));
+    formulas.push(book.formulaOf(tree.atoms, atomsOf(fragments, f)));
   });
   // Without fragments the lists of the annotation have nothing to fit.
   const notes = pairs.tooDense

@@ -5,7 +5,8 @@ import type { Cell } from './cell';
 import { bondLimitA, type ClosePairs } from './close-pairs';
 import { readFragmentAtoms } from './fragment-list';
 import { type FragmentSet, fragmentsFromLabels, UnionFind } from './fragment-set';
-import { NeighbourBuffer, PointGrid } from './point-grid';
+import { NeighbourBuffer } from './neighbour-buffer';
+import { PointGrid } from './point-grid';
 
 /** A ghost site belongs to the fragment of the nearest atom within this distance, Å; virtual charge sites lie closer. */
 const GHOST_REACH_A = 1;

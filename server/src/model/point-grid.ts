@@ -1,35 +1,5 @@
 import { type Cell, imageResult, minimumImage } from './cell';
-
-/** Neighbours of one point, as found by {@link PointGrid.gather}; reused from call to call. */
-export class NeighbourBuffer {
-  count = 0;
-  index = new Int32Array(256);
-  /** Differences from the point asked about to each neighbour (minimum image), x y z, Å. */
-  vectorA = new Float64Array(768);
-
-  push(index: number, x: number, y: number, z: number): void {
-    if (this.count === this.index.length) this.#grow();
-    const at = this.count++;
-    this.index[at] = index;
-    this.vectorA[3 * at] = x;
-    this.vectorA[3 * at + 1] = y;
-    this.vectorA[3 * at + 2] = z;
-  }
-
-  /** Makes room for so many more. */
-  reserve(more: number): void {
-    while (this.count + more > this.index.length) this.#grow();
-  }
-
-  #grow(): void {
-    const index = new Int32Array(this.index.length * 2);
-    index.set(this.index);
-    this.index = index;
-    const vectorA = new Float64Array(this.vectorA.length * 2);
-    vectorA.set(this.vectorA);
-    this.vectorA = vectorA;
-  }
-}
+import type { NeighbourBuffer } from './neighbour-buffer';
 
 /** Cells are this fraction of the search radius: fewer candidates fall outside it. */
 const CELLS_PER_RADIUS = 2;
@@ -37,6 +7,8 @@ const MOST_CELLS_PER_POINT = 4;
 /** Candidates a point may have on average before the points count as too dense to tell neighbours apart. */
 const MOST_CANDIDATES_PER_POINT = 1500;
 const ALWAYS_FEW_ENOUGH = 1e6;
+/** Members that may leave their slots before the grid is to be made anew. */
+const MOST_MOVED = 64;
 
 /**
  * Points sorted into cells of about half a search radius, so that the neighbours of one are found among a few. Works in any
@@ -58,8 +30,16 @@ export class PointGrid {
   readonly #sorted: Float64Array;
   readonly #isPlain: boolean;
   readonly #image = imageResult();
-  /** Whether there are so many candidates that a search would be as slow as trying all pairs. */
-  readonly tooDense: boolean;
+  /** Least and largest place of a member along each direction that is not periodic. */
+  readonly #low: [number, number, number] = [0, 0, 0];
+  readonly #high: [number, number, number] = [0, 0, 0];
+  /** Members that have left their slots; they are tried one by one. */
+  readonly #moved: number[] = [];
+  /** By how many members more than its slots tell a cell holds. */
+  readonly #drift = new Map<number, number>();
+  #crowding = 0;
+  readonly #stencil: number;
+  readonly #memberCount: number;
 
   /** @param members the points to sort in, or `null` for all; @param pointsA x y z of each point, Å */
   constructor(pointsA: Float64Array, members: Int32Array | null, radiusA: number, cell: Cell | null) {
@@ -79,16 +59,15 @@ export class PointGrid {
       cells[k] = c;
       starts[c + 1]!++;
     }
-    let crowding = 0;
     for (let c = 0; c < total; c++) {
-      crowding += starts[c + 1]! * starts[c + 1]!;
+      this.#crowding += starts[c + 1]! * starts[c + 1]!;
       starts[c + 1]! += starts[c]!;
     }
-    const stencil = [0, 1, 2].reduce(
+    this.#stencil = [0, 1, 2].reduce(
       (product, k) => product * Math.min(2 * this.#reachOf(k, radiusA) + 1, this.#counts[k]!),
       1,
     );
-    this.tooDense = crowding * stencil > Math.max(ALWAYS_FEW_ENOUGH, MOST_CANDIDATES_PER_POINT * inside.length);
+    this.#memberCount = inside.length;
     this.#starts = starts;
     this.#order = new Int32Array(inside.length);
     this.#sorted = new Float64Array(3 * inside.length);
@@ -103,11 +82,75 @@ export class PointGrid {
     }
   }
 
+  /** Whether there are so many candidates that a search would be as slow as trying all pairs. */
+  get tooDense(): boolean {
+    const most = Math.max(ALWAYS_FEW_ENOUGH, MOST_CANDIDATES_PER_POINT * this.#memberCount);
+    return this.#crowding * this.#stencil > most;
+  }
+
+  /**
+   * Whether a member may move to a place without the cells being laid out anew: then {@link move} leaves the grid as good as a fresh one,
+   * and as crowded. Members at the rim of a direction that is not periodic may not, nor may many.
+   */
+  canMove(i: number, x: number, y: number, z: number): boolean {
+    if (this.#moved.length >= MOST_MOVED || this.#slabs.some((slabs) => slabs !== null)) return false;
+    if (!Number.isFinite(x + y + z) || this.#slotOf(i) < 0) return false;
+    for (const k of [0, 1, 2] as const) {
+      if (this.#cell?.periodic[k]) continue;
+      const from = this.#fraction(i, k);
+      const to = this.#fractionAt(x, y, z, k);
+      if (from <= this.#low[k] || from >= this.#high[k] || to < this.#low[k] || to > this.#high[k]) return false;
+    }
+    return true;
+  }
+
+  /** Moves a member that {@link canMove} allowed to move; its coordinates in the array of points are written. */
+  move(i: number, x: number, y: number, z: number): void {
+    const slot = this.#slotOf(i);
+    const occupied = (by: number) => {
+      const cell = this.#cellOf(i);
+      const now = this.#occupants(cell) + by;
+      this.#drift.set(cell, (this.#drift.get(cell) ?? 0) + by);
+      this.#crowding += by * (2 * now - by);
+    };
+    occupied(-1);
+    this.#points[3 * i] = x;
+    this.#points[3 * i + 1] = y;
+    this.#points[3 * i + 2] = z;
+    occupied(1);
+    if (slot >= this.#order.length) return;
+    // What lies nowhere is near nothing.
+    this.#sorted.fill(Number.NaN, 3 * slot, 3 * slot + 3);
+    this.#moved.push(i);
+  }
+
+  #occupants(cell: number): number {
+    return this.#starts[cell + 1]! - this.#starts[cell]! + (this.#drift.get(cell) ?? 0);
+  }
+
+  #cellOf(i: number): number {
+    const [nx, ny] = this.#counts;
+    return this.#place(0, i) + nx * (this.#place(1, i) + ny * this.#place(2, i));
+  }
+
+  /** Slot of a member; past the last one where it has left its own, and −1 where it is none. */
+  #slotOf(i: number): number {
+    if (this.#moved.includes(i)) return this.#order.length;
+    const cell = this.#cellOf(i);
+    for (let slot = this.#starts[cell]!; slot < this.#starts[cell + 1]!; slot++)
+      if (this.#order[slot] === i) return slot;
+    return -1;
+  }
+
   #fraction(i: number, k: number): number {
     const p = this.#points;
-    if (this.#cell === null) return p[3 * i + k]!;
+    return this.#fractionAt(p[3 * i]!, p[3 * i + 1]!, p[3 * i + 2]!, k);
+  }
+
+  #fractionAt(x: number, y: number, z: number, k: number): number {
+    if (this.#cell === null) return k === 0 ? x : k === 1 ? y : z;
     const { inverse } = this.#cell;
-    return p[3 * i]! * inverse[k]! + p[3 * i + 1]! * inverse[3 + k]! + p[3 * i + 2]! * inverse[6 + k]!;
+    return x * inverse[k]! + y * inverse[3 + k]! + z * inverse[6 + k]!;
   }
 
   #layOut(inside: Int32Array): void {
@@ -127,6 +170,8 @@ export class PointGrid {
         if (f < low) low = f;
         if (f > high) high = f;
       }
+      this.#low[k as 0] = low;
+      this.#high[k as 0] = high;
       this.#origin[k] = high >= low ? low : 0;
       this.#counts[k] = high > low ? Math.floor((high - low) / target) + 1 : 1;
       this.#cellA[k] = target;
@@ -210,10 +255,44 @@ export class PointGrid {
     const y = this.#points[3 * i + 1]!;
     const z = this.#points[3 * i + 2]!;
     if (!Number.isFinite(x + y + z)) return;
-    if (this.#isPlain) {
-      this.#gatherPlain(i, x, y, z, radiusA, onlyAfter, out);
-      return;
+    if (this.#isPlain) this.#gatherPlain(i, x, y, z, radiusA, onlyAfter, out);
+    else this.#gatherWrapped(i, x, y, z, radiusA, onlyAfter, out);
+    for (const j of this.#moved) this.#try(i, j, x, y, z, radiusA * radiusA, onlyAfter, out);
+  }
+
+  /** Adds a member that has left its slot, where it is within the radius. */
+  #try(
+    i: number,
+    j: number,
+    x: number,
+    y: number,
+    z: number,
+    radius2: number,
+    onlyAfter: boolean,
+    out: NeighbourBuffer,
+  ): void {
+    if (onlyAfter ? j <= i : j === i) return;
+    let dx = this.#points[3 * j]! - x;
+    let dy = this.#points[3 * j + 1]! - y;
+    let dz = this.#points[3 * j + 2]! - z;
+    if (this.#cell !== null) {
+      minimumImage(this.#cell, dx, dy, dz, this.#image);
+      dx = this.#image.vectorA[0]!;
+      dy = this.#image.vectorA[1]!;
+      dz = this.#image.vectorA[2]!;
     }
+    if (dx * dx + dy * dy + dz * dz <= radius2) out.push(j, dx, dy, dz);
+  }
+
+  #gatherWrapped(
+    i: number,
+    x: number,
+    y: number,
+    z: number,
+    radiusA: number,
+    onlyAfter: boolean,
+    out: NeighbourBuffer,
+  ): void {
     const [nx, ny] = this.#counts;
     const [fromX, toX] = this.#range(0, i, radiusA);
     const [fromY, toY] = this.#range(1, i, radiusA);

@@ -96,3 +96,8 @@ function grown(array: Uint32Array<ArrayBuffer>): Uint32Array<ArrayBuffer> {
   larger.set(array);
   return larger;
 }
+
+/** An index from line starts that are known already: one for each line, and the length of the text. */
+export function linesFrom(snapshot: Snapshot, starts: Uint32Array): LineIndex {
+  return new Lines(snapshot.bytes, starts);
+}

@@ -1,3 +1,5 @@
+import type { Span } from '../base/span';
+
 /**
  * One version of a text, immutable: its UTF-16 code units mirrored as one byte each, so that a byte offset is a UTF-16 offset
  * and scanners never touch a string. Code units above 0x7F become 0x80; where one matters (names, messages) the string is cut.
@@ -7,6 +9,8 @@ export interface Snapshot {
   readonly bytes: Uint8Array;
   /** Number of UTF-16 code units. */
   readonly length: number;
+  /** Whether every unit is ASCII, so that the bytes tell all. */
+  readonly isAscii: boolean;
   /** The text between two offsets. */
   slice(start: number, end: number): string;
 }
@@ -22,12 +26,14 @@ const NOT_ASCII = 0x80;
 class TextSnapshot implements Snapshot {
   readonly bytes: Uint8Array;
   readonly length: number;
+  readonly isAscii: boolean;
   readonly #text: string;
 
-  constructor(text: string) {
+  constructor(text: string, { bytes, isAscii }: Mirror) {
     this.#text = text;
     this.length = text.length;
-    this.bytes = mirror(text);
+    this.bytes = bytes;
+    this.isAscii = isAscii;
   }
 
   slice(start: number, end: number): string {
@@ -37,6 +43,7 @@ class TextSnapshot implements Snapshot {
 
 /** Text held as ASCII bytes alone: a file read from disk never becomes a string as a whole. */
 class AsciiSnapshot implements Snapshot {
+  readonly isAscii = true;
   readonly bytes: Uint8Array;
   readonly length: number;
   readonly #decoder = new TextDecoder('latin1');
@@ -56,7 +63,12 @@ class AsciiSnapshot implements Snapshot {
   }
 }
 
-function mirror(text: string): Uint8Array {
+interface Mirror {
+  readonly bytes: Uint8Array;
+  readonly isAscii: boolean;
+}
+
+function mirror(text: string): Mirror {
   const length = text.length;
   const bytes = new Uint8Array(length + PADDING);
   const { read } = new TextEncoder().encodeInto(text, bytes.subarray(0, length));
@@ -68,7 +80,7 @@ function mirror(text: string): Uint8Array {
     }
   }
   bytes.fill(LINE_FEED, length);
-  return bytes;
+  return { bytes, isAscii: read === length };
 }
 
 /** Whether all bytes are ASCII; reads past `length` into padding of ASCII. */
@@ -82,7 +94,35 @@ function isPaddedAscii(bytes: Uint8Array<ArrayBuffer>, length: number): boolean 
 
 /** A snapshot of a string. */
 export function snapshotOf(text: string): Snapshot {
-  return new TextSnapshot(text);
+  return new TextSnapshot(text, mirror(text));
+}
+
+/** The snapshot after some pieces (ascending, disjoint) are replaced: what stays is copied, not read again. */
+export function splicedSnapshot(old: Snapshot, splices: readonly (Span & { readonly text: string })[]): Snapshot {
+  const growth = splices.reduce((sum, { start, end, text }) => sum + text.length - (end - start), 0);
+  const length = old.length + growth;
+  const bytes = new Uint8Array(length + PADDING);
+  const pieces: string[] = [];
+  let { isAscii } = old;
+  let from = 0;
+  let at = 0;
+  const keep = (to: number) => {
+    bytes.set(old.bytes.subarray(from, to), at);
+    at += to - from;
+    pieces.push(old.slice(from, to));
+  };
+  for (const { start, end, text } of splices) {
+    keep(start);
+    const piece = mirror(text);
+    bytes.set(piece.bytes.subarray(0, text.length), at);
+    isAscii &&= piece.isAscii;
+    at += text.length;
+    pieces.push(text);
+    from = end;
+  }
+  keep(old.length);
+  bytes.fill(LINE_FEED, length);
+  return new TextSnapshot(pieces.join(''), { bytes, isAscii });
 }
 
 /**

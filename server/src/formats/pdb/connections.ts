@@ -52,7 +52,7 @@ export class ConnectionRecords {
   }
 
   /** Declared bonds of a model, as pairs of atom indices. A serial that stands twice in the model names no atom. */
-  bondsOf(frame: FrameTree): Int32Array {
+  bondsOf(frame: Pick<FrameTree, 'atoms' | 'residues'>): Int32Array {
     const bonds: number[] = [];
     if (this.#conect.length > 0) this.#readConect(this.#serials(frame), bonds);
     const byPlace = new Map<string, Residue>();
@@ -67,7 +67,7 @@ export class ConnectionRecords {
     return Int32Array.from(bonds);
   }
 
-  #serials(frame: FrameTree): Map<number, number> {
+  #serials(frame: Pick<FrameTree, 'atoms' | 'residues'>): Map<number, number> {
     const bySerial = new Map<number, number>();
     for (let atom = 0; atom < frame.atoms.count; atom++) {
       const serial = decodeHybrid36(this.#columns.raw(frame.atoms.line[atom]!, ATOM_COLUMNS.serial), SERIAL_WIDTH);

@@ -44,7 +44,7 @@ export function parsePdb(text: Snapshot): CoordinateTree {
         return `${places} alternate locations; the ones with less occupancy are left out, the first of them here.`;
       });
     }
-    frames.push(new ModelFrame(columns, frames.length, open.firstLine, line, atoms, residues, cell));
+    frames.push(new ModelFrame(columns, chargeColumn, frames.length, open.firstLine, line, atoms, residues, cell));
   };
 
   for (let line = 0; line < lines.count; line++) {

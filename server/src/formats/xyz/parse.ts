@@ -8,9 +8,10 @@ import { FRAME_KEYS } from '../annotation/keys';
 import { reportKeys } from '../annotation/report-keys';
 import type { CoordinateTree, FrameTree } from '../tree';
 import { finishTree } from '../unreadable';
-import { AtomLineReader, fieldOfAtom } from './atom-lines';
+import { AtomLineReader } from './atom-lines';
 import { readCell } from './cell';
 import { type ColumnPlan, PLAIN_COLUMNS, readProperties } from './columns';
+import { xyzFrame } from './frame';
 
 const NO_BONDS = new Int32Array(0);
 /** Room for atoms at first in later frames; a count may promise more than a frame holds. */
@@ -150,7 +151,7 @@ class XyzReader {
     const atoms = reader.atoms.build();
     if (atoms.count !== declared) this.#reportCount(head, declared, atoms.count, firstAtomLine > head);
     const cell = readCell(this.#text, entries, this.#problems);
-    return {
+    const content = {
       index,
       firstLine: head,
       endLine: line,
@@ -161,8 +162,8 @@ class XyzReader {
       cell,
       residues: null,
       bonds: NO_BONDS,
-      fieldSpan: (atom, field) => fieldOfAtom(this.#text, lines, atoms.line[atom]!, plan, field),
     };
+    return xyzFrame(content, { snapshot: this.#text, lines }, plan);
   }
 
   #columnPlan(entries: readonly Entry[]): ColumnPlan {
