@@ -19,10 +19,19 @@ const FIRST_ROOM = 64;
 /** Pairs to be spoken of, as columns, in order of first and second fragment: millions of others need not be kept. */
 export class PairNotes {
   count = 0;
-  first = new Int32Array(FIRST_ROOM);
-  second = new Int32Array(FIRST_ROOM);
-  kind = new Uint8Array(FIRST_ROOM);
-  strengthKJPerMol = new Float64Array(FIRST_ROOM);
+  first: Int32Array;
+  second: Int32Array;
+  kind: Uint8Array;
+  strengthKJPerMol: Float64Array;
+
+  /** @param room for so many at first */
+  constructor(room = FIRST_ROOM) {
+    const size = Math.max(1, room);
+    this.first = new Int32Array(size);
+    this.second = new Int32Array(size);
+    this.kind = new Uint8Array(size);
+    this.strengthKJPerMol = new Float64Array(size);
+  }
 
   add(first: number, second: number, kind: NoteKind, strengthKJPerMol: number): void {
     if (this.count === this.first.length) this.#grow();
@@ -79,27 +88,26 @@ export class PairNotes {
   }
 }
 
-/** The notes of pairs whose fragments both stay, under their new numbers (−1: gone; ascending among those that stay). */
-export function keptNotes(notes: PairNotes, newOf: Int32Array): PairNotes {
-  const kept = new PairNotes();
+/**
+ * Notes after some fragments have changed: those of pairs whose fragments both stay, under their new numbers (−1: gone; ascending among
+ * those that stay), with `added` (ordered) put in.
+ */
+export function changedNotes(notes: PairNotes, newOf: Int32Array, added: PairNotes): PairNotes {
+  const changed = new PairNotes(notes.count + added.count);
+  let next = 0;
   for (let k = 0; k < notes.count; k++) {
     const first = newOf[notes.first[k]!]!;
     const second = newOf[notes.second[k]!]!;
     if (first < 0 || second < 0) continue;
-    kept.add(first, second, notes.kind[k] as NoteKind, notes.strengthKJPerMol[k]!);
+    while (next < added.count && (added.first[next]! - first || added.second[next]! - second) < 0) {
+      changed.take(added, next++);
+    }
+    const at = changed.count++;
+    changed.first[at] = first;
+    changed.second[at] = second;
+    changed.kind[at] = notes.kind[k]!;
+    changed.strengthKJPerMol[at] = notes.strengthKJPerMol[k]!;
   }
-  return kept;
-}
-
-/** Two ordered lists without a pair in common, as one ordered list. */
-export function mergedNotes(a: PairNotes, b: PairNotes): PairNotes {
-  if (b.count === 0) return a;
-  const merged = new PairNotes();
-  let [i, j] = [0, 0];
-  while (i < a.count || j < b.count) {
-    const takesA = j === b.count || (i < a.count && (a.first[i]! - b.first[j]! || a.second[i]! - b.second[j]!) < 0);
-    if (takesA) merged.take(a, i++);
-    else merged.take(b, j++);
-  }
-  return merged;
+  while (next < added.count) changed.take(added, next++);
+  return changed;
 }

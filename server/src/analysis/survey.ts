@@ -2,7 +2,7 @@ import type { Steps } from '../base/steps';
 import { imageResult, minimumImage } from '../model/cell';
 import type { FragmentMatch } from './match-fragments';
 import { evaluatePair } from './pair';
-import { keptNotes, mergedNotes, NoteKind, noteOf, PairNotes } from './pair-notes';
+import { changedNotes, NoteKind, noteOf, PairNotes } from './pair-notes';
 import { PairSieve, Sieved } from './pair-sieve';
 import { isWithinCutoff, type Partners } from './partners';
 import type { System } from './system';
@@ -59,7 +59,7 @@ export function* resurveySteps(
   const lost = yield* before;
   const added = new PairNotes();
   const found = yield* countSteps(system, partners, fresh, added);
-  const notes = mergedNotes(keptNotes(earlier.survey.notes, newOf), added.sorted());
+  const notes = changedNotes(earlier.survey.notes, newOf, added.sorted());
   return { pairs: earlier.survey.pairs - lost + found, notes, looked: lost + found };
 }
 

@@ -10,7 +10,7 @@ import { isNarrow } from '../model/whole';
 import { ChainGraph } from './chain-graph';
 import type { FrameAnalysis } from './frame-analysis';
 import { clearMoments, emptyMoments, fillMoments, type Moments, momentColumns } from './moments';
-import { keptNotes, mergedNotes, PairNotes } from './pair-notes';
+import { changedNotes, PairNotes } from './pair-notes';
 import { Partners } from './partners';
 import { countSteps, type PairSurvey } from './survey';
 import { emptySystem, layOut, type System } from './system';
@@ -57,7 +57,8 @@ export function updateFrame(
   // What was said of the annotation may not hold for other fragments.
   if (updated?.model.fragments !== old.fragments && frame.problems.list().length > 0) return null;
   if (updated === null || updated.model.fragments.count < 2) return null;
-  const gone = [...updated.newOf.keys()].filter((f) => updated.newOf[f]! < 0);
+  const gone: number[] = [];
+  for (let f = 0; f < updated.newOf.length; f++) if (updated.newOf[f]! < 0) gone.push(f);
   const lost = finish(countSteps(frame.system, frame.partners, gone));
   const isSameSet = updated.model.fragments === old.fragments;
   const { system, partners } = isSameSet ? rewritten(frame, updated) : rebuilt(frame, updated);
@@ -67,7 +68,7 @@ export function updateFrame(
     frame: { ...frame, model: updated.model, moments: system.moments, system, partners },
     survey: {
       pairs: survey.pairs - lost + found,
-      notes: mergedNotes(keptNotes(survey.notes, updated.newOf), added.sorted()),
+      notes: changedNotes(survey.notes, updated.newOf, added.sorted()),
       looked: lost + found,
     },
     atomGrid,

@@ -83,7 +83,9 @@ export function updateModel(
 
 /** The fragments by bonds after some atoms have changed theirs: only the atoms of their fragments are sorted anew. */
 function refragmented({ fragments }: FrameModel, pairs: ClosePairs, rebonded: readonly number[]): FragmentSet {
-  const labels = Int32Array.from(fragments.ofAtom, (f) => (f < 0 ? -1 : fragments.members[fragments.starts[f]!]!));
+  const { ofAtom, members, starts } = fragments;
+  const labels = new Int32Array(ofAtom.length);
+  for (let i = 0; i < labels.length; i++) labels[i] = ofAtom[i]! < 0 ? -1 : members[starts[ofAtom[i]!]!]!;
   const region = [...new Set(rebonded.flatMap((atom) => [...atomsOf(fragments, fragments.ofAtom[atom]!)]))].sort(
     (a, b) => a - b,
   );

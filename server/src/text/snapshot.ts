@@ -68,6 +68,11 @@ interface Mirror {
   readonly isAscii: boolean;
 }
 
+function isAsciiText(text: string): boolean {
+  for (let i = 0; i < text.length; i++) if (text.charCodeAt(i) >= NOT_ASCII) return false;
+  return true;
+}
+
 function mirror(text: string): Mirror {
   const length = text.length;
   const bytes = new Uint8Array(length + PADDING);
@@ -103,26 +108,25 @@ export function splicedSnapshot(old: Snapshot, splices: readonly (Span & { reado
   const length = old.length + growth;
   const bytes = new Uint8Array(length + PADDING);
   const pieces: string[] = [];
-  let { isAscii } = old;
+  // As long as the bytes tell all, no string is made of them.
+  const isAscii = old.isAscii && splices.every(({ text }) => isAsciiText(text));
   let from = 0;
   let at = 0;
   const keep = (to: number) => {
     bytes.set(old.bytes.subarray(from, to), at);
     at += to - from;
-    pieces.push(old.slice(from, to));
+    if (!isAscii) pieces.push(old.slice(from, to));
   };
   for (const { start, end, text } of splices) {
     keep(start);
-    const piece = mirror(text);
-    bytes.set(piece.bytes.subarray(0, text.length), at);
-    isAscii &&= piece.isAscii;
+    bytes.set(mirror(text).bytes.subarray(0, text.length), at);
     at += text.length;
     pieces.push(text);
     from = end;
   }
   keep(old.length);
   bytes.fill(LINE_FEED, length);
-  return new TextSnapshot(pieces.join(''), { bytes, isAscii });
+  return isAscii ? new AsciiSnapshot(bytes, length) : new TextSnapshot(pieces.join(''), { bytes, isAscii });
 }
 
 /**

@@ -22,14 +22,15 @@ export function reportDipolesAgainstCharges(context: RuleContext): void {
   const { moments, model } = context.frame;
   for (let f = 0; f < context.ownFragments; f++) {
     const source = moments.dipoleSource[f];
-    if ((source !== 'annotated' && source !== 'axis') || Math.abs(moments.chargeE[f]!) > ION_CHARGE_E) continue;
+    if ((source !== 'annotated' && source !== 'axis') || Number.isNaN(moments.columnChargeE[f]!)) continue;
+    if (Math.abs(moments.chargeE[f]!) > ION_CHARGE_E) continue;
     const annotated = vectorAt(moments.dipoleEA, f);
     const column = vectorAt(moments.columnDipoleEA, f);
     const difference = Math.hypot(...annotated.map((value, a) => value - column[a as 0]));
     const note = model.notes[f]!;
     const written = note.writtenDipole ?? note.writtenSize;
-    // NaN (no charges, no direction) compares false.
-    if (!(difference >= AGREEMENT_EA) || written === null || Number.isNaN(moments.columnChargeE[f]!)) continue;
+    // NaN (no direction) compares false.
+    if (!(difference >= AGREEMENT_EA) || written === null) continue;
     compare(context, f, annotated, column, written);
   }
 }

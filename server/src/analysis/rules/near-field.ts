@@ -31,48 +31,48 @@ export function reportNearField(context: RuleContext, notes: PairNotes): void {
 class NearField {
   readonly #context: RuleContext;
   readonly #notes: PairNotes;
-  /** 1 for a fragment that is told about a near partner, and so not about the edge too. */
+  /** 1 for each fragment of this file that takes part in a near pair; such a one is not told about the edge too. */
   readonly #isNear: Uint8Array;
+  readonly #isAtEdge: Uint8Array;
+  readonly #pairs = { near: 0, edge: 0 };
 
   constructor(context: RuleContext, notes: PairNotes) {
     this.#context = context;
     this.#notes = notes;
-    this.#isNear = this.#concerned(NoteKind.near);
+    this.#isNear = new Uint8Array(context.ownFragments);
+    this.#isAtEdge = new Uint8Array(context.ownFragments);
+    const { count, kind, first, second } = notes;
+    for (let k = 0; k < count; k++) {
+      if (kind[k] === NoteKind.clash) continue;
+      const isNear = kind[k] === NoteKind.near;
+      this.#pairs[isNear ? 'near' : 'edge']++;
+      const concerned = isNear ? this.#isNear : this.#isAtEdge;
+      // A fragment of a companion file lies past the end, where nothing is kept.
+      concerned[first[k]!] = 1;
+      concerned[second[k]!] = 1;
+    }
+    for (let f = 0; f < this.#isNear.length; f++) if (this.#isNear[f]) this.#isAtEdge[f] = 0;
   }
 
   report(): void {
-    this.#reportCode('near-field', NoteKind.near, this.#isNear);
-    const atEdge = this.#concerned(NoteKind.edge);
-    for (let f = 0; f < atEdge.length; f++) if (this.#isNear[f]) atEdge[f] = 0;
-    this.#reportCode('edge-field', NoteKind.edge, atEdge);
+    this.#reportCode('near-field', NoteKind.near, this.#isNear, this.#pairs.near);
+    this.#reportCode('edge-field', NoteKind.edge, this.#isAtEdge, this.#pairs.edge);
   }
 
-  /** 1 for each fragment of this file that takes part in a pair of a kind. */
-  #concerned(kind: NoteKind): Uint8Array {
-    const notes = this.#notes;
-    const own = this.#context.ownFragments;
-    const concerned = new Uint8Array(own);
-    for (let k = 0; k < notes.count; k++) {
-      if (notes.kind[k] !== kind) continue;
-      // A fragment of a companion file lies past the end, where nothing is kept.
-      concerned[notes.first[k]!] = 1;
-      concerned[notes.second[k]!] = 1;
-    }
-    return concerned;
-  }
-
-  #reportCode(code: FindingCode, kind: NoteKind, concerned: Uint8Array): void {
-    let count = 0;
-    for (let f = 0; f < concerned.length; f++) count += concerned[f]!;
-    if (count === 0) return;
-    if (count > MOST_FRAGMENTS) {
-      this.#reportFrame(code, kind, concerned, count);
+  #reportCode(code: FindingCode, kind: NoteKind, concerned: Uint8Array, pairs: number): void {
+    let fragments = 0;
+    for (let f = 0; f < concerned.length; f++) fragments += concerned[f]!;
+    if (fragments === 0) return;
+    if (fragments > MOST_FRAGMENTS) {
+      this.#reportFrame(code, kind, concerned, `${pairs} pairs of ${fragments} fragments`);
       return;
     }
     const context = this.#context;
     for (let f = 0; f < concerned.length; f++) {
       if (!concerned[f]) continue;
-      const [worst, ...others] = this.#worst(kind, (first, second) => first === f || second === f);
+      const only = new Uint8Array(concerned.length);
+      only[f] = 1;
+      const [worst, ...others] = this.#worst(kind, only);
       context.findings.add(
         code,
         context.placeOf(f)!,
@@ -82,28 +82,27 @@ class NearField {
     }
   }
 
-  #reportFrame(code: FindingCode, kind: NoteKind, concerned: Uint8Array, fragments: number): void {
+  #reportFrame(code: FindingCode, kind: NoteKind, concerned: Uint8Array, pairs: string): void {
     const context = this.#context;
-    const worst = this.#worst(kind, (first, second) => concerned[first] === 1 || concerned[second] === 1);
+    const worst = this.#worst(kind, concerned);
     const where = code === 'near-field' ? 'does not hold' : 'is at its edge';
-    const pairs = this.#notes.kind.subarray(0, this.#notes.count).reduce((sum, k) => sum + (k === kind ? 1 : 0), 0);
     context.findings.add(
       code,
       context.headSpan(),
-      () =>
-        `The point dipole ${where} for ${pairs} pairs of ${fragments} fragments; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
+      () => `The point dipole ${where} for ${pairs}; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
       () => ({ related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)) }),
     );
   }
 
-  /** The strongest pairs of a kind among those wanted, as many as a finding shows: one and ten others. */
-  #worst(kind: NoteKind, isWanted: (first: number, second: number) => boolean): Noted[] {
+  /** The strongest pairs of a kind that the given fragments take part in, as many as a finding shows: one and ten others. */
+  #worst(kind: NoteKind, concerned: Uint8Array): Noted[] {
     const { count, kind: kinds, first, second, strengthKJPerMol } = this.#notes;
     const worst: Noted[] = [];
     let least = Number.NEGATIVE_INFINITY;
     for (let k = 0; k < count; k++) {
       // Of equal ones the first stands, which has come already.
-      if (kinds[k] !== kind || strengthKJPerMol[k]! <= least || !isWanted(first[k]!, second[k]!)) continue;
+      if (kinds[k] !== kind || strengthKJPerMol[k]! <= least) continue;
+      if (concerned[first[k]!] !== 1 && concerned[second[k]!] !== 1) continue;
       const noted = { first: first[k]!, second: second[k]!, strengthKJPerMol: strengthKJPerMol[k]! };
       let at = worst.length;
       while (at > 0 && worst[at - 1]!.strengthKJPerMol < noted.strengthKJPerMol) at--;
