@@ -18,12 +18,34 @@ const shared = {
   define: { POLEWISE_VERSION: JSON.stringify(version) },
 };
 
+/**
+ * Keeps the evaluator of units in a bundle of its own, loaded at its first call: it is larger than all the rest, few files need it, and a
+ * start need not wait for it.
+ */
+const lazyUnits = {
+  name: 'lazy-units',
+  setup({ onLoad }) {
+    onLoad({ filter: /[\\/]unit-evaluator\.ts$/ }, () => ({
+      contents: `export const createUnitEvaluator = () => require('./units.cjs').createUnitEvaluator();`,
+      loader: 'js',
+    }));
+  },
+};
+const withLazyUnits = { plugins: [lazyUnits], external: ['./units.cjs'] };
+
 /** What goes into the .vsix is made small; names are kept so that a stack trace stays readable. */
 const packaged = { ...shared, minify: true, keepNames: true };
 
 const results = await Promise.all([
   build({
+    ...packaged,
+    entryPoints: { units: 'server/src/physics/unit-evaluator.ts' },
+    outdir: 'server/dist',
+    outExtension: { '.js': '.cjs' },
+  }),
+  build({
     ...shared,
+    ...withLazyUnits,
     entryPoints: { cli: 'server/src/entry/cli.ts', docs: 'server/src/entry/docs.ts' },
     outdir: 'server/dist',
     outExtension: { '.js': '.cjs' },
@@ -37,6 +59,7 @@ const results = await Promise.all([
   }),
   build({
     ...packaged,
+    ...withLazyUnits,
     entryPoints: ['server/src/entry/server.ts'],
     outfile: 'server/dist/server.cjs',
   }),

@@ -1,4 +1,5 @@
 import { bondLimitA, CLASH_COVALENT, CLASH_RATIO, SHARED_PROTON_RATIO, sharesProton } from '../model/close-pairs';
+import { ELEMENT_STRIDE, elementPairTable } from '../physics/element-pair-table';
 import { COVALENT_RADIUS_A, isMetal, VDW_RADIUS_A } from '../physics/elements';
 import type { System } from './system';
 
@@ -22,17 +23,9 @@ export interface AtomScan {
   fittedSum: number;
 }
 
-const SIZE = 119;
-
-function pairTable(entry: (z1: number, z2: number) => number): Float64Array {
-  const table = new Float64Array(SIZE * SIZE);
-  for (let z1 = 0; z1 < SIZE; z1++) for (let z2 = 0; z2 < SIZE; z2++) table[SIZE * z1 + z2] = entry(z1, z2);
-  return table;
-}
-
-/** Squares of the sums of van der Waals radii, Å², at `119 z1 + z2`. */
-export const VDW_SUM2_A2 = pairTable((z1, z2) => (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!) ** 2);
-const COVALENT_CLASH2 = pairTable((z1, z2) => {
+/** Squares of the sums of van der Waals radii, Å². */
+export const vdwSums2A2 = elementPairTable((z1, z2) => (VDW_RADIUS_A[z1]! + VDW_RADIUS_A[z2]!) ** 2);
+const covalentClashes2 = elementPairTable((z1, z2) => {
   const sum = COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!;
   return Number.isNaN(sum) ? 0 : (CLASH_COVALENT * sum) ** 2;
 });
@@ -41,7 +34,7 @@ const COVALENT_CLASH2 = pairTable((z1, z2) => {
 const HYDROGEN_PARTNERS = new Set([7, 8, 9, 16, 17, 35, 53]);
 
 /** 1 where a pair of elements may come closer than the van der Waals rule allows. */
-const LENIENT = pairTable((z1, z2) => {
+const leniences = elementPairTable((z1, z2) => {
   const hydrogen = (z1 === 1 && HYDROGEN_PARTNERS.has(z2)) || (z2 === 1 && HYDROGEN_PARTNERS.has(z1));
   return hydrogen || isMetal(z1) || isMetal(z2) ? 1 : 0;
 });
@@ -66,6 +59,9 @@ export function scanAtoms(
   wantFitted: boolean,
 ): AtomScan {
   const { starts, localA, element, ghost, columnE, fittedE } = system;
+  const vdwSum2 = vdwSums2A2();
+  const covalentClash2 = covalentClashes2();
+  const lenient = leniences();
   const bonded = system.chains.areBonded(f, g);
   const opposite =
     system.isIon[f] === 1 && system.isIon[g] === 1 && system.moments.chargeE[f]! * system.moments.chargeE[g]! < 0;
@@ -92,8 +88,8 @@ export function scanAtoms(
       const inverse = 1 / Math.sqrt(r2);
       columnSum += qi * columnE[j]! * inverse;
       if (wantFitted) fittedSum += ti * fittedE[j]! * inverse;
-      const pair = SIZE * zi + element[j]!;
-      const ratio2 = r2 / VDW_SUM2_A2[pair]!;
+      const pair = ELEMENT_STRIDE * zi + element[j]!;
+      const ratio2 = r2 / vdwSum2[pair]!;
       // Nothing below concerns atoms that are farther than the closest and than any clash.
       const close = ratio2 < CLASH_RATIO * CLASH_RATIO;
       if (ratio2 >= best2 && !close) continue;
@@ -103,7 +99,7 @@ export function scanAtoms(
         closest1 = i;
         closest2 = j;
       }
-      clash ||= close && (!(opposite || LENIENT[pair] === 1) || r2 < COVALENT_CLASH2[pair]!);
+      clash ||= close && (!(opposite || lenient[pair] === 1) || r2 < covalentClash2[pair]!);
       if (r2 < SHARED_REACH2 && !sharedProton) {
         sharedProton = isShared(system, i, f, j, r2) || isShared(system, j, g, i, r2);
       }
@@ -113,7 +109,9 @@ export function scanAtoms(
   return {
     closest1,
     closest2,
-    closestA: hasPair ? Math.sqrt(best2 * VDW_SUM2_A2[SIZE * element[closest1]! + element[closest2]!]!) : Number.NaN,
+    closestA: hasPair
+      ? Math.sqrt(best2 * vdwSum2[ELEMENT_STRIDE * element[closest1]! + element[closest2]!]!)
+      : Number.NaN,
     contactRatio: Math.sqrt(best2),
     clash,
     sharedProton,

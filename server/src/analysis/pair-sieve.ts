@@ -1,4 +1,5 @@
-import { VDW_SUM2_A2 } from './contact';
+import { ELEMENT_STRIDE } from '../physics/element-pair-table';
+import { vdwSums2A2 } from './contact';
 import { CONTACT_REACH_A, isWithinCutoff } from './partners';
 import { NEGLIGIBLE_KT } from './reference';
 import type { System } from './system';
@@ -16,7 +17,6 @@ export type Sieved = (typeof Sieved)[keyof typeof Sieved];
 
 /** An error this near to its bound is left to the evaluation, which adds in another order. */
 const SURE_SHARE = 0.99;
-const COLUMNS = 119;
 
 /**
  * Tells most pairs of a large frame apart without evaluating them: nothing is allocated, no angle taken, and only what the regime and the
@@ -26,6 +26,7 @@ export class PairSieve {
   readonly #system: System;
   /** 1 where nothing can be said of a fragment's pairs but whether they touch. */
   readonly #blind: Uint8Array;
+  readonly #vdwSum2A2 = vdwSums2A2();
 
   constructor(system: System) {
     this.#system = system;
@@ -107,6 +108,7 @@ export class PairSieve {
   /** The same where no atoms touch, else NaN. */
   #coulombOfApart(f: number, g: number, x: number, y: number, z: number, charges: Float64Array): number {
     const { starts, localA, element } = this.#system;
+    const vdwSum2A2 = this.#vdwSum2A2;
     const from = starts[g]!;
     const to = starts[g + 1]!;
     let sum = 0;
@@ -114,14 +116,14 @@ export class PairSieve {
       const ox = x - localA[3 * i]!;
       const oy = y - localA[3 * i + 1]!;
       const oz = z - localA[3 * i + 2]!;
-      const row = COLUMNS * element[i]!;
+      const row = ELEMENT_STRIDE * element[i]!;
       let field = 0;
       for (let j = from; j < to; j++) {
         const dx = localA[3 * j]! + ox;
         const dy = localA[3 * j + 1]! + oy;
         const dz = localA[3 * j + 2]! + oz;
         const r2 = dx * dx + dy * dy + dz * dz;
-        if (r2 <= VDW_SUM2_A2[row + element[j]!]!) return Number.NaN;
+        if (r2 <= vdwSum2A2[row + element[j]!]!) return Number.NaN;
         field += charges[j]! / Math.sqrt(r2);
       }
       sum += charges[i]! * field;
@@ -131,13 +133,14 @@ export class PairSieve {
 
   #touches(f: number, g: number, x: number, y: number, z: number): boolean {
     const { starts, localA, element } = this.#system;
+    const vdwSum2A2 = this.#vdwSum2A2;
     for (let i = starts[f]!; i < starts[f + 1]!; i++) {
-      const row = COLUMNS * element[i]!;
+      const row = ELEMENT_STRIDE * element[i]!;
       for (let j = starts[g]!; j < starts[g + 1]!; j++) {
         const dx = localA[3 * j]! - localA[3 * i]! + x;
         const dy = localA[3 * j + 1]! - localA[3 * i + 1]! + y;
         const dz = localA[3 * j + 2]! - localA[3 * i + 2]! + z;
-        if (dx * dx + dy * dy + dz * dz <= VDW_SUM2_A2[row + element[j]!]!) return true;
+        if (dx * dx + dy * dy + dz * dz <= vdwSum2A2[row + element[j]!]!) return true;
       }
     }
     return false;

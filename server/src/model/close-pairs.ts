@@ -1,6 +1,7 @@
 import { finish, inStrides, type Steps } from '../base/steps';
 import { AtomFlag, type AtomTable } from '../formats/tree';
-import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, MAX_ATOMIC_NUMBER, VDW_RADIUS_A } from '../physics/elements';
+import { ELEMENT_STRIDE, elementPairTable } from '../physics/element-pair-table';
+import { BOND_CLASS, BondClass, COVALENT_RADIUS_A, VDW_RADIUS_A } from '../physics/elements';
 import type { Cell } from './cell';
 import { NeighbourBuffer } from './neighbour-buffer';
 import { PointGrid } from './point-grid';
@@ -46,14 +47,10 @@ function closeLimitA(z1: number, z2: number): number {
   return Number.isNaN(bond) ? clash : Math.max(bond, clash);
 }
 
-const SIZE = MAX_ATOMIC_NUMBER + 1;
-const CLOSE_LIMITS_A = Float64Array.from({ length: SIZE * SIZE }, (_, k) =>
-  closeLimitA(Math.floor(k / SIZE), k % SIZE),
-);
-
+const closeLimits = elementPairTable(closeLimitA);
 /** Squares a little above those limits: what lies beyond needs no exact distance. */
-const SURELY_BEYOND_A2 = CLOSE_LIMITS_A.map((limit) => limit * limit * (1 + 1e-12));
-const BOND_LIMITS_A = Float64Array.from({ length: SIZE * SIZE }, (_, k) => bondLimitA(Math.floor(k / SIZE), k % SIZE));
+const surelyBeyond = elementPairTable((z1, z2) => closeLimitA(z1, z2) ** 2 * (1 + 1e-12));
+const bondLimits = elementPairTable(bondLimitA);
 
 /** Whether an element can share a proton with another: N, O, F. */
 export function sharesProton(z: number): boolean {
@@ -99,11 +96,12 @@ export function* closePairSteps(atoms: AtomTable, positionA: Float64Array, cell:
 /** The solid atoms of a frame in cells as wide as its elements need. */
 export function closePairGrid(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): PointGrid {
   const solid = solidAtoms(atoms);
-  const isPresent = new Uint8Array(SIZE);
+  const isPresent = new Uint8Array(ELEMENT_STRIDE);
   for (let k = 0; k < solid.length; k++) isPresent[atoms.element[solid[k]!]!] = 1;
   const present = [...isPresent.keys()].filter((z) => isPresent[z] === 1);
+  const limitsA = closeLimits();
   let radius = 0.1;
-  for (const z1 of present) for (const z2 of present) radius = Math.max(radius, CLOSE_LIMITS_A[SIZE * z1 + z2]!);
+  for (const z1 of present) for (const z2 of present) radius = Math.max(radius, limitsA[ELEMENT_STRIDE * z1 + z2]!);
   return new PointGrid(positionA, solid, radius, cell);
 }
 
@@ -146,6 +144,8 @@ export class ClosePairList {
 export class ClosePairSearch {
   readonly #element: Uint8Array;
   readonly #grid: PointGrid;
+  readonly #limitsA = closeLimits();
+  readonly #surelyBeyondA2 = surelyBeyond();
   readonly #buffer = new NeighbourBuffer();
 
   constructor(atoms: AtomTable, grid: PointGrid) {
@@ -157,22 +157,24 @@ export class ClosePairSearch {
   addPartners(i: number, onlyAfter: boolean, list: ClosePairList): void {
     const buffer = this.#buffer;
     const element = this.#element;
+    const limitsA = this.#limitsA;
+    const surelyBeyondA2 = this.#surelyBeyondA2;
     this.#grid.gather(i, this.#grid.radiusA, onlyAfter, buffer);
     list.reserve(buffer.count);
     const { index, vectorA } = buffer;
     const { first, second, distanceA } = list;
     const begin = list.count;
     let count = begin;
-    const row = SIZE * element[i]!;
+    const row = ELEMENT_STRIDE * element[i]!;
     for (let k = 0; k < buffer.count; k++) {
       const j = index[k]!;
       const x = vectorA[3 * k]!;
       const y = vectorA[3 * k + 1]!;
       const z = vectorA[3 * k + 2]!;
       const elements = row + element[j]!;
-      if (x * x + y * y + z * z > SURELY_BEYOND_A2[elements]!) continue;
+      if (x * x + y * y + z * z > surelyBeyondA2[elements]!) continue;
       const d = Math.hypot(x, y, z);
-      if (d > CLOSE_LIMITS_A[elements]!) continue;
+      if (d > limitsA[elements]!) continue;
       // Kept in order of j: few partners, so an insertion is cheapest.
       let at = count;
       while (at > begin && second[at - 1]! > j) {
@@ -205,6 +207,7 @@ const NO_PAIRS: ClosePairs = {
 /** Decides which close pairs are bonds. */
 export function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
   const { element } = atoms;
+  const limitsA = bondLimits();
   const nearest = new Int32Array(atoms.count).fill(-1);
   const nearestA = new Float64Array(atoms.count).fill(Number.POSITIVE_INFINITY);
   const offer = (hydrogen: number, partner: number, d: number) => {
@@ -213,7 +216,7 @@ export function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
     nearestA[hydrogen] = d;
   };
   const inReach = (k: number) => {
-    const limit = BOND_LIMITS_A[SIZE * element[pairs.first[k]!]! + element[pairs.second[k]!]!]!;
+    const limit = limitsA[ELEMENT_STRIDE * element[pairs.first[k]!]! + element[pairs.second[k]!]!]!;
     return pairs.distanceA[k]! <= limit;
   };
   for (let k = 0; k < pairs.count; k++) {

@@ -1,24 +1,4 @@
-import {
-  addDependencies,
-  create,
-  createUnitDependencies,
-  divideDependencies,
-  type MathJsInstance,
-  multiplyDependencies,
-  powDependencies,
-  subtractDependencies,
-  type Unit,
-  unitDependencies,
-} from 'mathjs';
-import {
-  AVOGADRO_PER_MOL,
-  BOHR_A,
-  BOHR_RADIUS_M,
-  DEBYE_E_A,
-  ELEMENTARY_CHARGE_C,
-  HARTREE_KJ_PER_MOL,
-  KILOCALORIE_KJ,
-} from './constants';
+import { createUnitEvaluator, type EvaluatedValue, type UnitEvaluator } from './unit-evaluator';
 
 /** What a quantity is asked to be; each is read into the unit that the program uses inside. */
 export type Dimension = 'dipoleEA' | 'temperatureK' | 'lengthA' | 'volumeA3' | 'energyKJPerMol' | 'number';
@@ -76,45 +56,13 @@ const TARGETS: Readonly<
   energyKJPerMol: { unit: 'kJ/mol', atomic: 'pwHartreePerMol', unitsWanted: 'kJ/mol, kcal/mol, meV or hartree' },
 };
 
-type Value = number | Unit;
+type Value = EvaluatedValue;
 
-interface Evaluator {
-  unit(value: number, unit: string): Unit;
-  add(a: Value, b: Value): Value;
-  subtract(a: Value, b: Value): Value;
-  multiply(a: Value, b: Value): Value;
-  divide(a: Value, b: Value): Value;
-  pow(a: Value, b: number): Value;
-}
+let evaluator: UnitEvaluator | undefined;
 
-let evaluator: Evaluator | undefined;
-
-/** The mathjs functions used and nothing else of it; made at first need, since most files carry plain numbers alone. */
-function theEvaluator(): Evaluator {
-  if (evaluator !== undefined) return evaluator;
-  const math = create({
-    unitDependencies,
-    createUnitDependencies,
-    addDependencies,
-    subtractDependencies,
-    multiplyDependencies,
-    divideDependencies,
-    powDependencies,
-  }) as MathJsInstance;
-  const define = (name: string, definition: string) => math.createUnit(name, definition);
-  define('pwCharge', `${ELEMENTARY_CHARGE_C} C`);
-  define('pwBohr', `${BOHR_RADIUS_M} m`);
-  define('pwChargeAngstrom', '1 pwCharge angstrom');
-  define('pwDebye', `${DEBYE_E_A} pwChargeAngstrom`);
-  define('pwAtomicDipole', `${BOHR_A} pwChargeAngstrom`);
-  define('pwAtomicVolume', `${BOHR_A ** 3} angstrom^3`);
-  define('pwCalorie', `${KILOCALORIE_KJ} J`);
-  define('pwKilocalorie', `${KILOCALORIE_KJ} kJ`);
-  define('pwElectronvoltPerMol', `${ELEMENTARY_CHARGE_C * AVOGADRO_PER_MOL} J/mol`);
-  define('pwMillielectronvoltPerMol', `${(ELEMENTARY_CHARGE_C * AVOGADRO_PER_MOL) / 1000} J/mol`);
-  define('pwHartreePerMol', `${HARTREE_KJ_PER_MOL} kJ/mol`);
-  define('pwMillihartreePerMol', `${HARTREE_KJ_PER_MOL / 1000} kJ/mol`);
-  evaluator = math as unknown as Evaluator;
+/** Made at first need, since most files carry plain numbers alone. */
+function theEvaluator(): UnitEvaluator {
+  evaluator ??= createUnitEvaluator();
   return evaluator;
 }
 
