@@ -56,8 +56,15 @@ export function* momentSteps(model: FrameModel, centre: Centre): Steps<Moments> 
 }
 
 /** Moments of so many fragments of which nothing is known. */
-export function emptyMoments(n: number): Moments {
-  const unknown = (size: number) => new Float64Array(size).fill(Number.NaN);
+function emptyMoments(n: number): Moments {
+  const moments = roomForMoments(n);
+  for (const [column] of momentColumns(moments)) column.fill(Number.NaN);
+  return moments;
+}
+
+/** Room for the moments of so many fragments, yet to be filled or cleared. */
+export function roomForMoments(n: number): Moments {
+  const unknown = (size: number) => new Float64Array(size);
   return {
     count: n,
     isAtom: new Uint8Array(n),

@@ -42,6 +42,14 @@ export class PairNotes {
     this.strengthKJPerMol[at] = strengthKJPerMol;
   }
 
+  /** How many notes are of a kind. */
+  countOf(wanted: NoteKind): number {
+    const { count, kind } = this;
+    let found = 0;
+    for (let k = 0; k < count; k++) if (kind[k] === wanted) found++;
+    return found;
+  }
+
   /** Puts the notes from `from` on, all of one first fragment, in order of the second. */
   sortRow(from: number): void {
     const { first, second, kind, strengthKJPerMol } = this;
@@ -75,6 +83,50 @@ export class PairNotes {
     this.add(from.first[k]!, from.second[k]!, from.kind[k] as NoteKind, from.strengthKJPerMol[k]!);
   }
 
+  /**
+   * Brings the notes up to date after some fragments have changed: those of pairs whose fragments both stay are kept under their new numbers
+   * (−1: gone; ascending among those that stay), and `added` (ordered) is put in. Nothing is allocated unless the list grows.
+   */
+  change(newOf: Int32Array, added: PairNotes): void {
+    const { first, second, kind, strengthKJPerMol } = this;
+    let kept = 0;
+    for (let k = 0; k < this.count; k++) {
+      const f = newOf[first[k]!]!;
+      const g = newOf[second[k]!]!;
+      if (f < 0 || g < 0) continue;
+      first[kept] = f;
+      second[kept] = g;
+      if (kept !== k) {
+        kind[kept] = kind[k]!;
+        strengthKJPerMol[kept] = strengthKJPerMol[k]!;
+      }
+      kept++;
+    }
+    this.count = kept;
+    this.#merge(added);
+  }
+
+  /** Puts an ordered list without a pair in common in, from the end so that nothing is overwritten before it is moved. */
+  #merge(added: PairNotes): void {
+    while (this.first.length < this.count + added.count) this.#grow();
+    const { first, second } = this;
+    let from = this.count - 1;
+    let next = added.count - 1;
+    this.count += added.count;
+    for (let at = this.count - 1; next >= 0; at--) {
+      const isKept = from >= 0 && (first[from]! - added.first[next]! || second[from]! - added.second[next]!) > 0;
+      if (isKept) this.#put(at, this, from--);
+      else this.#put(at, added, next--);
+    }
+  }
+
+  #put(at: number, { first, second, kind, strengthKJPerMol }: PairNotes, k: number): void {
+    this.first[at] = first[k]!;
+    this.second[at] = second[k]!;
+    this.kind[at] = kind[k]!;
+    this.strengthKJPerMol[at] = strengthKJPerMol[k]!;
+  }
+
   #grow(): void {
     const room = 2 * this.first.length;
     const longer = <T extends Int32Array | Uint8Array | Float64Array>(from: T, to: T): T => {
@@ -86,28 +138,4 @@ export class PairNotes {
     this.kind = longer(this.kind, new Uint8Array(room));
     this.strengthKJPerMol = longer(this.strengthKJPerMol, new Float64Array(room));
   }
-}
-
-/**
- * Notes after some fragments have changed: those of pairs whose fragments both stay, under their new numbers (−1: gone; ascending among
- * those that stay), with `added` (ordered) put in.
- */
-export function changedNotes(notes: PairNotes, newOf: Int32Array, added: PairNotes): PairNotes {
-  const changed = new PairNotes(notes.count + added.count);
-  let next = 0;
-  for (let k = 0; k < notes.count; k++) {
-    const first = newOf[notes.first[k]!]!;
-    const second = newOf[notes.second[k]!]!;
-    if (first < 0 || second < 0) continue;
-    while (next < added.count && (added.first[next]! - first || added.second[next]! - second) < 0) {
-      changed.take(added, next++);
-    }
-    const at = changed.count++;
-    changed.first[at] = first;
-    changed.second[at] = second;
-    changed.kind[at] = notes.kind[k]!;
-    changed.strengthKJPerMol[at] = notes.strengthKJPerMol[k]!;
-  }
-  while (next < added.count) changed.take(added, next++);
-  return changed;
 }

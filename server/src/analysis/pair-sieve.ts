@@ -24,20 +24,16 @@ const SURE_SHARE = 0.99;
  */
 export class PairSieve {
   readonly #system: System;
-  /** 1 where nothing can be said of a fragment's pairs but whether they touch. */
-  readonly #blind: Uint8Array;
   readonly #vdwSum2A2 = vdwSums2A2();
 
   constructor(system: System) {
     this.#system = system;
-    this.#blind = new Uint8Array(system.count);
-    for (let f = 0; f < system.count; f++) this.renew(f);
   }
 
-  /** Takes note that what is known of a fragment has changed. */
-  renew(f: number): void {
+  /** Whether nothing can be said of a fragment's pairs but whether they touch. */
+  #isBlind(f: number): boolean {
     const { featureless, moments } = this.#system;
-    this.#blind[f] = featureless[f] === 1 || Number.isNaN(moments.dipoleEA[3 * f]!) ? 1 : 0;
+    return featureless[f] === 1 || Number.isNaN(moments.dipoleEA[3 * f]!);
   }
 
   /** Looks at fragments `f` < `g`, both usable, with the vector between their centres (minimum image, Å). */
@@ -50,7 +46,8 @@ export class PairSieve {
     const mayTouch = distanceA - extent1 - extent2 <= CONTACT_REACH_A;
     if (!isWithinCutoff(system, f, g, distanceA)) return mayTouch ? Sieved.open : Sieved.outside;
     if (distanceA < 1e-6 || distanceA < Math.max(extent1, extent2) || system.chains.areBonded(f, g)) return Sieved.open;
-    if (this.#blind[f] || this.#blind[g]) return mayTouch && this.#touches(f, g, x, y, z) ? Sieved.open : Sieved.quiet;
+    if (this.#isBlind(f) || this.#isBlind(g))
+      return mayTouch && this.#touches(f, g, x, y, z) ? Sieved.open : Sieved.quiet;
     const charges =
       system.ownCharges[f] && system.ownCharges[g]
         ? system.columnE

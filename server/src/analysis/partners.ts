@@ -35,12 +35,11 @@ export class Partners {
 
   constructor(system: System) {
     this.#system = system;
-    const all = Int32Array.from({ length: system.count }, (_, f) => f).filter((f) => system.usable[f] === 1);
     const reach = reachOf(system);
-    this.#tiers = tiersOf(system, all, reach);
+    this.#tiers = tiersOf(system, system.usable, reach);
     this.#ionTiers = tiersOf(
       system,
-      all.filter((f) => system.isIon[f] === 1),
+      system.isIon.map((isIon, f) => isIon & system.usable[f]!),
       ION_CUTOFFS * reach,
     );
   }
@@ -115,24 +114,24 @@ function reachOf(system: System): number {
   return Math.max(system.settings.cutoffA, CONTACT_REACH_A);
 }
 
-function tiersOf(system: System, members: Int32Array, reachA: number): Tier[] {
+/** Grids of the fragments that are marked by 1, by extent. */
+function tiersOf(system: System, isMember: Uint8Array, reachA: number): Tier[] {
   const { extentA, centreA } = system.moments;
-  const tierOf = (f: number) => Math.max(0, Math.ceil(Math.log2(extentA[f]! / FIRST_TIER_EXTENT_A)));
-  const byTier = new Map<number, number[]>();
-  for (const f of members) {
-    const tier = tierOf(f);
-    const list = byTier.get(tier);
-    if (list === undefined) byTier.set(tier, [f]);
-    else list.push(f);
+  const members: Int32Array[] = [];
+  const counts: number[] = [];
+  for (let f = 0; f < system.count; f++) {
+    if (isMember[f] !== 1) continue;
+    const small = extentA[f]! <= FIRST_TIER_EXTENT_A;
+    const tier = small ? 0 : Math.ceil(Math.log2(extentA[f]! / FIRST_TIER_EXTENT_A));
+    members[tier] ??= new Int32Array(system.count);
+    const count = counts[tier] ?? 0;
+    members[tier][count] = f;
+    counts[tier] = count + 1;
   }
-  return [...byTier.values()].map((list) => {
+  return members.flatMap((all, tier) => {
+    const list = all.slice(0, counts[tier]);
     const largestA = list.reduce((most, f) => Math.max(most, extentA[f]!), 0);
-    const grid = new PointGrid(
-      centreA,
-      Int32Array.from(list),
-      (reachA + 2 * largestA) * ROUNDING * ROUNDING,
-      system.cell,
-    );
+    const grid = new PointGrid(centreA, list, (reachA + 2 * largestA) * ROUNDING * ROUNDING, system.cell);
     return { grid, largestA };
   });
 }

@@ -2,7 +2,7 @@ import type { Steps } from '../base/steps';
 import { imageResult, minimumImage } from '../model/cell';
 import type { FragmentMatch } from './match-fragments';
 import { evaluatePair } from './pair';
-import { changedNotes, NoteKind, noteOf, PairNotes } from './pair-notes';
+import { NoteKind, noteOf, PairNotes } from './pair-notes';
 import { PairSieve, Sieved } from './pair-sieve';
 import { isWithinCutoff, type Partners } from './partners';
 import type { System } from './system';
@@ -47,7 +47,7 @@ export interface Surveyed {
 
 /**
  * The survey of a system that differs from an earlier one in a few fragments: pairs of all others are taken over. The result is that of
- * {@link surveySteps}.
+ * {@link surveySteps}; the notes of the earlier survey become those of the new one.
  */
 export function* resurveySteps(
   earlier: Surveyed,
@@ -59,7 +59,8 @@ export function* resurveySteps(
   const lost = yield* before;
   const added = new PairNotes();
   const found = yield* countSteps(system, partners, fresh, added);
-  const notes = changedNotes(earlier.survey.notes, newOf, added.sorted());
+  const { notes } = earlier.survey;
+  notes.change(newOf, added.sorted());
   return { pairs: earlier.survey.pairs - lost + found, notes, looked: lost + found };
 }
 

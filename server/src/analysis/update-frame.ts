@@ -4,13 +4,13 @@ import type { CoordinateTree } from '../formats/tree';
 import { AtomFlag, type AtomTable } from '../formats/tree';
 import { ClosePairSearch, closePairGrid } from '../model/close-pairs';
 import type { PointGrid } from '../model/point-grid';
-import { type UpdatedModel, updateModel } from '../model/update-model';
+import { runsOf, type UpdatedModel, updateModel } from '../model/update-model';
 import { updateClosePairs } from '../model/update-pairs';
 import { isNarrow } from '../model/whole';
 import { ChainGraph } from './chain-graph';
 import type { FrameAnalysis } from './frame-analysis';
-import { clearMoments, emptyMoments, fillMoments, type Moments, momentColumns } from './moments';
-import { changedNotes, PairNotes } from './pair-notes';
+import { clearMoments, fillMoments, type Moments, momentColumns, roomForMoments } from './moments';
+import { PairNotes } from './pair-notes';
 import { Partners } from './partners';
 import { countSteps, type PairSurvey } from './survey';
 import { emptySystem, layOut, type System } from './system';
@@ -64,13 +64,11 @@ export function updateFrame(
   const { system, partners } = isSameSet ? rewritten(frame, updated) : rebuilt(frame, updated);
   const added = new PairNotes();
   const found = finish(countSteps(system, partners, updated.fresh, added));
+  const { notes } = survey;
+  notes.change(updated.newOf, added.sorted());
   return {
     frame: { ...frame, model: updated.model, moments: system.moments, system, partners },
-    survey: {
-      pairs: survey.pairs - lost + found,
-      notes: changedNotes(survey.notes, updated.newOf, added.sorted()),
-      looked: lost + found,
-    },
+    survey: { pairs: survey.pairs - lost + found, notes, looked: lost + found },
     atomGrid,
   };
 }
@@ -116,27 +114,16 @@ function rewritten(frame: FrameAnalysis, { model, fresh }: UpdatedModel): Rewrit
 
 /** The system of other fragments: those that stay are copied in runs. */
 function rebuilt(frame: FrameAnalysis, { model, newOf, fresh }: UpdatedModel): Rewritten {
-  const moments = emptyMoments(model.fragments.count);
+  const moments = roomForMoments(model.fragments.count);
   const system = emptySystem([{ model, moments }], moments, frame.settings);
   system.starts.set(model.fragments.starts);
   for (const [from, to, count] of runsOf(newOf)) copyRun(frame.system, system, from, to, count);
   for (const f of fresh) {
+    clearMoments(moments, f);
     fillMoments(model, frame.settings.centre, f, moments);
     layOut(system, model, f, f, 0);
   }
   return { system, partners: new Partners(system) };
-}
-
-/** Runs of fragments that stay side by side: first old number, first new number, how many. */
-function runsOf(newOf: Int32Array): [from: number, to: number, count: number][] {
-  const runs: [number, number, number][] = [];
-  for (let f = 0; f < newOf.length; f++) {
-    if (newOf[f]! < 0) continue;
-    const last = runs[runs.length - 1];
-    if (last !== undefined && last[0] + last[2] === f && last[1] + last[2] === newOf[f]) last[2]++;
-    else runs.push([f, newOf[f]!, 1]);
-  }
-  return runs;
 }
 
 function copyRun(old: System, now: System, from: number, to: number, count: number): void {

@@ -125,6 +125,22 @@ function changedBonds(old: Int32Array, now: Int32Array): number[] {
   return changed;
 }
 
+/** Runs of fragments that stay side by side: first old number, first new number, how many. */
+export function runsOf(newOf: Int32Array): [from: number, to: number, count: number][] {
+  const runs: [number, number, number][] = [];
+  let last: [number, number, number] | undefined;
+  for (let f = 0; f < newOf.length; f++) {
+    const now = newOf[f]!;
+    if (now < 0) continue;
+    if (last !== undefined && last[0] + last[2] === f && last[1] + last[2] === now) last[2]++;
+    else {
+      last = [f, now, 1];
+      runs.push(last);
+    }
+  }
+  return runs;
+}
+
 function freshFragments({ count }: FragmentSet, newOf: Int32Array): number[] {
   const isKept = new Uint8Array(count);
   for (let f = 0; f < newOf.length; f++) if (newOf[f]! >= 0) isKept[newOf[f]!] = 1;
@@ -149,10 +165,17 @@ function describe(
   fresh: readonly number[],
 ): Pick<FrameModel, 'formulas' | 'names' | 'labels' | 'notes'> | null {
   if (tree.entries.some((entry) => LISTED_KEYS.has(entry.key))) return null;
+  const runs = runsOf(newOf);
   const carried = <T>(values: readonly T[], unknown: (f: number) => T): T[] => {
-    const now = new Array<T>(set.count);
-    for (let f = 0; f < newOf.length; f++) if (newOf[f]! >= 0) now[newOf[f]!] = values[f]!;
-    for (const f of fresh) now[f] = unknown(f);
+    const now: T[] = [];
+    const fill = (to: number) => {
+      while (now.length < to) now.push(unknown(now.length));
+    };
+    for (const [from, to, count] of runs) {
+      fill(to);
+      for (let k = 0; k < count; k++) now.push(values[from + k]!);
+    }
+    fill(set.count);
     return now;
   };
   const formulas = carried(old.formulas, (f) => hillFormula(tree.atoms, atomsOf(set, f)));

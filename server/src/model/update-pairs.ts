@@ -18,18 +18,33 @@ export function updateClosePairs(
   const isMoved = new Uint8Array(atoms.count);
   for (const atom of moved) isMoved[atom] = 1;
   const found = partnersOf(moved, isMoved, search);
-  const list = new ClosePairList(old.count + found.length);
+  let kept = 0;
+  for (let k = 0; k < old.count; k++) if (!isMoved[old.first[k]!] && !isMoved[old.second[k]!]) kept++;
+  const count = kept + found.length;
+  const pairs: ClosePairs = {
+    count,
+    first: new Int32Array(count),
+    second: new Int32Array(count),
+    distanceA: new Float64Array(count),
+    bonded: new Uint8Array(count),
+    tooDense: false,
+  };
   let next = 0;
+  let at = 0;
+  const put = (first: number, second: number, distanceA: number) => {
+    pairs.first[at] = first;
+    pairs.second[at] = second;
+    pairs.distanceA[at++] = distanceA;
+  };
+  const putFound = ({ first, second, distanceA }: Found) => put(first, second, distanceA);
   for (let k = 0; k < old.count; k++) {
-    const [first, second] = [old.first[k]!, old.second[k]!];
+    const first = old.first[k]!;
+    const second = old.second[k]!;
     if (isMoved[first] || isMoved[second]) continue;
-    for (; next < found.length && isBefore(found[next]!, first, second); next++) push(list, found[next]!);
-    list.first[list.count] = first;
-    list.second[list.count] = second;
-    list.distanceA[list.count++] = old.distanceA[k]!;
+    while (next < found.length && isBefore(found[next]!, first, second)) putFound(found[next++]!);
+    put(first, second, old.distanceA[k]!);
   }
-  for (; next < found.length; next++) push(list, found[next]!);
-  const pairs = list.build();
+  while (next < found.length) putFound(found[next++]!);
   markBonds(atoms, pairs);
   return { pairs, rebonded: [...rebondedAtoms(old, pairs)] };
 }
@@ -59,12 +74,6 @@ function partnersOf(moved: readonly number[], isMoved: Uint8Array, search: Close
 
 function isBefore(found: Found, first: number, second: number): boolean {
   return found.first < first || (found.first === first && found.second < second);
-}
-
-function push(list: ClosePairList, { first, second, distanceA }: Found): void {
-  list.first[list.count] = first;
-  list.second[list.count] = second;
-  list.distanceA[list.count++] = distanceA;
 }
 
 /** Atoms with a bond that is in one of two ordered lists alone. */

@@ -26,7 +26,8 @@ export function reportCoincident(context: RuleContext): void {
 /** Reports each clash of two fragments at the closest atom of the second; returns the pairs that clash. */
 export function reportClashes(context: RuleContext, notes: PairNotes): Set<string> {
   const clashing = new Set<string>();
-  for (let k = 0; k < notes.count; k++) {
+  const clashes = notes.countOf(NoteKind.clash);
+  for (let k = 0; k < notes.count && clashing.size < clashes; k++) {
     if (notes.kind[k] !== NoteKind.clash) continue;
     const pair = evaluatePair(context.frame.system, notes.first[k]!, notes.second[k]!);
     clashing.add(pairId(pair.first, pair.second));

@@ -34,7 +34,6 @@ class NearField {
   /** 1 for each fragment of this file that takes part in a near pair; such a one is not told about the edge too. */
   readonly #isNear: Uint8Array;
   readonly #isAtEdge: Uint8Array;
-  readonly #pairs = { near: 0, edge: 0 };
 
   constructor(context: RuleContext, notes: PairNotes) {
     this.#context = context;
@@ -42,11 +41,12 @@ class NearField {
     this.#isNear = new Uint8Array(context.ownFragments);
     this.#isAtEdge = new Uint8Array(context.ownFragments);
     const { count, kind, first, second } = notes;
+    const concernedBy: Uint8Array[] = [];
+    concernedBy[NoteKind.near] = this.#isNear;
+    concernedBy[NoteKind.edge] = this.#isAtEdge;
     for (let k = 0; k < count; k++) {
-      if (kind[k] === NoteKind.clash) continue;
-      const isNear = kind[k] === NoteKind.near;
-      this.#pairs[isNear ? 'near' : 'edge']++;
-      const concerned = isNear ? this.#isNear : this.#isAtEdge;
+      const concerned = concernedBy[kind[k]!];
+      if (concerned === undefined) continue;
       // A fragment of a companion file lies past the end, where nothing is kept.
       concerned[first[k]!] = 1;
       concerned[second[k]!] = 1;
@@ -55,8 +55,8 @@ class NearField {
   }
 
   report(): void {
-    this.#reportCode('near-field', NoteKind.near, this.#isNear, this.#pairs.near);
-    this.#reportCode('edge-field', NoteKind.edge, this.#isAtEdge, this.#pairs.edge);
+    this.#reportCode('near-field', NoteKind.near, this.#isNear, this.#notes.countOf(NoteKind.near));
+    this.#reportCode('edge-field', NoteKind.edge, this.#isAtEdge, this.#notes.countOf(NoteKind.edge));
   }
 
   #reportCode(code: FindingCode, kind: NoteKind, concerned: Uint8Array, pairs: number): void {
