@@ -7,35 +7,36 @@ export interface WaterOptions {
   readonly charges?: boolean;
   /** A dipole for every fragment. */
   readonly list?: boolean;
+  /** One behind the other, so that few see each other. */
+  readonly row?: boolean;
   /** Edge of a cubic cell, Å. */
   readonly cellA?: number;
 }
 
 /** Extended XYZ of waters on a loose lattice, turned at random. */
-export function waterBoxXyz(molecules: number, { kinds, charges, list, cellA }: WaterOptions): string {
+export function waterBoxXyz(molecules: number, { kinds, charges, list, row, cellA }: WaterOptions): string {
   const random = randomFrom(molecules);
   const side = Math.ceil(Math.cbrt(molecules));
   const spacing = cellA === undefined ? 3.1 : cellA / side;
   const rows: string[] = [];
-  const row = (symbol: string, at: readonly number[], charge: number) =>
+  const write = (symbol: string, at: readonly number[], charge: number) =>
     rows.push([symbol, ...at.map((x) => x.toFixed(4)), ...(charges ? [charge] : [])].join(' '));
   for (let m = 0; m < molecules; m++) {
-    const o = [m % side, Math.floor(m / side) % side, Math.floor(m / side / side)].map(
-      (n) => (n + 0.4 * random()) * spacing,
-    );
+    const place = row ? [m, 0, 0] : [m % side, Math.floor(m / side) % side, Math.floor(m / side / side)];
+    const o = place.map((n) => (n + 0.4 * random()) * spacing);
     const turn = random() * 2 * Math.PI;
     const along = (angle: number) => [
       o[0]! + 0.96 * Math.cos(angle),
       o[1]! + 0.96 * Math.sin(angle),
       o[2]! + 0.1 * random(),
     ];
-    row('O', o, -0.8);
-    row('H', along(turn), 0.4);
-    row('H', along(turn + 1.82), 0.4);
+    write('O', o, -0.8);
+    write('H', along(turn), 0.4);
+    write('H', along(turn + 1.82), 0.4);
   }
   const keys = [
     ...(charges ? ['Properties=species:S:1:pos:R:3:charge:R:1'] : []),
-    ...(kinds ? ['kind_dipole_sizes="H2O:1.85 D" kind_axes=H2O:O>H'.replace('"H2O:1.85 D"', 'H2O:1.85')] : []),
+    ...(kinds ? ['kind_dipole_sizes=H2O:1.85 kind_axes=H2O:O>H'] : []),
     ...(list ? [`fragment_dipoles="${Array.from({ length: 3 * molecules }, (_, k) => (k % 3) - 0.7).join(' ')}"`] : []),
     ...(cellA === undefined ? [] : [`Lattice="${cellA} 0 0 0 ${cellA} 0 0 0 ${cellA}" pbc="T T T"`]),
   ];

@@ -57,7 +57,12 @@ export function randomEdit(
     return [{ range: { start: { line, character: 0 }, end: { line: line + 1, character: 0 } }, text: '' }];
   if (kind < 0.8) return [at(line, 0, 0, `${lines[pick(some)]}\n`)];
   if (kind < 0.83) return [at(0, 0, lines[0]!.length, String(atomLines.length))];
-  if (kind < 0.86) {
+  if (kind < 0.85) {
+    const atom = pick(some);
+    const { index, 0: symbol } = /[A-Z][a-z]?(?=\s*$)|[A-Z][a-z]?/.exec(lines[atom]!) ?? { index: 0, 0: '' };
+    return [at(atom, index, index + symbol.length, pick(['H', 'C', 'O', 'F', 'X']).padEnd(symbol.length))];
+  }
+  if (kind < 0.87) {
     const length = lines[line]!.length;
     const from = Math.floor(random() * (length + 1));
     return [at(line, from, Math.min(length, from + 1), pick(['', '-', 'x', ' ', '9', '.', 'H', 'C', '\n', 'é', '"']))];
