@@ -55,6 +55,8 @@ interface Case {
   readonly edits: number;
   /** Å; a short one makes partners come and go. */
   readonly cutoffA?: number;
+  /** Whether nothing but numbers is edited, so that one update follows another for long. */
+  readonly isCalm?: boolean;
   /** At least this share of the edits must not have led to reading the whole file. */
   readonly quickShare: number;
 }
@@ -67,6 +69,15 @@ const CASES: readonly Case[] = [
     cutoffA: 2,
     edits: 600,
     quickShare: 0.15,
+  },
+  {
+    name: 'numbers alone, one update after another',
+    language: 'xyz',
+    text: waterBoxXyz(24, { kinds: true, row: true }),
+    cutoffA: 2,
+    edits: 400,
+    isCalm: true,
+    quickShare: 0.5,
   },
   {
     name: 'water in a cell',
@@ -109,7 +120,7 @@ const CASES: readonly Case[] = [
 
 describe.each(CASES)(
   'an analysis that goes on from the one before: $name',
-  ({ language, text, edits, cutoffA, quickShare }) => {
+  ({ language, text, edits, cutoffA, isCalm = false, quickShare }) => {
     test('says what a fresh one says, after every one of many random edits', async () => {
       const settings = readSettings(cutoffA === undefined ? {} : { cutoff: cutoffA });
       const random = randomFrom(text.length);
@@ -120,7 +131,7 @@ describe.each(CASES)(
       for (let version = 1; version <= edits; version++) {
         const before = document.snapshot.slice(0, document.snapshot.length);
         const isDamaged = history[history.length - 1] !== before;
-        const changes: TextChange[] = randomEdit(random, before, language, history, isDamaged);
+        const changes: TextChange[] = randomEdit(random, before, language, history, { isDamaged, isCalm });
         document = changeDocument(document, version, changes);
         const now = document.snapshot.slice(0, document.snapshot.length);
         // Once in a while two edits come before the first is analysed.

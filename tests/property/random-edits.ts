@@ -19,17 +19,20 @@ interface Place {
   readonly character: number;
 }
 
-/** A change as an editor may send it: mostly a digit of a coordinate, now and then anything else. `history` holds texts that were in order. */
+/**
+ * A change as an editor may send it: mostly a digit of a coordinate, now and then anything else. `history` holds texts that were in
+ * order; calm edits touch nothing but numbers.
+ */
 export function randomEdit(
   random: Random,
   text: string,
   language: Language,
   history: readonly string[],
-  isDamaged: boolean,
+  { isDamaged, isCalm }: { readonly isDamaged: boolean; readonly isCalm: boolean },
 ): TextChange[] {
   const pick = <T>(list: readonly T[]): T => list[Math.floor(random() * list.length)]!;
   // What was spoilt is undone soon, as people do.
-  const kind = isDamaged && random() < 0.4 ? 0.89 + 0.11 * random() : random();
+  const kind = isCalm ? 0.3 + 0.42 * random() : isDamaged && random() < 0.4 ? 0.89 + 0.11 * random() : random();
   const lines = text.split(/\r\n|\r|\n/);
   const atomLines = lines.flatMap((line, n) => (isAtomLine(line, language) ? [n] : []));
   const some = atomLines.length > 0 ? atomLines : [0];

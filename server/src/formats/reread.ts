@@ -32,8 +32,8 @@ const MOST_LINES = 2000;
 export function reread(old: CoordinateTree, text: IndexedText, splices: readonly Splice[]): Reread | null {
   const [frame, ...others] = old.frames;
   if (frame === undefined || others.length > 0 || old.lines.count !== text.lines.count) return null;
-  const first = splices[0]?.start ?? 0;
-  if (marks(old, frame).some((span) => span.end > first)) return null;
+  const firstMoved = splices.find(({ start, end, text: by }) => by.length !== end - start)?.start;
+  if (firstMoved !== undefined && marks(old, frame).some((span) => span.end > firstMoved)) return null;
   const touched = touchedLines(old, text, splices);
   if (touched === null) return null;
   const now = frame.inText(text.snapshot, text.lines);
