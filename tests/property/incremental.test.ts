@@ -24,6 +24,9 @@ async function said(analysed: Analysed): Promise<unknown> {
     const records = [...pairsOf(frame)].map((pair) => pairRecord(system, pair));
     frames.push({
       atoms: model.tree.atoms,
+      residues: model.tree.residues?.map(({ chain, name, number, insertion, segment, atomNames, atoms }) => {
+        return [chain, name, number, insertion, segment, atomNames, atoms];
+      }),
       entries: model.tree.entries,
       lines: [tree.firstLine, tree.endLine, tree.headLine],
       places: Array.from(model.tree.atoms.line, (_, atom) => model.tree.fieldSpan(atom, 'x')),

@@ -269,6 +269,19 @@ describe('residues', () => {
     ]);
   });
 
+  test('TER ends a segment although the atom behind it is a location that is left out', () => {
+    const content = text(
+      atom({ name: 'C0', number: '1' }),
+      'TER',
+      alt('N1', 'A', '0.10', { number: '2' }),
+      alt('N1', 'B', '0.90', { number: '2' }),
+    );
+    expect(only(content).residues!.map(({ number, segment }) => [number, segment])).toEqual([
+      [1, 0],
+      [2, 1],
+    ]);
+  });
+
   test('left-out locations are said once, at the letter of the first', () => {
     const content = text(
       alt('N1', 'A', '0.60'),

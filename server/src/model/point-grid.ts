@@ -1,9 +1,7 @@
 import { type Cell, imageResult, minimumImage } from './cell';
+import { CellLayout } from './cell-layout';
 import type { NeighbourBuffer } from './neighbour-buffer';
 
-/** Cells are this fraction of the search radius: fewer candidates fall outside it. */
-const CELLS_PER_RADIUS = 2;
-const MOST_CELLS_PER_POINT = 4;
 /** Candidates a point may have on average before the points count as too dense to tell neighbours apart. */
 const MOST_CANDIDATES_PER_POINT = 1500;
 const ALWAYS_FEW_ENOUGH = 1e6;
@@ -18,21 +16,12 @@ export class PointGrid {
   readonly radiusA: number;
   readonly #cell: Cell | null;
   readonly #points: Float64Array;
-  readonly #counts: [number, number, number] = [1, 1, 1];
-  /** Size of a cell along each direction, Å. */
-  readonly #cellA: [number, number, number] = [1, 1, 1];
-  /** Along a direction with wide gaps: the occupied slabs, and the place each takes once the gaps are closed up. */
-  readonly #slabs: (Slabs | null)[] = [null, null, null];
-  readonly #origin: [number, number, number] = [0, 0, 0];
-  readonly #scale: [number, number, number] = [1, 1, 1];
+  readonly #layout: CellLayout;
   readonly #starts: Int32Array;
   readonly #order: Int32Array;
   readonly #sorted: Float64Array;
   readonly #isPlain: boolean;
   readonly #image = imageResult();
-  /** Least and largest place of a member along each direction that is not periodic. */
-  readonly #low: [number, number, number] = [0, 0, 0];
-  readonly #high: [number, number, number] = [0, 0, 0];
   /** Members that have left their slots; they are tried one by one. */
   readonly #moved: number[] = [];
   /** By how many members more than its slots tell a cell holds. */
@@ -47,15 +36,15 @@ export class PointGrid {
     this.#cell = cell;
     this.#points = pointsA;
     const inside = finiteMembers(pointsA, members);
-    this.#layOut(inside);
-    this.#isPlain = cell === null && this.#slabs.every((slabs) => slabs === null);
-    const [nx, ny, nz] = this.#counts;
+    this.#layout = new CellLayout(pointsA, inside, radiusA, cell);
+    this.#isPlain = cell === null && !this.#layout.hasClosedGaps;
+    const [nx, ny, nz] = this.#layout.counts;
     const total = nx * ny * nz;
     const starts = new Int32Array(total + 1);
     const cells = new Int32Array(inside.length);
     for (let k = 0; k < inside.length; k++) {
       const i = inside[k]!;
-      const c = this.#place(0, i) + nx * (this.#place(1, i) + ny * this.#place(2, i));
+      const c = this.#layout.place(0, i) + nx * (this.#layout.place(1, i) + ny * this.#layout.place(2, i));
       cells[k] = c;
       starts[c + 1]!++;
     }
@@ -64,7 +53,7 @@ export class PointGrid {
       starts[c + 1]! += starts[c]!;
     }
     this.#stencil = [0, 1, 2].reduce(
-      (product, k) => product * Math.min(2 * this.#reachOf(k, radiusA) + 1, this.#counts[k]!),
+      (product, k) => product * Math.min(2 * this.#layout.reachOf(k, radiusA) + 1, this.#layout.counts[k]!),
       1,
     );
     this.#memberCount = inside.length;
@@ -93,13 +82,19 @@ export class PointGrid {
    * and as crowded. Members at the rim of a direction that is not periodic may not, nor may many.
    */
   canMove(i: number, x: number, y: number, z: number): boolean {
-    if (this.#moved.length >= MOST_MOVED || this.#slabs.some((slabs) => slabs !== null)) return false;
+    if (this.#moved.length >= MOST_MOVED || this.#layout.hasClosedGaps) return false;
     if (!Number.isFinite(x + y + z) || this.#slotOf(i) < 0) return false;
     for (const k of [0, 1, 2] as const) {
       if (this.#cell?.periodic[k]) continue;
-      const from = this.#fraction(i, k);
-      const to = this.#fractionAt(x, y, z, k);
-      if (from <= this.#low[k] || from >= this.#high[k] || to < this.#low[k] || to > this.#high[k]) return false;
+      const from = this.#layout.fraction(i, k);
+      const to = this.#layout.fractionAt(x, y, z, k);
+      if (
+        from <= this.#layout.low[k] ||
+        from >= this.#layout.high[k] ||
+        to < this.#layout.low[k] ||
+        to > this.#layout.high[k]
+      )
+        return false;
     }
     return true;
   }
@@ -129,8 +124,8 @@ export class PointGrid {
   }
 
   #cellOf(i: number): number {
-    const [nx, ny] = this.#counts;
-    return this.#place(0, i) + nx * (this.#place(1, i) + ny * this.#place(2, i));
+    const [nx, ny] = this.#layout.counts;
+    return this.#layout.place(0, i) + nx * (this.#layout.place(1, i) + ny * this.#layout.place(2, i));
   }
 
   /** Slot of a member; past the last one where it has left its own, and −1 where it is none. */
@@ -140,109 +135,6 @@ export class PointGrid {
     for (let slot = this.#starts[cell]!; slot < this.#starts[cell + 1]!; slot++)
       if (this.#order[slot] === i) return slot;
     return -1;
-  }
-
-  #fraction(i: number, k: number): number {
-    const p = this.#points;
-    return this.#fractionAt(p[3 * i]!, p[3 * i + 1]!, p[3 * i + 2]!, k);
-  }
-
-  #fractionAt(x: number, y: number, z: number, k: number): number {
-    if (this.#cell === null) return k === 0 ? x : k === 1 ? y : z;
-    const { inverse } = this.#cell;
-    return x * inverse[k]! + y * inverse[3 + k]! + z * inverse[6 + k]!;
-  }
-
-  #layOut(inside: Int32Array): void {
-    const target = this.radiusA / CELLS_PER_RADIUS;
-    for (let k = 0; k < 3; k++) {
-      if (this.#cell?.periodic[k]) {
-        const width = this.#cell.widthsA[k]!;
-        this.#counts[k] = Math.max(1, Math.floor(width / target));
-        this.#cellA[k] = width / this.#counts[k]!;
-        this.#scale[k] = this.#counts[k]!;
-        continue;
-      }
-      let low = Number.POSITIVE_INFINITY;
-      let high = Number.NEGATIVE_INFINITY;
-      for (const i of inside) {
-        const f = this.#fraction(i, k);
-        if (f < low) low = f;
-        if (f > high) high = f;
-      }
-      this.#low[k as 0] = low;
-      this.#high[k as 0] = high;
-      this.#origin[k] = high >= low ? low : 0;
-      this.#counts[k] = high > low ? Math.floor((high - low) / target) + 1 : 1;
-      this.#cellA[k] = target;
-      this.#scale[k] = 1 / target;
-    }
-    const most = Math.max(64, MOST_CELLS_PER_POINT * inside.length);
-    if (this.#total() > most) for (let k = 0; k < 3; k++) this.#closeGaps(inside, k);
-    // What is still too many cells is spread evenly: a coarser grid does.
-    while (this.#total() > most) {
-      const k = this.#counts.indexOf(Math.max(...this.#counts)) as 0 | 1 | 2;
-      this.#counts[k] = Math.max(1, (this.#counts[k] + 1) >> 1);
-      this.#cellA[k] *= 2;
-      this.#scale[k] /= 2;
-      if (this.#slabs[k]) this.#closeGaps(inside, k);
-      else if (this.#cell?.periodic[k]) {
-        this.#cellA[k] = this.#cell.widthsA[k]! / this.#counts[k];
-        this.#scale[k] = this.#counts[k];
-      }
-    }
-  }
-
-  #total(): number {
-    return this.#counts[0] * this.#counts[1] * this.#counts[2];
-  }
-
-  /** Closes up stretches without any point along one direction, so that one far atom does not make the grid coarse for all. */
-  #closeGaps(inside: Int32Array, k: number): void {
-    if (this.#cell?.periodic[k]) return;
-    const raws = this.#occupied(inside, k as 0 | 1 | 2);
-    const places = new Int32Array(raws.length);
-    const widest = this.#reachOf(k, this.radiusA) + 1;
-    for (let n = 1; n < raws.length; n++) places[n] = places[n - 1]! + Math.min(raws[n]! - raws[n - 1]!, widest);
-    const last = raws.length - 1;
-    this.#counts[k] = last < 0 ? 1 : places[last]! + 1;
-    // Without a gap that matters every slab keeps its place.
-    this.#slabs[k] = last >= 0 && places[last] === raws[last] ? null : { raws, places };
-  }
-
-  /** The slabs with points in them, ascending. */
-  #occupied(inside: Int32Array, k: 0 | 1 | 2): Float64Array {
-    const isSmall = this.#counts[k] <= 4 * inside.length;
-    const seen = new Uint8Array(isSmall ? this.#counts[k] : 0);
-    const others = new Set<number>();
-    for (let n = 0; n < inside.length; n++) {
-      const raw = this.#raw(inside[n]!, k);
-      if (raw < seen.length) seen[raw] = 1;
-      else others.add(raw);
-    }
-    const low = new Float64Array(seen.length);
-    let count = 0;
-    for (let raw = 0; raw < seen.length; raw++) if (seen[raw] === 1) low[count++] = raw;
-    return others.size === 0 ? low.slice(0, count) : Float64Array.from([...low.subarray(0, count), ...others]).sort();
-  }
-
-  #reachOf(k: number, radiusA: number): number {
-    return Math.ceil(radiusA / this.#cellA[k]! - 1e-12);
-  }
-
-  /** Number of the slab that a point lies in along one direction, gaps and all; periodic ones count from 0. */
-  #raw(i: number, k: number): number {
-    const f = this.#fraction(i, k);
-    const along = this.#cell?.periodic[k] ? f - Math.floor(f) : f - this.#origin[k]!;
-    return Math.floor(along * this.#scale[k]!);
-  }
-
-  /** Place of a member's cell along one direction. */
-  #place(k: 0 | 1 | 2, i: number): number {
-    const raw = this.#raw(i, k);
-    const slabs = this.#slabs[k] ?? null;
-    const place = slabs === null ? raw : slabs.places[firstFrom(slabs.raws, raw)]!;
-    return Math.max(0, Math.min(this.#counts[k] - 1, place));
   }
 
   /**
@@ -293,19 +185,19 @@ export class PointGrid {
     onlyAfter: boolean,
     out: NeighbourBuffer,
   ): void {
-    const [nx, ny] = this.#counts;
-    const [fromX, toX] = this.#range(0, i, radiusA);
-    const [fromY, toY] = this.#range(1, i, radiusA);
-    const [fromZ, toZ] = this.#range(2, i, radiusA);
+    const [nx, ny] = this.#layout.counts;
+    const [fromX, toX] = this.#layout.range(0, i, radiusA);
+    const [fromY, toY] = this.#layout.range(1, i, radiusA);
+    const [fromZ, toZ] = this.#layout.range(2, i, radiusA);
     const radius2 = radiusA * radiusA;
     for (let cz = fromZ; cz <= toZ; cz++) {
-      const wz = this.#wrap(2, cz);
+      const wz = this.#layout.wrap(2, cz);
       for (let cy = fromY; cy <= toY; cy++) {
-        const base = nx * (this.#wrap(1, cy) + ny * wz);
+        const base = nx * (this.#layout.wrap(1, cy) + ny * wz);
         // Runs of cells along x are contiguous; a periodic run is split where it wraps.
         let cx = fromX;
         while (cx <= toX) {
-          const first = this.#wrap(0, cx);
+          const first = this.#layout.wrap(0, cx);
           const length = Math.min(toX - cx + 1, nx - first);
           const from = this.#starts[base + first]!;
           const to = this.#starts[base + first + length]!;
@@ -326,13 +218,13 @@ export class PointGrid {
     onlyAfter: boolean,
     out: NeighbourBuffer,
   ): void {
-    const [nx, ny, nz] = this.#counts;
-    const rawX = Math.floor((x - this.#origin[0]) * this.#scale[0]);
-    const rawY = Math.floor((y - this.#origin[1]) * this.#scale[1]);
-    const rawZ = Math.floor((z - this.#origin[2]) * this.#scale[2]);
-    const reachX = this.#reachOf(0, radiusA);
-    const reachY = this.#reachOf(1, radiusA);
-    const reachZ = this.#reachOf(2, radiusA);
+    const [nx, ny, nz] = this.#layout.counts;
+    const rawX = Math.floor((x - this.#layout.origin[0]) * this.#layout.scale[0]);
+    const rawY = Math.floor((y - this.#layout.origin[1]) * this.#layout.scale[1]);
+    const rawZ = Math.floor((z - this.#layout.origin[2]) * this.#layout.scale[2]);
+    const reachX = this.#layout.reachOf(0, radiusA);
+    const reachY = this.#layout.reachOf(1, radiusA);
+    const reachZ = this.#layout.reachOf(2, radiusA);
     const fromX = Math.max(0, rawX - reachX);
     const toX = Math.min(nx - 1, rawX + reachX);
     if (fromX > toX) return;
@@ -403,27 +295,6 @@ export class PointGrid {
       if (d2 <= radius2) out.push(j, dx, dy, dz);
     }
   }
-
-  /** Cells to look at around a point along one direction: all of them once where the reach would wrap onto itself. */
-  #range(k: 0 | 1 | 2, i: number, radiusA: number): [number, number] {
-    const count = this.#counts[k];
-    const reach = this.#reachOf(k, radiusA);
-    const raw = this.#raw(i, k);
-    if (this.#cell?.periodic[k]) {
-      const place = Math.max(0, Math.min(count - 1, raw));
-      return 2 * reach + 1 >= count ? [0, count - 1] : [place - reach, place + reach];
-    }
-    const slabs = this.#slabs[k];
-    if (!slabs) return [Math.max(0, raw - reach), Math.min(count - 1, raw + reach)];
-    const from = firstFrom(slabs.raws, raw - reach);
-    const to = firstFrom(slabs.raws, raw + reach + 1) - 1;
-    return from > to ? [0, -1] : [slabs.places[from]!, slabs.places[to]!];
-  }
-
-  #wrap(k: 0 | 1 | 2, place: number): number {
-    const count = this.#counts[k];
-    return place < 0 ? place + count : place >= count ? place - count : place;
-  }
 }
 
 /** The members whose place is finite. */
@@ -436,22 +307,4 @@ function finiteMembers(pointsA: Float64Array, members: Int32Array | null): Int32
     if (Number.isFinite(pointsA[3 * i]! + pointsA[3 * i + 1]! + pointsA[3 * i + 2]!)) inside[count++] = i;
   }
   return inside.subarray(0, count);
-}
-
-/** The occupied slabs of one direction, ascending, and the places they are moved to. */
-interface Slabs {
-  readonly raws: Float64Array;
-  readonly places: Int32Array;
-}
-
-/** Index of the first entry of an ascending list that is not below a value. */
-function firstFrom(list: Float64Array, value: number): number {
-  let low = 0;
-  let high = list.length;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (list[middle]! < value) low = middle + 1;
-    else high = middle;
-  }
-  return low;
 }

@@ -245,8 +245,8 @@ export class ModelAtoms {
     const builder = new ResidueBuilder(this.#columns, this.#atoms.count);
     let atom = 0;
     for (let i = 0; i < total; i++) {
-      if (dropped.has(i)) continue;
       if (this.#segmentStarts.has(i)) builder.endSegment();
+      if (dropped.has(i)) continue;
       residue![atom] = builder.add(atom, line[atom]!);
       atom++;
     }

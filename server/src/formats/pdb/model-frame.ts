@@ -1,7 +1,7 @@
 import { FindingCollector } from '../../base/finding';
 import type { Span } from '../../base/span';
-import { trimEnd } from '../../text/numbers';
 import type { LineIndex } from '../../text/lines';
+import { trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import type { AtomField, AtomReading, AtomTable, FrameTree, Residue } from '../tree';
 import { ModelAtoms } from './atoms';
