@@ -2,6 +2,7 @@ import { finish } from '../base/steps';
 import type { AtomChange } from '../formats/reread';
 import type { CoordinateTree } from '../formats/tree';
 import { AtomFlag, type AtomTable } from '../formats/tree';
+import type { Cell } from '../model/cell';
 import { ClosePairSearch, closePairGrid } from '../model/close-pairs';
 import type { PointGrid } from '../model/point-grid';
 import { runsOf, type UpdatedModel, updateModel } from '../model/update-model';
@@ -41,11 +42,11 @@ export function updateFrame(
   const old = frame.model;
   if (old.fragments.count < 2 || old.pairs.tooDense || (old.cell !== null && isNarrow(old.cell))) return null;
   if (changes.length > MOST_CHANGES || !isPlain(atoms)) return null;
-  const atomGrid = standing.atomGrid ?? closePairGrid(atoms, atoms.positionA, old.cell);
   const moved = changes.filter(({ atom, reading }) =>
     reading.positionA.some((x, a) => x !== atoms.positionA[3 * atom + a]),
   );
-  if (!moved.every(({ atom, reading }) => atomGrid.canMove(atom, ...reading.positionA))) return null;
+  const atomGrid = gridForMoves(standing.atomGrid, atoms, old.cell, moved);
+  if (atomGrid === null) return null;
   for (const { atom, reading } of moved) atomGrid.move(atom, ...reading.positionA);
   for (const { atom, reading } of changes) write(atoms, atom, reading);
   if (atomGrid.tooDense) return null;
@@ -71,6 +72,19 @@ export function updateFrame(
     survey: { pairs: survey.pairs - lost + found, notes, looked: lost + found },
     atomGrid,
   };
+}
+
+/** A grid in which atoms can move; `null` where only one of their new places would do. */
+function gridForMoves(
+  known: PointGrid | null,
+  atoms: AtomTable,
+  cell: Cell | null,
+  moved: readonly AtomChange[],
+): PointGrid | null {
+  const allows = (grid: PointGrid) => moved.every(({ atom, reading }) => grid.canMove(atom, ...reading.positionA));
+  if (known !== null && allows(known)) return known;
+  const grid = closePairGrid(atoms, atoms.positionA, cell);
+  return allows(grid) ? grid : null;
 }
 
 /** With more atoms changed a fresh analysis is as fast. */

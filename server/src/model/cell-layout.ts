@@ -12,6 +12,11 @@ export class CellLayout {
   readonly #radiusA: number;
   readonly #cell: Cell | null;
   readonly #points: Float64Array;
+  readonly #inside: Int32Array;
+  /** Whether there would be too many cells without looking for gaps: then the layout hangs on which slabs have points in them. */
+  #isSparse = false;
+  /** How many points each slab of a direction has, once that is asked for. */
+  readonly #occupancy: (Map<number, number> | null)[] = [null, null, null];
   /** How many cells there are along each direction. */
   readonly counts: [number, number, number] = [1, 1, 1];
   /** Size of a cell along each direction, Å. */
@@ -22,14 +27,15 @@ export class CellLayout {
   readonly origin: [number, number, number] = [0, 0, 0];
   readonly scale: [number, number, number] = [1, 1, 1];
   /** Least and largest place of a member along each direction that is not periodic. */
-  readonly low: [number, number, number] = [0, 0, 0];
-  readonly high: [number, number, number] = [0, 0, 0];
+  readonly #low: [number, number, number] = [0, 0, 0];
+  readonly #high: [number, number, number] = [0, 0, 0];
 
   /** @param inside the points to lay cells over, all at finite places */
   constructor(pointsA: Float64Array, inside: Int32Array, radiusA: number, cell: Cell | null) {
     this.#radiusA = radiusA;
     this.#cell = cell;
     this.#points = pointsA;
+    this.#inside = inside;
     this.#layOut(inside);
   }
 
@@ -68,15 +74,16 @@ export class CellLayout {
         if (f < low) low = f;
         if (f > high) high = f;
       }
-      this.low[k as 0] = low;
-      this.high[k as 0] = high;
+      this.#low[k as 0] = low;
+      this.#high[k as 0] = high;
       this.origin[k] = high >= low ? low : 0;
       this.counts[k] = high > low ? Math.floor((high - low) / target) + 1 : 1;
       this.#cellA[k] = target;
       this.scale[k] = 1 / target;
     }
     const most = Math.max(64, MOST_CELLS_PER_POINT * inside.length);
-    if (this.#total() > most) for (let k = 0; k < 3; k++) this.#closeGaps(inside, k);
+    this.#isSparse = this.#total() > most;
+    if (this.#isSparse) for (let k = 0; k < 3; k++) this.#closeGaps(inside, k);
     // What is still too many cells is spread evenly: a coarser grid does.
     while (this.#total() > most) {
       const k = this.counts.indexOf(Math.max(...this.counts)) as 0 | 1 | 2;
@@ -89,6 +96,46 @@ export class CellLayout {
         this.scale[k] = this.counts[k];
       }
     }
+  }
+
+  /** Whether the cells would be laid out as they are if point `i` were at another place. */
+  isSameWith(i: number, x: number, y: number, z: number): boolean {
+    for (const k of [0, 1, 2] as const) {
+      if (this.#cell?.periodic[k]) continue;
+      const from = this.fraction(i, k);
+      const to = this.fractionAt(x, y, z, k);
+      // Points at the rim say where the cells begin and end.
+      if (from <= this.#low[k] || from >= this.#high[k] || to < this.#low[k] || to > this.#high[k]) return false;
+      if (!this.#isSparse) continue;
+      const occupancy = this.#occupancyOf(k);
+      const [left, entered] = [this.#slabOf(from, k), this.#slabOf(to, k)];
+      if (left !== entered && (occupancy.get(left) === 1 || !occupancy.has(entered))) return false;
+    }
+    return true;
+  }
+
+  /** Takes note that a point is about to leave its place (−1), or has come to it (1). */
+  count(i: number, by: -1 | 1): void {
+    if (!this.#isSparse) return;
+    for (const k of [0, 1, 2] as const) {
+      if (this.#cell?.periodic[k]) continue;
+      const occupancy = this.#occupancyOf(k);
+      const slab = this.#raw(i, k);
+      occupancy.set(slab, (occupancy.get(slab) ?? 0) + by);
+    }
+  }
+
+  #occupancyOf(k: 0 | 1 | 2): Map<number, number> {
+    let occupancy = this.#occupancy[k] ?? null;
+    if (occupancy === null) {
+      occupancy = new Map();
+      for (let n = 0; n < this.#inside.length; n++) {
+        const slab = this.#raw(this.#inside[n]!, k);
+        occupancy.set(slab, (occupancy.get(slab) ?? 0) + 1);
+      }
+      this.#occupancy[k] = occupancy;
+    }
+    return occupancy;
   }
 
   #total(): number {
@@ -132,6 +179,10 @@ export class CellLayout {
   /** Number of the slab that a point lies in along one direction, gaps and all; periodic ones count from 0. */
   #raw(i: number, k: number): number {
     const f = this.fraction(i, k);
+    return this.#slabOf(f, k);
+  }
+
+  #slabOf(f: number, k: number): number {
     const along = this.#cell?.periodic[k] ? f - Math.floor(f) : f - this.origin[k]!;
     return Math.floor(along * this.scale[k]!);
   }

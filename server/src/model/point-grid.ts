@@ -82,27 +82,15 @@ export class PointGrid {
    * and as crowded. Members at the rim of a direction that is not periodic may not, nor may many.
    */
   canMove(i: number, x: number, y: number, z: number): boolean {
-    if (this.#moved.length >= MOST_MOVED || this.#layout.hasClosedGaps) return false;
-    if (!Number.isFinite(x + y + z) || this.#slotOf(i) < 0) return false;
-    for (const k of [0, 1, 2] as const) {
-      if (this.#cell?.periodic[k]) continue;
-      const from = this.#layout.fraction(i, k);
-      const to = this.#layout.fractionAt(x, y, z, k);
-      if (
-        from <= this.#layout.low[k] ||
-        from >= this.#layout.high[k] ||
-        to < this.#layout.low[k] ||
-        to > this.#layout.high[k]
-      )
-        return false;
-    }
-    return true;
+    if (this.#moved.length >= MOST_MOVED || !Number.isFinite(x + y + z) || this.#slotOf(i) < 0) return false;
+    return this.#layout.isSameWith(i, x, y, z);
   }
 
   /** Moves a member that {@link canMove} allowed to move; its coordinates in the array of points are written. */
   move(i: number, x: number, y: number, z: number): void {
     const slot = this.#slotOf(i);
-    const occupied = (by: number) => {
+    const occupied = (by: -1 | 1) => {
+      this.#layout.count(i, by);
       const cell = this.#cellOf(i);
       const now = this.#occupants(cell) + by;
       this.#drift.set(cell, (this.#drift.get(cell) ?? 0) + by);
