@@ -19,6 +19,8 @@ const FIRST_ROOM = 64;
 /** Pairs to be spoken of, as columns, in order of first and second fragment: millions of others need not be kept. */
 export class PairNotes {
   count = 0;
+  /** How many there are of each kind. */
+  readonly #counts = new Int32Array(4);
   first: Int32Array;
   second: Int32Array;
   kind: Uint8Array;
@@ -36,6 +38,7 @@ export class PairNotes {
   add(first: number, second: number, kind: NoteKind, strengthKJPerMol: number): void {
     if (this.count === this.first.length) this.#grow();
     const at = this.count++;
+    this.#counts[kind]!++;
     this.first[at] = first;
     this.second[at] = second;
     this.kind[at] = kind;
@@ -43,11 +46,8 @@ export class PairNotes {
   }
 
   /** How many notes are of a kind. */
-  countOf(wanted: NoteKind): number {
-    const { count, kind } = this;
-    let found = 0;
-    for (let k = 0; k < count; k++) if (kind[k] === wanted) found++;
-    return found;
+  countOf(kind: NoteKind): number {
+    return this.#counts[kind]!;
   }
 
   /** Puts the notes from `from` on, all of one first fragment, in order of the second. */
@@ -93,7 +93,10 @@ export class PairNotes {
     for (let k = 0; k < this.count; k++) {
       const f = newOf[first[k]!]!;
       const g = newOf[second[k]!]!;
-      if (f < 0 || g < 0) continue;
+      if (f < 0 || g < 0) {
+        this.#counts[kind[k]!]!--;
+        continue;
+      }
       first[kept] = f;
       second[kept] = g;
       if (kept !== k) {
@@ -113,6 +116,7 @@ export class PairNotes {
     let from = this.count - 1;
     let next = added.count - 1;
     this.count += added.count;
+    for (let kind = 0; kind < this.#counts.length; kind++) this.#counts[kind]! += added.#counts[kind]!;
     for (let at = this.count - 1; next >= 0; at--) {
       const isKept = from >= 0 && (first[from]! - added.first[next]! || second[from]! - added.second[next]!) > 0;
       if (isKept) this.#put(at, this, from--);

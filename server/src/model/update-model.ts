@@ -167,16 +167,19 @@ function describe(
   if (tree.entries.some((entry) => LISTED_KEYS.has(entry.key))) return null;
   const runs = runsOf(newOf);
   const carried = <T>(values: readonly T[], unknown: (f: number) => T): T[] => {
-    const now: T[] = [];
-    const fill = (to: number) => {
-      while (now.length < to) now.push(unknown(now.length));
+    const pieces: T[][] = [];
+    let next = 0;
+    const unknownUpTo = (to: number) => {
+      pieces.push(Array.from({ length: to - next }, (_, k) => unknown(next + k)));
+      next = to;
     };
     for (const [from, to, count] of runs) {
-      fill(to);
-      for (let k = 0; k < count; k++) now.push(values[from + k]!);
+      unknownUpTo(to);
+      pieces.push(values.slice(from, from + count));
+      next += count;
     }
-    fill(set.count);
-    return now;
+    unknownUpTo(set.count);
+    return ([] as T[]).concat(...pieces);
   };
   const formulas = carried(old.formulas, (f) => hillFormula(tree.atoms, atomsOf(set, f)));
   const kinds = kindFormulas(text, tree.entries);

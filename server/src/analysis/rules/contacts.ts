@@ -11,8 +11,9 @@ export function reportCoincident(context: RuleContext): void {
   const { pairs, tree } = context.frame.model;
   const reported = new Set<number>();
   for (let k = 0; k < pairs.count; k++) {
+    if (pairs.distanceA[k]! >= COINCIDENT_A) continue;
     const [i, j] = [pairs.first[k]!, pairs.second[k]!];
-    if (pairs.distanceA[k]! >= COINCIDENT_A || reported.has(j)) continue;
+    if (reported.has(j)) continue;
     reported.add(j);
     context.findings.add(
       'atoms-coincident',
@@ -62,6 +63,7 @@ export function reportJoined(context: RuleContext, clashing: ReadonlySet<string>
   const { pairs, fragments, tree } = context.frame.model;
   const { chains } = context.frame.system;
   const reported = new Set<string>();
+  if (!fragments.declared.includes(1)) return;
   for (let k = 0; k < pairs.count; k++) {
     if (!pairs.bonded[k] || pairs.distanceA[k]! < COINCIDENT_A) continue;
     const [i, j] = [pairs.first[k]!, pairs.second[k]!];
