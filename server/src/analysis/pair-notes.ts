@@ -50,6 +50,13 @@ export class PairNotes {
     return this.#counts[kind]!;
   }
 
+  /** The next note of a kind, from `from` on, whose pair is stronger than a bound; −1 where there is none. */
+  nextAbove(wanted: NoteKind, leastKJPerMol: number, from: number): number {
+    const { count, kind, strengthKJPerMol } = this;
+    for (let k = from; k < count; k++) if (kind[k] === wanted && strengthKJPerMol[k]! > leastKJPerMol) return k;
+    return -1;
+  }
+
   /** Puts the notes from `from` on, all of one first fragment, in order of the second. */
   sortRow(from: number): void {
     const { first, second, kind, strengthKJPerMol } = this;

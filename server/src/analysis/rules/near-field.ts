@@ -96,12 +96,12 @@ class NearField {
 
   /** The strongest pairs of a kind that the given fragments take part in, as many as a finding shows: one and ten others. */
   #worst(kind: NoteKind, concerned: Uint8Array): Noted[] {
-    const { count, kind: kinds, first, second, strengthKJPerMol } = this.#notes;
+    const notes = this.#notes;
+    const { first, second, strengthKJPerMol } = notes;
     const worst: Noted[] = [];
     let least = Number.NEGATIVE_INFINITY;
-    for (let k = 0; k < count; k++) {
-      // Of equal ones the first stands, which has come already.
-      if (kinds[k] !== kind || strengthKJPerMol[k]! <= least) continue;
+    // Of equal ones the first stands, which has come already.
+    for (let k = notes.nextAbove(kind, least, 0); k >= 0; k = notes.nextAbove(kind, least, k + 1)) {
       if (concerned[first[k]!] !== 1 && concerned[second[k]!] !== 1) continue;
       const noted = { first: first[k]!, second: second[k]!, strengthKJPerMol: strengthKJPerMol[k]! };
       let at = worst.length;
