@@ -8,17 +8,18 @@ const SOURCE = resolve('server/src');
 const MAY_IMPORT: Readonly<Record<string, { folders: readonly string[]; packages: readonly string[] }>> = {
   base: { folders: [], packages: [] },
   physics: { folders: ['base'], packages: ['mathjs'] },
+  library: { folders: ['base', 'physics'], packages: [] },
   text: { folders: ['base'], packages: [] },
   formats: { folders: ['base', 'physics', 'text'], packages: [] },
-  model: { folders: ['base', 'physics', 'text', 'formats'], packages: [] },
-  analysis: { folders: ['base', 'physics', 'text', 'formats', 'model'], packages: [] },
-  features: { folders: ['base', 'physics', 'text', 'formats', 'model', 'analysis'], packages: [] },
+  model: { folders: ['base', 'physics', 'library', 'text', 'formats'], packages: [] },
+  analysis: { folders: ['base', 'physics', 'library', 'text', 'formats', 'model'], packages: [] },
+  features: { folders: ['base', 'physics', 'library', 'text', 'formats', 'model', 'analysis'], packages: [] },
   lsp: {
-    folders: ['base', 'physics', 'text', 'formats', 'model', 'analysis', 'features'],
+    folders: ['base', 'physics', 'library', 'text', 'formats', 'model', 'analysis', 'features'],
     packages: ['vscode-languageserver'],
   },
   cli: {
-    folders: ['base', 'physics', 'text', 'formats', 'model', 'analysis', 'features'],
+    folders: ['base', 'physics', 'library', 'text', 'formats', 'model', 'analysis', 'features'],
     packages: ['node:', 'commander'],
   },
   entry: { folders: ['cli', 'lsp'], packages: ['node:', 'vscode-languageserver'] },
