@@ -341,7 +341,8 @@ describe('the library', () => {
     expect(MOLECULES.length + FORMULAS.length).toBeGreaterThan(200);
   });
 
-  it.each([...MOLECULES, ...FORMULAS])('draws %s as %s', (name, formula) => {
+  const formulas = [...MOLECULES, ...FORMULAS].map(([name, formula]) => [name, formula] as const);
+  it.each(formulas)('draws %s as %s', (name, formula) => {
     expect(sortedElements(named(name))).toEqual(compositionOf(formula));
     expect(named(name).molecule.chargeE).toBe(0);
   });
