@@ -135,6 +135,20 @@ describe('what cannot be used is told, with its place and the reason', () => {
     expect(entries).toHaveLength(base.length);
   });
 
+  it('and the known value stays in use', () => {
+    const { entries, problems } = read({
+      smiles: '[H]O[H]',
+      dipole: -2,
+      polarizability: 'large',
+      ionizationEnergy: [],
+      axis: { before: [9], after: [1] },
+      residueNames: 7,
+      note: 1,
+    });
+    expect(problems).toHaveLength(6);
+    expect(entryNamed('water', [...entries])).toEqual({ ...entryNamed('water'), fromUser: true });
+  });
+
   it('a second entry of the same molecule; the first one counts', () => {
     const { entries, problems } = read({ name: 'water', dipole: 2 }, { smiles: '[H]O[H]', dipole: 3 });
     expect(problems).toEqual([

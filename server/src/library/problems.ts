@@ -40,15 +40,16 @@ export class ProblemList {
     return null;
   }
 
-  textOrNull(value: unknown, path: string): string | null {
-    return value === null ? null : this.text(value, path);
+  /** A text, `null` where it is taken away, `undefined` where it cannot be used. */
+  textOrNull(value: unknown, path: string): string | null | undefined {
+    return value === null ? null : (this.text(value, path) ?? undefined);
   }
 
-  /** A list of texts; what is none is left out. */
-  textList(value: unknown, path: string): string[] {
+  /** A list of texts, of which those that are none are left out; `undefined` where it is no list. */
+  textList(value: unknown, path: string): string[] | undefined {
     if (!Array.isArray(value)) {
       this.add(path, 'It must be a list of texts.');
-      return [];
+      return undefined;
     }
     return value.map((item, index) => this.text(item, `${path}/${index}`)).filter((item) => item !== null);
   }

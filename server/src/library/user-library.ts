@@ -95,29 +95,39 @@ class EntryReader {
     if (fields === null) return;
     const identity = this.#identify(fields, path);
     if (identity === null) return;
-    const { name, smiles, molecule, graph, known } = identity;
+    const { name, known } = identity;
     const earlier = known === undefined ? undefined : this.#places.get(known);
     if (earlier !== undefined) {
       this.#problems.add(path, `The molecule stands at ${earlier} already; the first one is used.`);
       return;
     }
-    const given = <T>(key: string, read: (value: unknown, path: string) => T, before: T | undefined, none: T): T =>
-      key in fields ? read(fields[key], `${path}/${key}`) : (before ?? none);
+    // What is not given, or cannot be used, stays as it is known.
+    const given = <T>(key: string, read: (value: unknown, path: string) => T | undefined, otherwise: T): T => {
+      const value = key in fields ? read(fields[key], `${path}/${key}`) : undefined;
+      return value === undefined ? otherwise : value;
+    };
     const list = (value: unknown, at: string) => this.#problems.textList(value, at);
     const quantity = (kind: keyof typeof QUANTITIES) =>
-      given(kind, (value, at) => this.#quantity(value, at, kind), known?.[FIELDS[kind]], null);
+      given(kind, (value, at) => this.#quantity(value, at, kind), known?.[FIELDS[kind]] ?? null);
+    const axis = given<LibraryAxis | null | undefined>(
+      'axis',
+      (value, at) => this.#axis(value, at, identity.graph),
+      undefined,
+    );
+    // A known axis goes with the numbering of the known SMILES.
+    const drawing = axis === undefined && known !== undefined ? known : identity;
     const entry: LibraryEntry = {
       name,
-      otherNames: given('otherNames', list, known?.otherNames, []),
-      residueNames: given('residueNames', list, known?.residueNames, []).map((text) => text.toUpperCase()),
-      smiles,
-      molecule,
-      graph,
+      otherNames: given('otherNames', list, known?.otherNames ?? []),
+      residueNames: given('residueNames', list, known?.residueNames ?? []).map((text) => text.toUpperCase()),
+      smiles: drawing.smiles,
+      molecule: drawing.molecule,
+      graph: drawing.graph,
       dipoleEA: quantity('dipole'),
-      axis: given('axis', (value, at) => this.#axis(value, at, graph), known?.axis, null),
+      axis: axis === undefined ? (known?.axis ?? null) : axis,
       polarizabilityA3: quantity('polarizability'),
       ionizationEnergyEV: quantity('ionizationEnergy'),
-      note: given('note', (value, at) => this.#problems.textOrNull(value, at), known?.note, null),
+      note: given('note', (value, at) => this.#problems.textOrNull(value, at), known?.note ?? null),
       fromUser: this.#fromUser,
     };
     if (known === undefined) this.entries.push(entry);
@@ -177,8 +187,6 @@ class EntryReader {
       this.#problems.add(path, 'A new molecule needs a name.');
       return null;
     }
-    // Without an axis of its own the entry keeps the known one, and with it the numbering of its atoms.
-    if (drawn !== undefined && !('axis' in fields)) return { ...drawn, name: name ?? drawn.name, known: drawn };
     return { name: name ?? drawn!.name, smiles, molecule, graph, known: drawn };
   }
 
@@ -189,49 +197,50 @@ class EntryReader {
     );
   }
 
-  #quantity(value: unknown, path: string, kind: keyof typeof QUANTITIES): SourcedValue | null {
+  /** A quantity, `null` where it is taken away, `undefined` where it cannot be used. */
+  #quantity(value: unknown, path: string, kind: keyof typeof QUANTITIES): SourcedValue | null | undefined {
     if (value === null) return null;
-    if (typeof value === 'object' && !Array.isArray(value)) {
-      const fields = this.#problems.object(value, path, ['value', 'source'], 'A quantity');
-      if (fields === null) return null;
-      const number = this.#number(fields.value, `${path}/value`, kind);
-      const source = 'source' in fields ? this.#problems.text(fields.source, `${path}/source`) : '';
-      return number === null ? null : { value: number, source: this.#sources.get(source ?? '') ?? source ?? '' };
+    if (typeof value !== 'object' || Array.isArray(value)) {
+      const number = this.#number(value, path, kind);
+      return number === undefined ? undefined : { value: number, source: '' };
     }
-    const number = this.#number(value, path, kind);
-    return number === null ? null : { value: number, source: '' };
+    const fields = this.#problems.object(value, path, ['value', 'source'], 'A quantity');
+    const number = this.#number(fields?.value, `${path}/value`, kind);
+    const source = fields !== null && 'source' in fields ? this.#problems.text(fields.source, `${path}/source`) : null;
+    if (number === undefined) return undefined;
+    return { value: number, source: this.#sources.get(source ?? '') ?? source ?? '' };
   }
 
-  #number(value: unknown, path: string, kind: keyof typeof QUANTITIES): number | null {
+  #number(value: unknown, path: string, kind: keyof typeof QUANTITIES): number | undefined {
     const { dimension, bareUnit, scale, zeroAllowed } = QUANTITIES[kind];
     if (typeof value !== 'number' && typeof value !== 'string') {
       this.#problems.add(path, 'It must be a number, or a text with a number and a unit.');
-      return null;
+      return undefined;
     }
     const result = readQuantity(String(value), dimension, bareUnit);
     if (!result.ok) {
       this.#problems.add(path, `"${String(value).slice(0, 40)}" is no quantity that can be used. ${result.reason}`);
-      return null;
+      return undefined;
     }
     if (result.value > 0 || (zeroAllowed && result.value === 0)) return result.value * scale;
-    const advice =
-      kind === 'dipole' ? 'A dipole has a size; swap "before" and "after" to turn it round.' : 'It must be above 0.';
-    this.#problems.add(path, advice);
-    return null;
+    const turn = 'A dipole has a size; swap "before" and "after" to turn it round.';
+    this.#problems.add(path, kind === 'dipole' ? turn : 'It must be above 0.');
+    return undefined;
   }
 
-  #axis(value: unknown, path: string, graph: AtomGraph): LibraryAxis | null {
+  /** An axis, `null` where it is taken away, `undefined` where it cannot be used. */
+  #axis(value: unknown, path: string, graph: AtomGraph): LibraryAxis | null | undefined {
     if (value === null) return null;
     const fields = this.#problems.object(value, path, ['before', 'after'], 'An axis');
-    if (fields === null) return null;
+    if (fields === null) return undefined;
     const count = graph.elements.length;
     const before = this.#problems.atomList(fields.before, `${path}/before`, count);
     const after = this.#problems.atomList(fields.after, `${path}/after`, count);
-    if (before === null || after === null) return null;
+    if (before === null || after === null) return undefined;
     const axis = { before: equivalentAtoms(graph, before), after: equivalentAtoms(graph, after) };
     if (axis.before.join() !== axis.after.join()) return axis;
     this.#problems.add(path, 'Its two ends cannot be told apart in this molecule, so they give no direction.');
-    return null;
+    return undefined;
   }
 }
 
