@@ -30,10 +30,12 @@ const MILLER_A3 = {
 
 /**
  * Components, Å³, that Miller does not have: what is left of a published molecular polarizability (CRC Handbook, section 10) after his
- * components: B of BF₃ (2.82), Si of SiH₄ (4.339), P of PH₃ (4.237).
+ * components: B of BF₃ (2.82), F on tetrahedral carbon of CF₄ (3.838; Miller's own is of aromatic fluorine), Si of SiH₄ (4.339), P of
+ * PH₃ (4.237). From memory.
  */
 const LEFT_OVER_A3 = new Map([
   [5, 1.932],
+  [9, 0.694],
   [14, 2.791],
   [15, 3.076],
 ]);
@@ -128,7 +130,7 @@ export function componentOf(
     case 1:
       return 'H';
     case 9:
-      return 'F';
+      return someNeighbour(graph, atom, (other) => elements[other] === 6 && bondCount(graph, other) === 4) ? null : 'F';
     case 17:
       return 'Cl';
     case 35:
