@@ -6,7 +6,7 @@ import { conjugateGradients, solveDense } from './linear-solve';
 /** Up to this many atoms the equations are solved by elimination, beyond it by conjugate gradients. */
 export const EEQ_DENSE_ATOMS = 200;
 /** Beyond this many atoms no charges are worked out: their matrix (n²/2 numbers) would fill the memory. */
-export const EEQ_MOST_ATOMS = 4000;
+export const EEQ_MOST_ATOMS = 2000;
 /** Relative residual at which the conjugate gradients stop. */
 export const EEQ_TOLERANCE = 1e-12;
 

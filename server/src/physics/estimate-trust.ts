@@ -33,8 +33,8 @@ export function reasonForDoubt(graph: FragmentGraph, elements: ArrayLike<number>
     if (is(i, N) && bonds(i) === 2 && someNeighbour(graph, i, (j) => is(j, N) && bonds(j) === 1)) {
       return 'A chain of nitrogens (N₂O, azide, diazo compound) is beyond the scheme.';
     }
-    if (is(i, N) && bonds(i) === 2 && someNeighbour(graph, i, (j) => is(j, ...HALOGENS))) {
-      if (someNeighbour(graph, i, (j) => is(j, O))) return 'A nitrosyl halide is beyond the scheme.';
+    if (is(i, N) && someNeighbour(graph, i, (j) => is(j, ...HALOGENS))) {
+      if (someNeighbour(graph, i, (j) => is(j, O))) return 'A nitrosyl or nitryl halide is beyond the scheme.';
     }
     if (is(i, O) && bonds(i) >= 2 && someNeighbour(graph, i, (j) => is(j, O) && bonds(j) === 1)) {
       return 'Ozone and what is built like it is beyond the scheme.';
