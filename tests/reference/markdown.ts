@@ -6,5 +6,6 @@ export function markdownTable(head: readonly string[], rows: readonly (readonly 
 
 /** Prints a table where the environment asks for it: `POLEWISE_TABLES=1 npx vitest run tests/reference/outside-`. */
 export function printIfAsked(title: string, table: () => string): void {
-  if (process.env['POLEWISE_TABLES'] !== undefined) process.stdout.write(`\n${title}\n\n${table()}\n`);
+  const { POLEWISE_TABLES: asked } = process.env;
+  if (asked !== undefined) process.stdout.write(`\n${title}\n\n${table()}\n`);
 }

@@ -73,10 +73,8 @@ function compare(
 }
 
 const all = [
-  ...MOLECULES.map(([name, , source, dipoleD, , , heldOut, atoms]) =>
-    compare(name, atoms, 0, dipoleD, source === 'P', heldOut),
-  ),
-  ...IONS.map(([name, chargeE, dipoleD, heldOut, atoms]) => compare(name, atoms, chargeE, dipoleD, false, heldOut)),
+  ...MOLECULES.map((row) => compare(row.name, row.atoms, 0, row.dipoleD, row.published, row.heldOut)),
+  ...IONS.map((row) => compare(row.name, row.atoms, row.chargeE, row.dipoleD, false, row.heldOut)),
 ].filter((entry) => entry !== null);
 const sure = all.filter((entry) => entry.doubt === null);
 const neutral = sure.filter((entry) => entry.kind !== 'ion' && entry.sizeD > 0);
