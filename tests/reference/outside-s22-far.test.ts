@@ -114,9 +114,13 @@ describe('S22 at twice the distance, from geometry alone, against CCSD(T) energi
     for (const row of rows) if (Math.abs(row.benchmark) > 0.5) expect(row.withCharges, row.name).toBeLessThan(0);
   });
 
-  it('stays within measured bounds', () => {
-    expect(mean(deviations)).toBeLessThan(99);
-    expect(Math.max(...deviations.map(Math.abs))).toBeLessThan(99);
+  it('is near the benchmark without hydrogen bonds, and far short of it with them, as measured', () => {
+    // The first seven are the set's hydrogen-bonded ones: from geometry alone their hydrogens come out too little polar.
+    expect(mean(deviations.slice(7))).toBeLessThan(0.7);
+    expect(Math.max(...deviations.slice(7).map(Math.abs))).toBeLessThan(2.5);
+    expect(mean(deviations.slice(0, 7))).toBeLessThan(7);
+    for (const value of deviations.slice(0, 7)) expect(value).toBeGreaterThan(0);
+    expect(Math.max(...deviations)).toBeLessThan(16);
   });
 
   it('induction and dispersion bind, and dispersion falls off as R^-6', () => {

@@ -7,13 +7,13 @@ import { type Geometry, geometryOf, massCentre } from '../reference/data/geometr
 
 /** Geometries from experiment or near it, as the published test charges and the first study used. */
 const WATER = 'O 0 0 0; H 0.7569503 0.5858823 0; H -0.7569503 0.5858823 0';
-const NAMES: Readonly<Record<string, string>> = {
+const NAMES = {
   water: WATER,
   'hydrogen fluoride': 'H 0 0 0; F 0.9168 0 0',
   ammonia: 'N 0 0 0; H 0.9377 0 -0.3816; H -0.46885 0.812072 -0.3816; H -0.46885 -0.812072 -0.3816',
   'carbon monoxide': 'C 0 0 0; O 1.128 0 0',
   ethene: 'C 0 0 0.6695; C 0 0 -0.6695; H 0 0.9289 1.2321; H 0 -0.9289 1.2321; H 0 0.9289 -1.2321; H 0 -0.9289 -1.2321',
-};
+} as const;
 
 const ORIGIN = [0, 0, 0] as const;
 
@@ -63,14 +63,14 @@ describe('EEQ charges', () => {
   it.each([
     ['hydrogen fluoride', 1.092],
     ['ammonia', 1.507],
-  ])('of %s: %d D', (name, dipole) => {
-    expect(Math.abs(charges(NAMES[name]!).dipoleD - dipole)).toBeLessThan(0.02);
+  ] as const)('of %s: %d D', (name, dipole) => {
+    expect(Math.abs(charges(NAMES[name]).dipoleD - dipole)).toBeLessThan(0.02);
   });
   it('sum to the net charge to rounding, whatever it is', () => {
     for (const charge of [-2, -0.97, 0, 1, 3]) expect(sum(charges(WATER, charge).chargesE)).toBeCloseTo(charge, 12);
   });
   it('are alike for alike atoms', () => {
-    const { chargesE } = charges(NAMES['ethene']!);
+    const { chargesE } = charges(NAMES.ethene);
     expect(chargesE[0]).toBeCloseTo(chargesE[1]!, 12);
     for (const i of [3, 4, 5]) expect(chargesE[i]).toBeCloseTo(chargesE[2]!, 12);
   });
@@ -139,8 +139,8 @@ describe('dipole estimate', () => {
   it.each([
     ['ethene', 0],
     ['carbon monoxide', null],
-  ])('says what it is worth: %s', (name, size) => {
-    const geometry = geometryOf(NAMES[name]!);
+  ] as const)('says what it is worth: %s', (name, size) => {
+    const geometry = geometryOf(NAMES[name]);
     const result = accepted(estimate(geometry, 0, massCentre(geometry)));
     if (size === null) expect(result.doubt).toMatch(/multiple bond/);
     else {
@@ -221,6 +221,6 @@ describe('dipole estimate', () => {
     accepted(estimate(geometry));
     const start = performance.now();
     for (let i = 0; i < 5; i++) accepted(estimate(geometry));
-    expect((performance.now() - start) / 5).toBeLessThan(150);
+    expect((performance.now() - start) / 5).toBeLessThan(500);
   });
 });

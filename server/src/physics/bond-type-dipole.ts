@@ -29,7 +29,8 @@ const POINT = 6;
  *
  * `positionsA` x y z, Å; the dipole, e·Å, is written to `dipoleEA`. False where an atom has no type or the equations are singular.
  * Form: charge equilibration along bonds, R. A. Nistor et al., J. Chem. Phys. 125 (2006) 094108, eqs. 5–9. Fitted to dipole vectors of
- * molecules, measured in tests/reference/dipole-estimates. Cost: bonds³/3 up to 200 bonds, else some dozens of products atoms²/2.
+ * molecules, measured in tests/reference/outside-dipole-estimates.test.ts. Cost: bonds³/3 up to 200 bonds, else some dozens of products
+ * atoms²/2.
  */
 export function bondTypeDipole(
   graph: FragmentGraph,

@@ -1,7 +1,7 @@
 import { BOND_CLASS, BondClass } from './elements';
 import { bondCount, everyNeighbour, type FragmentGraph, someNeighbour } from './fragment-graph';
 
-const [H, B, C, N, O, F, P, S, CL, BR, I] = [1, 5, 6, 7, 8, 9, 15, 16, 17, 35, 53];
+const [H, B, C, N, O, F, SI, P, S, CL, BR, I] = [1, 5, 6, 7, 8, 9, 14, 15, 16, 17, 35, 53];
 const HALOGENS = [F, CL, BR, I];
 const IONIC = [3, 11, 19];
 
@@ -13,7 +13,7 @@ const FLAT_DEG = 340;
  * Why a dipole estimate of this molecule is not to be trusted, in a sentence; null where nothing known speaks against it.
  *
  * The kinds are those that came out wrong by every scheme tried: multiple bonds between two unlike non-metals alone (CO, CS, SiO),
- * chains N–N–X (N₂O, azides, diazo), ozone, nitrosyl halides, carbenes, isocyanides with hydrogen, two-bonded boron, ketenes, dative
+ * chains N–N–X (N₂O, azides, diazo), ozone, nitrosyl halides, isocyanides with hydrogen, boron and silicon short of bonds, ketenes, dative
  * bonds, hypervalent halogens, fragments in several pieces. Cost: linear in the bonds.
  */
 export function reasonForDoubt(graph: FragmentGraph, elements: ArrayLike<number>, netChargeE: number): string | null {
@@ -39,6 +39,7 @@ export function reasonForDoubt(graph: FragmentGraph, elements: ArrayLike<number>
     if (is(i, O) && bonds(i) >= 2 && someNeighbour(graph, i, (j) => is(j, O) && bonds(j) === 1)) {
       return 'Ozone and what is built like it is beyond the scheme.';
     }
+    if (is(i, SI) && bonds(i) < 4) return 'A silicon with fewer than four bonds is beyond the scheme.';
     if (is(i, B) && bonds(i) !== 3) return 'A boron with other than three bonds is beyond the scheme.';
     if (is(i, C) && bonds(i) === 2 && everyNeighbour(graph, i, (j) => is(j, C, O) && bonds(j) !== 2)) {
       if (someNeighbour(graph, i, (j) => is(j, O) && bonds(j) === 1)) return 'A ketene is beyond the scheme.';
