@@ -1,4 +1,5 @@
 import { type Finding, FindingCollector } from '../base/finding';
+import { finish, type Steps } from '../base/steps';
 import type { CoordinateTree } from '../formats/tree';
 import { type FrameAnalysis, pairsOf } from './frame-analysis';
 import type { Pair } from './pair';
@@ -26,9 +27,15 @@ export class FileFindings {
   }
 
   /** Adds the findings of a frame whose pairs have been looked through. */
-  addFrame(frame: FrameAnalysis, { notes }: PairSurvey): void {
-    const context = this.#begin(frame);
-    if (context !== null) reportPairs(context, notes);
+  addFrame(frame: FrameAnalysis, survey: PairSurvey): void {
+    finish(this.frameSteps(frame, survey));
+  }
+
+  /** The same with pauses. */
+  *frameSteps(frame: FrameAnalysis, { notes }: PairSurvey): Steps<void> {
+    const context = yield* this.#begin(frame);
+    yield;
+    if (context !== null) yield* reportPairs(context, notes);
   }
 
   /**
@@ -36,30 +43,33 @@ export class FileFindings {
    * wants the pairs anyway need not have them looked through as well.
    */
   *pairsOfFrame(frame: FrameAnalysis): Generator<Pair> {
-    const context = this.#begin(frame);
+    const context = finish(this.#begin(frame));
     const notes = new PairNotes();
     for (const pair of pairsOf(frame)) {
       const kind = noteOf(frame.system, pair);
       if (kind !== NoteKind.none) notes.add(pair.first, pair.second, kind, pair.strengthKJPerMol);
       yield pair;
     }
-    if (context !== null) reportPairs(context, notes);
+    if (context !== null) finish(reportPairs(context, notes));
   }
 
   /** Reports all that needs no pairs; `null` where nothing should be said of them. */
-  #begin(frame: FrameAnalysis): RuleContext | null {
+  *#begin(frame: FrameAnalysis): Steps<RuleContext | null> {
     const { model } = frame;
     for (const code of model.frameNotes.silence) this.#silenced.add(code);
     for (const problem of frame.problems.list()) this.#findings.push(problem);
     const context = new RuleContext(this.#file, frame, this.#findings, this.#said);
     reportElectronParity(context);
     reportResidues(context);
+    yield;
     // Distances in the wrong unit would bring a finding for every atom, and fragments that overlap touch: one cause each.
     if (reportLengthUnit(context) || frame.problems.count('fragments-overlap') > 0) return null;
     reportCoincident(context);
+    yield;
     reportChargeSum(context);
     reportDipoleSum(context);
     reportDipolesAgainstCharges(context);
+    yield;
     // A fragment that could not be read whole is of no kind that anything should be said of.
     if (!this.#hasErrors(frame)) reportFragmentFacts(context);
     reportSmallCell(context);
@@ -84,7 +94,8 @@ export class FileFindings {
   }
 }
 
-function reportPairs(context: RuleContext, notes: PairNotes): void {
+function* reportPairs(context: RuleContext, notes: PairNotes): Steps<void> {
   reportJoined(context, reportClashes(context, notes));
+  yield;
   reportNearField(context, notes);
 }

@@ -49,7 +49,9 @@ export class FileAnalysis {
     const moments = yield* momentSteps(model, settings.centre);
     const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
     const system = yield* systemSteps(parts, settings);
+    yield;
     const partners = new Partners(system);
+    yield;
     return { index, model, moments, settings, system, partners, problems };
   }
 

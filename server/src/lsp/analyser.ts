@@ -99,7 +99,7 @@ async function analysedAfresh(
     const frame = await frames.frame(index, pace);
     const survey = await surveyOf(frame, earlier?.frames.standing(index) ?? null, pace);
     frames.keepSurvey(index, survey);
-    found.addFrame(frame, survey);
+    await pace.finish(found.frameSteps(frame, survey));
     fragments += frame.model.fragments.count;
     pairs += survey.pairs;
     looked += survey.looked;

@@ -1,5 +1,6 @@
 import { FindingCollector } from '../base/finding';
 import type { Span } from '../base/span';
+import { finish, inStrides, type Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
 import { listGroups, listItems, listWords } from '../formats/annotation/lists';
 import { AtomFlag, type FrameTree } from '../formats/tree';
@@ -13,6 +14,8 @@ import { atomsOf, type FragmentSet } from './fragment-set';
 
 /** Longer lists are not completed by a fix. */
 const MOST_FIXED_ENTRIES = 1000;
+/** Fragments looked at between two pauses. */
+const FRAGMENTS_A_STEP = 1024;
 /** An axis names a few atoms; what names more is no axis. */
 const MOST_AXIS_NAMES = 200;
 
@@ -23,22 +26,23 @@ const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
  * Binds the comment-line keys of an XYZ frame to its fragments. `first` is the first frame of the file where its names and kinds
  * hold for this one (same elements in the same order), else `null`.
  */
-export function annotateXyz(
+export function* annotateXyz(
   text: Snapshot,
   frame: FrameTree,
   set: FragmentSet,
   formulas: readonly string[],
   first: FrameTree | null,
   problems: FindingCollector,
-): FragmentNotes[] {
-  const notes = Array.from({ length: set.count }, emptyNotes);
+): Steps<FragmentNotes[]> {
+  const notes: FragmentNotes[] = [];
+  yield* inStrides(set.count, FRAGMENTS_A_STEP, () => notes.push(emptyNotes()));
   const binder = new XyzBinder(new ValueReader(text, problems), frame, set, formulas, notes);
-  binder.bind(frame.entries, () => true);
+  yield* binder.bind(frame.entries, () => true);
   if (first !== null) {
     const own = new Set(frame.entries.map((entry) => entry.key));
     // What was wrong with these keys has been said at the first frame.
     const silent = new XyzBinder(new ValueReader(text, new FindingCollector()), frame, set, formulas, notes);
-    silent.bind(first.entries, (key) => INHERITED_KEYS.includes(key) && !own.has(key));
+    yield* silent.bind(first.entries, (key) => INHERITED_KEYS.includes(key) && !own.has(key));
     if (set.origin === 'column' && frame.groups === null) silent.nameByGroups(first);
   }
   return notes;
@@ -76,7 +80,7 @@ export function annotateSome(
   problems: FindingCollector,
 ): void {
   const binder = new XyzBinder(new ValueReader(text, problems), frame, set, formulas, notes, fragments);
-  binder.bind(frame.entries, (key) => key.startsWith('kind_'));
+  finish(binder.bind(frame.entries, (key) => key.startsWith('kind_')));
 }
 
 class XyzBinder {
@@ -105,7 +109,7 @@ class XyzBinder {
     this.#notes = notes;
   }
 
-  bind(entries: readonly Entry[], wanted: (key: string) => boolean): void {
+  *bind(entries: readonly Entry[], wanted: (key: string) => boolean): Steps<void> {
     const entryOf = (key: string) => (wanted(key) ? entries.find((entry) => entry.key === key) : undefined);
     const unitEntry = entries.find((entry) => entry.key === 'dipole_unit');
     const unit = unitEntry === undefined ? 'D' : this.#reader.dipoleUnit(unitEntry);
@@ -135,7 +139,7 @@ class XyzBinder {
       each('fragment_dipole_sizes', 1, (f, [item]) => this.#setSize(f, this.#sizeReader(item!, unit)));
       const sizes = entryOf('kind_dipole_sizes');
       if (sizes !== undefined) {
-        this.#bindKinds(sizes, (value) => {
+        yield* this.#bindKinds(sizes, (value) => {
           const read = this.#sizeReader(value, unit);
           return (f) => this.#setSize(f, read);
         });
@@ -150,7 +154,7 @@ class XyzBinder {
     }
     const kindAxes = entryOf('kind_axes');
     if (kindAxes !== undefined) {
-      this.#bindKinds(kindAxes, (value) => {
+      yield* this.#bindKinds(kindAxes, (value) => {
         const axisOf = this.#axisReader(value);
         return (f) => {
           this.#notes[f]!.axis ??= axisOf(f);
@@ -227,7 +231,7 @@ class XyzBinder {
   }
 
   /** Reads `FORMULA:VALUE` items and gives what is read of each value to the fragments of that composition. */
-  #bindKinds(entry: Entry, read: (value: Span) => (f: number) => void): void {
+  *#bindKinds(entry: Entry, read: (value: Span) => (f: number) => void): Steps<void> {
     const { text, problems } = this.#reader;
     for (const group of listGroups(text, entry)) {
       const words = text.slice(group.start, group.end);
@@ -240,7 +244,7 @@ class XyzBinder {
       const value = { start: group.start + colon + 1, end: group.end };
       const matches = this.#ofKind(formula);
       const assign = read(value);
-      for (const f of matches) assign(f);
+      yield* inStrides(matches.length, FRAGMENTS_A_STEP, (n) => assign(matches[n]!));
       // A fragment with a hole has another composition than was meant; the hole has been told.
       if (matches.length === 0 && !this.#hasHoles()) {
         problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {

@@ -69,8 +69,8 @@ export class CellLayout {
       }
       let low = Number.POSITIVE_INFINITY;
       let high = Number.NEGATIVE_INFINITY;
-      for (const i of inside) {
-        const f = this.fraction(i, k);
+      for (let n = 0; n < inside.length; n++) {
+        const f = this.fraction(inside[n]!, k);
         if (f < low) low = f;
         if (f > high) high = f;
       }
@@ -193,6 +193,24 @@ export class CellLayout {
     const slabs = this.#slabs[k] ?? null;
     const place = slabs === null ? raw : slabs.places[firstFrom(slabs.raws, raw)]!;
     return Math.max(0, Math.min(this.counts[k] - 1, place));
+  }
+
+  /** Writes the number of the cell of each point, x running fastest. */
+  cellsOf(inside: Int32Array, out: Int32Array): void {
+    const [nx, ny, nz] = this.counts;
+    const p = this.#points;
+    const isPlain = this.#cell === null && !this.hasClosedGaps;
+    const [x0, y0, z0] = this.origin;
+    const [sx, sy, sz] = this.scale;
+    for (let k = 0; k < inside.length; k++) {
+      const i = inside[k]!;
+      if (isPlain) {
+        const x = Math.min(nx - 1, Math.floor((p[3 * i]! - x0) * sx));
+        const y = Math.min(ny - 1, Math.floor((p[3 * i + 1]! - y0) * sy));
+        const z = Math.min(nz - 1, Math.floor((p[3 * i + 2]! - z0) * sz));
+        out[k] = x + nx * (y + ny * z);
+      } else out[k] = this.place(0, i) + nx * (this.place(1, i) + ny * this.place(2, i));
+    }
   }
 
   /** Cells to look at around a point along one direction: all of them once where the reach would wrap onto itself. */

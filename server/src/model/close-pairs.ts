@@ -80,13 +80,14 @@ export function findClosePairs(atoms: AtomTable, positionA: Float64Array, cell: 
 
 /** The same with pauses. */
 export function* closePairSteps(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): Steps<ClosePairs> {
-  const grid = closePairGrid(atoms, positionA, cell);
+  const members = solidAtoms(atoms);
+  yield;
+  const grid = yield* PointGrid.inSteps(positionA, members, searchRadiusA(atoms, members), cell);
   yield;
   if (grid.tooDense) return { ...NO_PAIRS, tooDense: true };
   const list = new ClosePairList(atoms.count + (atoms.count >> 1));
   const search = new ClosePairSearch(atoms, grid);
-  const solid = solidAtoms(atoms);
-  yield* inStrides(solid.length, ATOMS_A_STEP, (s) => search.addPartners(solid[s]!, true, list));
+  yield* inStrides(members.length, ATOMS_A_STEP, (s) => search.addPartners(members[s]!, true, list));
   const pairs = list.build();
   yield;
   markBonds(atoms, pairs);
@@ -96,13 +97,18 @@ export function* closePairSteps(atoms: AtomTable, positionA: Float64Array, cell:
 /** The solid atoms of a frame in cells as wide as its elements need. */
 export function closePairGrid(atoms: AtomTable, positionA: Float64Array, cell: Cell | null): PointGrid {
   const solid = solidAtoms(atoms);
+  return new PointGrid(positionA, solid, searchRadiusA(atoms, solid), cell);
+}
+
+/** The widest distance that matters between two of the elements that there are, Å. */
+function searchRadiusA(atoms: AtomTable, solid: Int32Array): number {
   const isPresent = new Uint8Array(ELEMENT_STRIDE);
   for (let k = 0; k < solid.length; k++) isPresent[atoms.element[solid[k]!]!] = 1;
   const present = [...isPresent.keys()].filter((z) => isPresent[z] === 1);
   const limitsA = closeLimits();
   let radius = 0.1;
   for (const z1 of present) for (const z2 of present) radius = Math.max(radius, limitsA[ELEMENT_STRIDE * z1 + z2]!);
-  return new PointGrid(positionA, solid, radius, cell);
+  return radius;
 }
 
 /** Close pairs as they are found, in columns that grow. */

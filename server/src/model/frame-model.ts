@@ -84,7 +84,7 @@ export function* frameModelSteps(
     ? []
     : file.language === 'pdb'
       ? annotatePdb(text, tree, fragments, file.remarks, problems)
-      : annotateXyz(text, tree, fragments, formulas, heir?.tree ?? null, problems);
+      : yield* annotateXyz(text, tree, fragments, formulas, heir?.tree ?? null, problems);
   yield;
   const { positionA, endless } = yield* wholeSteps(tree.atoms, fragments, pairs, cell);
   const usable = new Uint8Array(fragments.count);
@@ -96,6 +96,8 @@ export function* frameModelSteps(
     names.push(notes[f]!.name ?? residue?.name ?? formulas[f]!);
     labels.push(residue?.label ?? '');
   });
+  const bonds = chainBonds(tree, pairs, fragments);
+  yield;
   return {
     tree,
     cell,
@@ -109,7 +111,7 @@ export function* frameModelSteps(
     positionA,
     usable,
     endless,
-    chainBonds: chainBonds(tree, pairs, fragments),
+    chainBonds: bonds,
   };
 }
 

@@ -1,3 +1,4 @@
+import type { Steps } from '../base/steps';
 import { type Cell, imageResult, minimumImage } from './cell';
 import { CellLayout } from './cell-layout';
 import type { NeighbourBuffer } from './neighbour-buffer';
@@ -30,24 +31,43 @@ export class PointGrid {
   readonly #stencil: number;
   readonly #memberCount: number;
 
-  /** @param members the points to sort in, or `null` for all; @param pointsA x y z of each point, Å */
-  constructor(pointsA: Float64Array, members: Int32Array | null, radiusA: number, cell: Cell | null) {
+  /** The same as the constructor, with pauses. */
+  static *inSteps(
+    pointsA: Float64Array,
+    members: Int32Array | null,
+    radiusA: number,
+    cell: Cell | null,
+  ): Steps<PointGrid> {
+    const inside = finiteMembers(pointsA, members);
+    yield;
+    const layout = new CellLayout(pointsA, inside, radiusA, cell);
+    yield;
+    return new PointGrid(pointsA, inside, radiusA, cell, layout);
+  }
+
+  /**
+   * @param members the points to sort in, or `null` for all; @param pointsA x y z of each point, Å
+   * @param layout the cells, where they are laid out for these members already
+   */
+  constructor(
+    pointsA: Float64Array,
+    members: Int32Array | null,
+    radiusA: number,
+    cell: Cell | null,
+    layout?: CellLayout,
+  ) {
     this.radiusA = radiusA;
     this.#cell = cell;
     this.#points = pointsA;
-    const inside = finiteMembers(pointsA, members);
-    this.#layout = new CellLayout(pointsA, inside, radiusA, cell);
+    const inside = layout === undefined || members === null ? finiteMembers(pointsA, members) : members;
+    this.#layout = layout ?? new CellLayout(pointsA, inside, radiusA, cell);
     this.#isPlain = cell === null && !this.#layout.hasClosedGaps;
     const [nx, ny, nz] = this.#layout.counts;
     const total = nx * ny * nz;
     const starts = new Int32Array(total + 1);
     const cells = new Int32Array(inside.length);
-    for (let k = 0; k < inside.length; k++) {
-      const i = inside[k]!;
-      const c = this.#layout.place(0, i) + nx * (this.#layout.place(1, i) + ny * this.#layout.place(2, i));
-      cells[k] = c;
-      starts[c + 1]!++;
-    }
+    this.#layout.cellsOf(inside, cells);
+    for (let k = 0; k < inside.length; k++) starts[cells[k]! + 1]!++;
     for (let c = 0; c < total; c++) {
       this.#crowding += starts[c + 1]! * starts[c + 1]!;
       starts[c + 1]! += starts[c]!;
