@@ -9,8 +9,8 @@ export interface Clock {
   readonly now: () => number;
 }
 
-/** Work goes on for this long before others get a turn, ms. */
-const SLICE_MS = 8;
+/** Work goes on for this long before others get a turn, ms. A question takes a few turns to be read, answered and sent. */
+const SLICE_MS = 3;
 
 /** Thrown where a run is no longer wanted. */
 export class Outdated extends Error {}
