@@ -5,7 +5,7 @@ import { type FirstFrame, type FrameModel, frameModelSteps, inheritableFragments
 import { type Moments, momentSteps } from './moments';
 import { evaluatePair, type Pair } from './pair';
 import { isWithinCutoff, Partners } from './partners';
-import type { AnalysisRequest, AnalysisSettings } from './settings';
+import type { AnalysisRequest, AnalysisSettings, Knowledge } from './settings';
 import { type Part, type System, systemSteps } from './system';
 
 /** A frame with its fragments, their moments, and the means to look at their pairs. */
@@ -14,6 +14,7 @@ export interface FrameAnalysis {
   readonly model: FrameModel;
   readonly moments: Moments;
   readonly settings: AnalysisSettings;
+  readonly knowledge: Knowledge | null;
   readonly system: System;
   readonly partners: Partners;
   /** Problems met while understanding the frame (annotation, cell, fragments). */
@@ -46,13 +47,14 @@ export class FileAnalysis {
     const model = yield* frameModelSteps(this.file, tree, first, this.request.periodic, problems);
     if (index === 0) this.#first = { tree, fragments: inheritableFragments(model) };
     const settings = settingsOf(this.request, model);
-    const moments = yield* momentSteps(model, settings.centre);
+    const moments = yield* momentSteps(model, settings.centre, this.request.knowledge);
     const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
     const system = yield* systemSteps(parts, settings);
     yield;
     const partners = new Partners(system);
     yield;
-    return { index, model, moments, settings, system, partners, problems };
+    const { knowledge } = this.request;
+    return { index, model, moments, settings, knowledge, system, partners, problems };
   }
 
   *#firstSteps(): Steps<FirstFrame> {

@@ -1,10 +1,11 @@
 import { inStrides, type Steps } from '../base/steps';
 import { AtomFlag } from '../formats/tree';
-import type { Axis, FragmentNotes } from '../model/annotation';
 import type { FrameModel } from '../model/frame-model';
 import { DEUTERIUM_MASS_U, TRITIUM_MASS_U } from '../physics/element-table';
 import { ATOMIC_WEIGHT_U, usualIonCharge } from '../physics/elements';
-import { type Centre, ZERO_DIPOLE_EA } from './settings';
+import { fillSources } from './fragment-sources';
+import { ModelKnowledge } from './model-knowledge';
+import type { Centre, Knowledge } from './settings';
 
 /** Where a dipole comes from, strongest first. */
 export const DIPOLE_SOURCES = ['annotated', 'axis', 'charges', 'atom', 'library', 'estimated', 'none'] as const;
@@ -37,6 +38,19 @@ export interface Moments {
   readonly columnDipoleEA: Float64Array;
   readonly columnChargeE: Float64Array;
   readonly polarizabilityA3: Float64Array;
+  /** Mean error of a dipole that the file does not give: of its size, e·Å, and of its direction, degrees; NaN where none is known. */
+  readonly dipoleErrorEA: Float64Array;
+  readonly dipoleAngleErrorDeg: Float64Array;
+  /** For a dipole that the file gives: the one it can be compared with, published or estimated, e·Å. */
+  readonly expectedEA: Float64Array;
+  /** eV, where published. */
+  readonly ionizationEnergyEV: Float64Array;
+  /** Electrons that take part in dispersion. */
+  readonly dispersionElectrons: Float64Array;
+  /** In words, '' for none: where the dipole comes from or why there is none; what it is compared with; where the polarizability is from. */
+  readonly dipoleNote: string[];
+  readonly expectedNote: string[];
+  readonly polarizabilitySource: string[];
 }
 
 interface FragmentPlace {
@@ -49,9 +63,10 @@ interface FragmentPlace {
 const FRAGMENTS_A_STEP = 512;
 
 /** Computes the moments of every fragment; unusable ones keep NaN. Linear in the atoms. */
-export function* momentSteps(model: FrameModel, centre: Centre): Steps<Moments> {
+export function* momentSteps(model: FrameModel, centre: Centre, knowledge: Knowledge | null): Steps<Moments> {
+  const known = knowledge === null ? null : new ModelKnowledge(model, knowledge);
   const moments = emptyMoments(model.fragments.count);
-  yield* inStrides(moments.count, FRAGMENTS_A_STEP, (f) => fillMoments(model, centre, f, moments));
+  yield* inStrides(moments.count, FRAGMENTS_A_STEP, (f) => fillMoments(model, centre, f, moments, known));
   return moments;
 }
 
@@ -79,15 +94,28 @@ export function roomForMoments(n: number): Moments {
     columnDipoleEA: unknown(3 * n),
     columnChargeE: unknown(n),
     polarizabilityA3: unknown(n),
+    dipoleErrorEA: unknown(n),
+    dipoleAngleErrorDeg: unknown(n),
+    expectedEA: unknown(3 * n),
+    ionizationEnergyEV: unknown(n),
+    dispersionElectrons: unknown(n),
+    dipoleNote: new Array<string>(n).fill(''),
+    expectedNote: new Array<string>(n).fill(''),
+    polarizabilitySource: new Array<string>(n).fill(''),
   };
 }
 
-/** Computes the moments of one fragment whose entries hold nothing yet. */
-export function fillMoments(model: FrameModel, centre: Centre, f: number, moments: Moments): void {
+/** Computes the moments of one fragment whose entries hold nothing yet. `known` is what may be used besides the file. */
+export function fillMoments(
+  model: FrameModel,
+  centre: Centre,
+  f: number,
+  moments: Moments,
+  known: ModelKnowledge | null,
+): void {
   const { fragments, notes, usable } = model;
   const members = fragments.members.subarray(fragments.starts[f]!, fragments.starts[f + 1]!);
   const note = notes[f]!;
-  moments.polarizabilityA3[f] = note.polarizabilityA3 ?? Number.NaN;
   if (usable[f]) {
     const place = placeFragment(model, members, centre);
     moments.centreA.set(place.centre, 3 * f);
@@ -95,10 +123,7 @@ export function fillMoments(model: FrameModel, centre: Centre, f: number, moment
     moments.isAtom[f] = place.isAtom ? 1 : 0;
     addColumnMoments(model, members, place.centre, f, moments);
   }
-  const charge = netCharge(model, members, note, moments.columnChargeE[f]!);
-  moments.chargeE[f] = charge.value;
-  moments.chargeSource[f] = charge.source;
-  moments.dipoleSource[f] = usable[f] ? chooseDipole(model, members, note, f, moments) : 'none';
+  fillSources(model, members, note, f, moments, usable[f] ? known : null);
   // An atom without charges of its own beside it has no quadrupole about itself.
   if (moments.isAtom[f] && usable[f] && Number.isNaN(moments.quadrupoleEA2[6 * f]!)) {
     moments.quadrupoleEA2.fill(0, 6 * f, 6 * f + 6);
@@ -108,6 +133,9 @@ export function fillMoments(model: FrameModel, centre: Centre, f: number, moment
 /** Forgets what is known of one fragment. */
 export function clearMoments(moments: Moments, f: number): void {
   moments.isAtom[f] = 0;
+  moments.dipoleNote[f] = '';
+  moments.expectedNote[f] = '';
+  moments.polarizabilitySource[f] = '';
   for (const [column, width] of momentColumns(moments)) column.fill(Number.NaN, width * f, width * (f + 1));
 }
 
@@ -123,6 +151,22 @@ export function momentColumns(moments: Moments): (readonly [Float64Array, number
     [moments.columnDipoleEA, 3],
     [moments.columnChargeE, 1],
     [moments.polarizabilityA3, 1],
+    [moments.dipoleErrorEA, 1],
+    [moments.dipoleAngleErrorDeg, 1],
+    [moments.expectedEA, 3],
+    [moments.ionizationEnergyEV, 1],
+    [moments.dispersionElectrons, 1],
+  ];
+}
+
+/** The columns of words. */
+export function wordColumns(moments: Moments): string[][] {
+  return [
+    moments.chargeSource,
+    moments.dipoleSource,
+    moments.dipoleNote,
+    moments.expectedNote,
+    moments.polarizabilitySource,
   ];
 }
 
@@ -201,85 +245,6 @@ function addColumnMoments(
     out.quadrupoleEA2.set(theta, 6 * f);
   }
   out.columnDipoleEA.set(dipole, 3 * f);
-}
-
-function netCharge(
-  model: FrameModel,
-  members: Int32Array,
-  note: FragmentNotes,
-  columnCharge: number,
-): { value: number; source: ChargeSource } {
-  if (note.chargeE !== null) return { value: note.chargeE, source: 'annotated' };
-  const total = model.frameNotes.totalChargeE;
-  if (total !== null && model.fragments.count === 1 && Number.isNaN(columnCharge)) {
-    return { value: total.value, source: 'annotated' };
-  }
-  if (!Number.isNaN(columnCharge)) return { value: columnCharge, source: 'charges' };
-  const { formalE } = model.tree.atoms;
-  if (formalE !== null) {
-    let sum = 0;
-    let given = false;
-    for (const atom of members) {
-      if (Number.isNaN(formalE[atom]!)) continue;
-      given = true;
-      sum += formalE[atom]!;
-    }
-    if (given) return { value: sum, source: 'formal' };
-  }
-  return { value: 0, source: 'assumed' };
-}
-
-/** Fills the dipole of a fragment from the strongest source there is, and returns that source. */
-function chooseDipole(
-  model: FrameModel,
-  members: Int32Array,
-  note: FragmentNotes,
-  f: number,
-  out: { isAtom: Uint8Array; dipoleEA: Float64Array; dipoleNormEA: Float64Array; columnDipoleEA: Float64Array },
-): DipoleSource {
-  const set = (x: number, y: number, z: number) => {
-    const size = Math.sqrt(x * x + y * y + z * z);
-    const isZero = size < ZERO_DIPOLE_EA;
-    out.dipoleEA.set(isZero ? [0, 0, 0] : [x, y, z], 3 * f);
-    out.dipoleNormEA[f] = isZero ? 0 : size;
-  };
-  if (note.dipoleEA !== null) {
-    set(...note.dipoleEA);
-    return 'annotated';
-  }
-  const fromColumn = out.columnDipoleEA.subarray(3 * f, 3 * f + 3);
-  if (note.dipoleSizeEA !== null) {
-    const size = note.dipoleSizeEA;
-    const axis = note.axis === null ? null : axisDirection(model, note.axis);
-    const direction = axis ?? unitVector(fromColumn);
-    if (size < ZERO_DIPOLE_EA) set(0, 0, 0);
-    else if (direction !== null) set(size * direction[0], size * direction[1], size * direction[2]);
-    out.dipoleNormEA[f] = size < ZERO_DIPOLE_EA ? 0 : size;
-    return axis === null ? 'annotated' : 'axis';
-  }
-  const { chargeE, dipoleEA } = model.tree.atoms;
-  // Ghosts beside an atom may carry charge.
-  if (out.isAtom[f] && dipoleEA === null && (members.length === 1 || chargeE === null)) {
-    set(0, 0, 0);
-    return 'atom';
-  }
-  if (!Number.isNaN(fromColumn[0]!)) {
-    set(fromColumn[0]!, fromColumn[1]!, fromColumn[2]!);
-    return chargeE === null ? 'annotated' : 'charges';
-  }
-  return 'none';
-}
-
-/** Unit vector of an axis, or `null` where its two ends coincide. */
-function axisDirection(model: FrameModel, axis: Axis): [number, number, number] | null {
-  const mean = (atoms: readonly number[], a: number) =>
-    atoms.reduce((sum, atom) => sum + model.positionA[3 * atom + a]!, 0) / atoms.length;
-  return unitVector([0, 1, 2].map((a) => mean(axis.after, a) - mean(axis.before, a)));
-}
-
-function unitVector(v: ArrayLike<number>): [number, number, number] | null {
-  const length = Math.hypot(v[0]!, v[1]!, v[2]!);
-  return length > 1e-9 ? [v[0]! / length, v[1]! / length, v[2]! / length] : null;
 }
 
 /** Charge that a lone atom probably carries where none is given, for the finding that asks for it. */

@@ -3,6 +3,7 @@ import { extendedDipoleEnergy } from '../physics/finite-dipole';
 import * as law from '../physics/multipole-energies';
 import { type Advice, adviseOn } from './advice';
 import { type Contact, scanAtoms } from './contact';
+import { dispersionOf, inductionOf } from './pair-polarization';
 import { type Basis, basisOf, errorBound, extendedDipoleOf, type Regime, regimeOf } from './reference';
 import { ZERO_DIPOLE_EA } from './settings';
 import type { System } from './system';
@@ -76,6 +77,10 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
   const contact: Contact = bonded ? 'bonded' : scan.clash ? 'clash' : scan.contactRatio < 1 ? 'touching' : 'apart';
   const energies = bonded ? unknownEnergies() : multipoleEnergies(system, f, g, u, distanceA, enclosed);
   if (!bonded) energies.coulomb = scan.columnSum * couplingKJA;
+  if (!bonded && !enclosed) {
+    energies.induction = inductionOf(system, f, g, x, y, z);
+    energies.dispersion = dispersionOf(system, f, g, distanceA);
+  }
   const reference = bonded ? Number.NaN : referenceEnergy(system, f, g, u, distanceA, basis, scan, energies);
   const error = enclosed ? Number.NaN : Math.abs(energies.pointDipole - reference);
   const regime = judgeRegime(system, f, g, distanceA, bonded, enclosed, basis, reference, error);

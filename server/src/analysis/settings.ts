@@ -1,3 +1,4 @@
+import type { FragmentLibrary } from '../library/match';
 import type { EnergyUnit } from '../physics/units';
 
 /** The point that stands for a fragment. */
@@ -25,17 +26,28 @@ export const DEFAULT_SETTINGS: AnalysisSettings = Object.freeze({
 
 export const DEFAULT_ENERGY_UNIT: EnergyUnit = 'kJ/mol';
 
+/** What is known of molecules besides what a file says of them. */
+export interface Knowledge {
+  /** Published values of kinds of molecules. */
+  readonly library: FragmentLibrary | null;
+  /** Whether dipoles and polarizabilities may be estimated from the geometry. */
+  readonly estimates: boolean;
+}
+
 /** What was asked for expressly and so beats the file; and whether the cell is to be used where the file does not say so. */
 export interface AnalysisRequest {
   readonly settings: AnalysisSettings;
   readonly forced: Partial<Pick<AnalysisSettings, 'temperatureK' | 'relativePermittivity'>>;
   readonly periodic: boolean;
+  /** What may be used besides what the file says; `null` for nothing. */
+  readonly knowledge: Knowledge | null;
 }
 
 export const DEFAULT_REQUEST: AnalysisRequest = Object.freeze({
   settings: DEFAULT_SETTINGS,
   forced: {},
   periodic: false,
+  knowledge: null,
 });
 
 /** A fragment whose net charge exceeds this is an ion; rounded charge columns sum to a few hundredths. */

@@ -5,7 +5,7 @@ import type { FrameModel } from '../model/frame-model';
 import { COULOMB_KJ_A_PER_MOL, DEBYE_E_A, thermalEnergyKJPerMol } from '../physics/constants';
 import { fitCharges } from '../physics/fitted-charges';
 import { ChainGraph } from './chain-graph';
-import type { Moments } from './moments';
+import { type Moments, momentColumns, roomForMoments, wordColumns } from './moments';
 import { type AnalysisSettings, ION_CHARGE_E, ZERO_DIPOLE_EA } from './settings';
 
 /** Dipoles from charges below this have no meaningful direction: coordinate rounding, e·Å. */
@@ -162,28 +162,17 @@ function describeCharges(f: number, from: number, to: number, system: System): v
 }
 
 function joinMoments(all: readonly Moments[]): Moments {
-  const join = (pick: (moments: Moments) => Float64Array) => {
-    const joined = new Float64Array(all.reduce((sum, moments) => sum + pick(moments).length, 0));
-    let at = 0;
-    for (const moments of all) {
-      joined.set(pick(moments), at);
-      at += pick(moments).length;
+  const joined = roomForMoments(all.reduce((sum, moments) => sum + moments.count, 0));
+  const columns = momentColumns(joined);
+  const words = wordColumns(joined);
+  let at = 0;
+  for (const moments of all) {
+    for (const [k, [column, width]] of momentColumns(moments).entries()) columns[k]![0].set(column, width * at);
+    for (const [k, column] of wordColumns(moments).entries()) {
+      for (let f = 0; f < column.length; f++) words[k]![at + f] = column[f]!;
     }
-    return joined;
-  };
-  return {
-    count: all.reduce((sum, moments) => sum + moments.count, 0),
-    isAtom: Uint8Array.from(all.flatMap((m) => [...m.isAtom])),
-    centreA: join((m) => m.centreA),
-    extentA: join((m) => m.extentA),
-    chargeE: join((m) => m.chargeE),
-    chargeSource: all.flatMap((m) => m.chargeSource),
-    dipoleEA: join((m) => m.dipoleEA),
-    dipoleNormEA: join((m) => m.dipoleNormEA),
-    dipoleSource: all.flatMap((m) => m.dipoleSource),
-    quadrupoleEA2: join((m) => m.quadrupoleEA2),
-    columnDipoleEA: join((m) => m.columnDipoleEA),
-    columnChargeE: join((m) => m.columnChargeE),
-    polarizabilityA3: join((m) => m.polarizabilityA3),
-  };
+    joined.isAtom.set(moments.isAtom, at);
+    at += moments.count;
+  }
+  return joined;
 }

@@ -10,7 +10,8 @@ import { updateClosePairs } from '../model/update-pairs';
 import { isNarrow } from '../model/whole';
 import { ChainGraph } from './chain-graph';
 import type { FrameAnalysis } from './frame-analysis';
-import { clearMoments, fillMoments, type Moments, momentColumns, roomForMoments } from './moments';
+import { ModelKnowledge } from './model-knowledge';
+import { clearMoments, fillMoments, type Moments, momentColumns, roomForMoments, wordColumns } from './moments';
 import { PairNotes } from './pair-notes';
 import { Partners } from './partners';
 import { countSteps, type PairSurvey } from './survey';
@@ -110,7 +111,8 @@ interface Rewritten {
 
 /** The system of the same fragments, some of which have changed, in the arrays of the old one. */
 function rewritten(frame: FrameAnalysis, { model, fresh }: UpdatedModel): Rewritten {
-  const { moments, settings } = frame;
+  const { moments, settings, knowledge } = frame;
+  const known = knowledge === null ? null : new ModelKnowledge(model, knowledge);
   const system = { ...frame.system, chains: new ChainGraph([model]) };
   const before = fresh.map((f) => ({
     centreA: [...moments.centreA.subarray(3 * f, 3 * f + 3)] as [number, number, number],
@@ -119,7 +121,7 @@ function rewritten(frame: FrameAnalysis, { model, fresh }: UpdatedModel): Rewrit
   }));
   for (const f of fresh) {
     clearMoments(moments, f);
-    fillMoments(model, settings.centre, f, moments);
+    fillMoments(model, settings.centre, f, moments, known);
     layOut(system, model, f, f, 0);
   }
   const followed = fresh.map((f, n) => frame.partners.follow(f, before[n]!));
@@ -129,12 +131,13 @@ function rewritten(frame: FrameAnalysis, { model, fresh }: UpdatedModel): Rewrit
 /** The system of other fragments: those that stay are copied in runs. */
 function rebuilt(frame: FrameAnalysis, { model, newOf, fresh }: UpdatedModel): Rewritten {
   const moments = roomForMoments(model.fragments.count);
+  const known = frame.knowledge === null ? null : new ModelKnowledge(model, frame.knowledge);
   const system = emptySystem([{ model, moments }], moments, frame.settings);
   system.starts.set(model.fragments.starts);
   for (const [from, to, count] of runsOf(newOf)) copyRun(frame.system, system, from, to, count);
   for (const f of fresh) {
     clearMoments(moments, f);
-    fillMoments(model, frame.settings.centre, f, moments);
+    fillMoments(model, frame.settings.centre, f, moments, known);
     layOut(system, model, f, f, 0);
   }
   return { system, partners: new Partners(system) };
@@ -153,7 +156,7 @@ function copyRun(old: System, now: System, from: number, to: number, count: numb
   for (const [k, [column, width]] of momentColumns(old.moments).entries()) {
     copy(column, columns[k]![0], width, from, to, count);
   }
-  copySources(old.moments, now.moments, from, to, count);
+  copyWords(old.moments, now.moments, from, to, count);
   const flags = ['usable', 'hasColumn', 'ownCharges', 'fitted', 'featureless', 'isIon'] as const;
   for (const flag of flags) copy(old[flag], now[flag], 1, from, to, count);
   copy(old.moments.isAtom, now.moments.isAtom, 1, from, to, count);
@@ -166,9 +169,9 @@ function copyRun(old: System, now: System, from: number, to: number, count: numb
   copy(old.localA, now.localA, 3, at, into, atoms);
 }
 
-function copySources(old: Moments, now: Moments, from: number, to: number, count: number): void {
-  for (let k = 0; k < count; k++) {
-    now.chargeSource[to + k] = old.chargeSource[from + k]!;
-    now.dipoleSource[to + k] = old.dipoleSource[from + k]!;
+function copyWords(old: Moments, now: Moments, from: number, to: number, count: number): void {
+  const columns = wordColumns(now);
+  for (const [n, column] of wordColumns(old).entries()) {
+    for (let k = 0; k < count; k++) columns[n]![to + k] = column[from + k]!;
   }
 }

@@ -12,5 +12,5 @@ export async function readCompanion(name: string, request: AnalysisRequest): Pro
   const tree = file.frames[0];
   if (tree === undefined) throw new UsageError(`${name}: holds no frame`);
   const model = buildFrameModel(file, tree, null, false, new FindingCollector());
-  return { model, moments: finish(momentSteps(model, request.settings.centre)) };
+  return { model, moments: finish(momentSteps(model, request.settings.centre, request.knowledge)) };
 }

@@ -1,8 +1,11 @@
 import { type Command, InvalidArgumentError, Option } from 'commander';
-import { type AnalysisRequest, CENTRES, type Centre, DEFAULT_SETTINGS } from '../analysis/settings';
+import { builtInKnowledge } from '../analysis/built-in-knowledge';
+import { type AnalysisRequest, CENTRES, type Centre, DEFAULT_SETTINGS, type Knowledge } from '../analysis/settings';
 import type { Language } from '../formats/tree';
+import { FragmentLibrary } from '../library/match';
 import { findMedium } from '../physics/media';
 import { type Dimension, readQuantity } from '../physics/quantity';
+import { withUserEntries } from './library-file';
 
 /** The analysis flags that `findings`, `pairs` and `dimers` share. */
 export interface AnalysisFlags {
@@ -13,6 +16,9 @@ export interface AnalysisFlags {
   readonly cutoff?: number;
   readonly periodic?: boolean;
   readonly language?: Language;
+  readonly library?: boolean;
+  readonly estimates?: boolean;
+  readonly libraryFile?: readonly string[];
 }
 
 /** A parser for a flag that must be a quantity above zero. */
@@ -70,7 +76,21 @@ export function withAnalysisFlags(command: Command): Command {
       ).argParser(positive('lengthA', 'The cutoff')),
     )
     .option('--periodic', 'use the cell of the file even where the format by itself does not')
+    .option('--no-library', 'use no published values of molecules that the file does not describe')
+    .option('--no-estimates', 'estimate no dipole or polarizability from the geometry')
+    .addOption(
+      new Option(
+        '--library-file <file>',
+        'a JSON file of further molecules, or of other values (may be repeated)',
+      ).argParser((file: string, others: readonly string[] = []) => [...others, file]),
+    )
     .addOption(new Option('--language <format>', 'format of the files').choices(['xyz', 'pdb']));
+}
+
+function knowledgeOf({ library = true, estimates = true, libraryFile = [] }: AnalysisFlags): Knowledge | null {
+  const known = builtInKnowledge({ library, estimates });
+  if (libraryFile.length === 0) return known;
+  return { library: new FragmentLibrary(withUserEntries(known?.library?.entries ?? [], libraryFile)), estimates };
 }
 
 /** The request that the flags make: a flag beats the file's key, which beats the default. */
@@ -87,5 +107,6 @@ export function requestOf(flags: AnalysisFlags): AnalysisRequest {
       ...(flags.permittivity === undefined ? {} : { relativePermittivity: flags.permittivity }),
     },
     periodic: flags.periodic ?? false,
+    knowledge: knowledgeOf(flags),
   };
 }

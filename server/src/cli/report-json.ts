@@ -1,4 +1,4 @@
-import { findingRecord, fragmentRecord, pairRecord, settingsRecord } from '../features/records';
+import { findingRecord, fragmentRecord, inductionRecord, pairRecord, settingsRecord } from '../features/records';
 import type { Output } from './output';
 import type { FileForReport, PairReport } from './pairs-command';
 
@@ -38,6 +38,7 @@ async function writeFrame(
     frame: frame.index + 1,
     atomCount: frame.model.tree.atoms.count,
     settings: settingsRecord(frame),
+    induction: inductionRecord(frame),
   };
   output.write(`${place === 0 ? '' : ','}\n${JSON.stringify(head).slice(0, -1)},"fragments":[`);
   for (let f = 0; f < frame.system.count; f++) {

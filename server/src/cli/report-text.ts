@@ -4,6 +4,7 @@ import {
   type FragmentName,
   findingRecord,
   fragmentRecord,
+  inductionRecord,
   type Maybe,
   type PairRecord,
   pairRecord,
@@ -50,6 +51,7 @@ export function textReport(options: PairsOptions): PairReport {
       );
       const partial = rows.some((row) => row.some((cell) => cell.endsWith(PARTIAL)));
       if (partial) output.write(`  ${PARTIAL} of the charges alone: a dipole is unknown\n`);
+      output.write(sourcesText(frame, options.unit, scale));
       output.write(`\n${footText(opened, options.with, rows.length, advice)}${CAUTIONS}`);
     },
     end() {},
@@ -92,7 +94,9 @@ function fragmentTable(frame: FrameAnalysis, nameOf: (f: number) => FragmentName
       String(record.atoms.length),
       fixed(record.chargeE, 3),
       record.chargeSource,
-      fixed(record.dipoleNormD, 3) + (record.dipoleD === null && record.dipoleNormD !== null ? ' (no direction)' : ''),
+      fixed(record.dipoleNormD, 3) +
+        (record.dipoleErrorD === null ? '' : ` ±${record.dipoleErrorD.toFixed(2)}`) +
+        (record.dipoleD === null && record.dipoleNormD !== null ? ' (no direction)' : ''),
       record.dipoleSource,
       fixed(record.extentA, 2),
     ];
@@ -112,6 +116,8 @@ const PAIR_COLUMNS: readonly Column[] = [
   { title: 'reference', align: 'right' },
   { title: 'basis', align: 'left' },
   { title: 'error', align: 'right' },
+  { title: 'ind.', align: 'right' },
+  { title: 'disp.', align: 'right' },
   { title: '|E|/kT', align: 'right' },
   { title: 'rotating', align: 'right' },
   { title: 'motion', align: 'left' },
@@ -138,6 +144,8 @@ function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale:
     energy(record.referenceKJPerMol),
     record.basis === 'none' ? NOTHING : record.basis,
     record.relativeError === null ? NOTHING : percent(record.relativeError),
+    energy(record.energyKJPerMol.induction),
+    energy(record.energyKJPerMol.dispersion),
     matters === null ? NOTHING : fixed(Math.abs(matters) / kTKJPerMol, 1) + mark,
     energy(record.thermal.averageKJPerMol),
     record.thermal.motion ?? NOTHING,
@@ -145,6 +153,25 @@ function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale:
     record.regime ?? NOTHING,
     record.advice ?? NOTHING,
   ];
+}
+
+/** What the sources of dipoles mean, where they are not the file's, and the induction of the whole frame. */
+function sourcesText(frame: FrameAnalysis, unit: string, scale: number): string {
+  const { dipoleSource } = frame.system.moments;
+  const lines: string[] = [];
+  if (dipoleSource.includes('library')) {
+    lines.push('library: published gas-phase dipole of the molecule, ± what sources differ by');
+  }
+  if (dipoleSource.includes('estimated')) {
+    lines.push('estimated: from the geometry alone, ± mean error measured for such molecules');
+  }
+  const { energyKJPerMol, nonAdditiveKJPerMol } = inductionRecord(frame);
+  if (energyKJPerMol !== null && frame.system.count > 2) {
+    lines.push(
+      `induction of the whole frame ${shownEnergy(energyKJPerMol * scale)} ${unit}, of which ${shownEnergy((nonAdditiveKJPerMol ?? 0) * scale)} is not in the sum of pairs`,
+    );
+  }
+  return lines.map((line) => `  ${line}\n`).join('');
 }
 
 function plural(count: number, what: string): string {

@@ -10,7 +10,15 @@ import type { Entry } from '../formats/annotation/entries';
 import { atomAtLine } from '../formats/reread';
 import type { CoordinateTree, FrameTree } from '../formats/tree';
 import { KEY_DOCS } from './key-docs';
-import { type FragmentName, type FragmentRecord, fragmentRecord, type PairRecord, pairRecord } from './records';
+import {
+  type FragmentName,
+  type FragmentRecord,
+  fragmentRecord,
+  type InductionRecord,
+  inductionRecord,
+  type PairRecord,
+  pairRecord,
+} from './records';
 
 /** A partner of the fragment under the cursor, seen from it. */
 export interface PartnerView {
@@ -46,6 +54,7 @@ export type HoverData =
       readonly sumKJPerMol: number;
       readonly summedPairs: number;
       readonly regimes: Readonly<Record<'far' | 'edge' | 'near' | 'none', number>>;
+      readonly induction: InductionRecord;
     }
   | { readonly kind: 'key'; readonly span: Span; readonly key: string; readonly text: string }
   | {
@@ -239,6 +248,7 @@ function* frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): 
     sumKJPerMol: sum,
     summedPairs: summed,
     regimes,
+    induction: inductionRecord(frame),
   };
 }
 

@@ -2,6 +2,7 @@ import type { Advice } from '../analysis/advice';
 import type { Arrangement } from '../analysis/arrangement';
 import type { Contact } from '../analysis/contact';
 import type { FrameAnalysis } from '../analysis/frame-analysis';
+import { inductionOfFrame } from '../analysis/frame-induction';
 import type { ChargeSource, DipoleSource } from '../analysis/moments';
 import type { Pair } from '../analysis/pair';
 import { anglesOf, thermalOf, validBeyondOf } from '../analysis/pair-detail';
@@ -42,6 +43,13 @@ export interface FragmentRecord {
   readonly dipoleSource: DipoleSource;
   readonly chargeSource: ChargeSource;
   readonly polarizabilityA3: Maybe;
+  /** Mean error of a dipole that is published or estimated: of its size, and of its direction (null where symmetry fixes it). */
+  readonly dipoleErrorD: Maybe;
+  readonly dipoleAngleErrorDeg: Maybe;
+  /** Where such a dipole comes from, or why there is none; null where the file gives it. */
+  readonly dipoleNote: string | null;
+  readonly polarizabilitySource: string | null;
+  readonly ionizationEnergyEV: Maybe;
 }
 
 /** A pair as plain data; numbers from 1. */
@@ -118,6 +126,7 @@ export function fragmentRecord(
   const { system } = frame;
   const { moments } = system;
   const { name, label } = nameOf(f);
+  const isOffered = moments.dipoleSource[f] === 'library' || moments.dipoleSource[f] === 'estimated';
   return {
     fragment: f + 1,
     name,
@@ -131,7 +140,34 @@ export function fragmentRecord(
     dipoleSource: moments.dipoleSource[f]!,
     chargeSource: moments.chargeSource[f]!,
     polarizabilityA3: known(moments.polarizabilityA3[f]!),
+    // Beside a dipole of the file the errors are those of what it is compared with.
+    dipoleErrorD: isOffered ? known(moments.dipoleErrorEA[f]! / DEBYE_E_A) : null,
+    dipoleAngleErrorDeg: isOffered ? known(moments.dipoleAngleErrorDeg[f]!) : null,
+    dipoleNote: moments.dipoleNote[f] || null,
+    polarizabilitySource: moments.polarizabilitySource[f] || null,
+    ionizationEnergyEV: known(moments.ionizationEnergyEV[f]!),
   };
+}
+
+/** Induction of a whole frame as plain data; without numbers there is a reason. */
+export interface InductionRecord {
+  readonly energyKJPerMol: Maybe;
+  readonly pairSumKJPerMol: Maybe;
+  /** What mutual induction adds to the sum of the pairs. */
+  readonly nonAdditiveKJPerMol: Maybe;
+  /** Below 1 the induced dipoles are stable; near 1 they answer wildly. */
+  readonly largestEigenvalue: Maybe;
+  readonly reason: string | null;
+}
+
+export function inductionRecord(frame: FrameAnalysis): InductionRecord {
+  const induction = inductionOfFrame(frame);
+  if (!induction.ok) {
+    const { reason } = induction;
+    return { energyKJPerMol: null, pairSumKJPerMol: null, nonAdditiveKJPerMol: null, largestEigenvalue: null, reason };
+  }
+  const { energyKJPerMol, pairSumKJPerMol, nonAdditiveKJPerMol, largestEigenvalue } = induction;
+  return { energyKJPerMol, pairSumKJPerMol, nonAdditiveKJPerMol, largestEigenvalue, reason: null };
 }
 
 /** What a fragment is called. */

@@ -65,9 +65,10 @@ function renderDipole(data: Extract<HoverData, { kind: 'dipole' }>): string {
   );
 }
 
-function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource }: FragmentRecord): string {
+function dipoleInWords({ dipoleNormD, dipoleD, dipoleSource, dipoleErrorD }: FragmentRecord): string {
   if (dipoleNormD === null) return 'dipole unknown';
-  return `dipole ${fixed(dipoleNormD, 3)} D (${dipoleSource}${dipoleD === null ? ', no direction' : ''})`;
+  const error = dipoleErrorD === null ? '' : ` ± ${fixed(dipoleErrorD, 2)}`;
+  return `dipole ${fixed(dipoleNormD, dipoleErrorD === null ? 3 : 2)}${error} D (${dipoleSource}${dipoleD === null ? ', no direction' : ''})`;
 }
 
 /** What to know at a glance comes first and fits into what a hover shows without scrolling: fragment, verdict, picture. */
@@ -97,9 +98,20 @@ function renderFragment(data: Extract<HoverData, { kind: 'fragment' }>, look: Ho
 }
 
 function originInWords({ fragment, centre }: Extract<HoverData, { kind: 'fragment' }>): string[] {
-  if (fragment.dipoleD === null) return [];
-  const vector = fragment.dipoleD.map((value) => fixed(value, 2)).join(', ');
-  return [`Dipole (${vector}) D, from negative to positive charge, about the centre of ${centre}.`];
+  const { dipoleD, dipoleNote, dipoleAngleErrorDeg, dipoleNormD } = fragment;
+  const sentences: string[] = [];
+  if (dipoleD !== null) {
+    const vector = dipoleD.map((value) => fixed(value, 2)).join(', ');
+    sentences.push(`Dipole (${vector}) D, from negative to positive charge, about the centre of ${centre}.`);
+  }
+  if (dipoleNote !== null) {
+    const angle =
+      dipoleAngleErrorDeg === null ? '' : ` Its direction is off by ${fixed(dipoleAngleErrorDeg, 0)}° on average.`;
+    sentences.push(
+      `${dipoleNormD === null ? 'No dipole: ' : 'Dipole: '}${escapeMarkdown(dipoleNote)}${dipoleNote.endsWith('.') ? '' : '.'}${angle}`,
+    );
+  }
+  return sentences.length === 0 ? [] : [sentences.join(' ')];
 }
 
 function verdict({ partner, pair }: PartnerView, unit: EnergyUnit, kTKJPerMol: number): string {
@@ -150,7 +162,12 @@ function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUn
   const head = `**Frame ${data.frame} of ${data.frames}** · ${data.atoms} atoms · ${data.fragments} fragments · ${data.pairCount} pairs`;
   if (data.pairCount === 0) return head;
   const sum = `Sum of the energies ${fixed(data.sumKJPerMol * scale, 1)} ${unit}, over the ${data.summedPairs} pairs that have one. Point dipole: far ${regimes.far}, edge ${regimes.edge}, near ${regimes.near}, without basis ${regimes.none}.`;
-  return `${head}\n\n${sum}\n\n${partnerTable(data.strongest, unit, data.kTKJPerMol, null)}\n\n*${CAUTION}*`;
+  const { energyKJPerMol, nonAdditiveKJPerMol, reason } = data.induction;
+  const induction =
+    energyKJPerMol === null || nonAdditiveKJPerMol === null
+      ? `Induction of the whole: ${escapeMarkdown(reason ?? '')}`
+      : `Induction of the whole ${fixed(energyKJPerMol * scale, 1)} ${unit}, of which ${fixed(nonAdditiveKJPerMol * scale, 1)} is not in the sum of pairs.`;
+  return `${head}\n\n${sum}\n\n${induction}\n\n${partnerTable(data.strongest, unit, data.kTKJPerMol, null)}\n\n*${CAUTION}*`;
 }
 
 function partnerTable(
@@ -170,6 +187,8 @@ function partnerTable(
       [pair.theta1Deg, pair.theta2Deg, pair.phiDeg].map((angle) => fixed(angle, 0)).join(' / '),
       inUnit(pair.referenceKJPerMol),
       inUnit(pointDipole),
+      inUnit(pair.energyKJPerMol.induction),
+      inUnit(pair.energyKJPerMol.dispersion),
       fixed(strengthKJPerMol / kTKJPerMol, 1),
       pair.regime ?? NOTHING,
       pair.contact,
@@ -177,10 +196,10 @@ function partnerTable(
     return `| ${cells.join(' | ')} |`;
   });
   return [
-    `Energies in ${unit}: reference (E), point dipole (point); strength beside kT.`,
+    `Energies in ${unit}: reference (E), point dipole (point), induction (ind.), dispersion (disp.); strength beside kT.`,
     '',
-    `| ${from === null ? 'pair' : 'partner'} | advice | R/Å | θ₁ / θ₂ / φ | E | point | /kT | regime | contact |`,
-    '| --- | --- | ---: | :---: | ---: | ---: | ---: | --- | --- |',
+    `| ${from === null ? 'pair' : 'partner'} | advice | R/Å | θ₁ / θ₂ / φ | E | point | ind. | disp. | /kT | regime | contact |`,
+    '| --- | --- | ---: | :---: | ---: | ---: | ---: | ---: | ---: | --- | --- |',
     ...rows,
   ].join('\n');
 }

@@ -1,3 +1,4 @@
+import { builtInKnowledge } from '../analysis/built-in-knowledge';
 import {
   type AnalysisRequest,
   CENTRES,
@@ -35,8 +36,17 @@ export function readSettings(raw: unknown): ServerSettings {
     tolerance: reader.number('tolerance', 0.01, 1, DEFAULT_SETTINGS.tolerance),
     cutoffA: reader.number('cutoff', 1, 100, DEFAULT_SETTINGS.cutoffA),
   };
+  const knowledge = builtInKnowledge({
+    library: reader.flag('library', true),
+    estimates: reader.flag('estimates', true),
+  });
   return {
-    request: Object.freeze({ settings: Object.freeze(settings), forced: {}, periodic: reader.flag('periodic') }),
+    request: Object.freeze({
+      settings: Object.freeze(settings),
+      forced: {},
+      periodic: reader.flag('periodic'),
+      knowledge,
+    }),
     energyUnit: reader.choice<EnergyUnit>('energyUnit', ENERGY_UNITS, DEFAULT_ENERGY_UNIT),
     severities: reader.severities(),
     maxFindings: reader.number('maxFindings', 1, 5000, DEFAULT_MAX_FINDINGS),
@@ -76,10 +86,10 @@ class SettingsReader {
     return found ?? this.#complain(name, `is none of ${choices.join(', ')}`, fallback);
   }
 
-  flag(name: string): boolean {
+  flag(name: string, fallback = false): boolean {
     const value = this.#value(name);
-    if (value === undefined || typeof value === 'boolean') return value ?? false;
-    return this.#complain(name, 'is neither true nor false', false);
+    if (value === undefined || typeof value === 'boolean') return value ?? fallback;
+    return this.#complain(name, 'is neither true nor false', fallback);
   }
 
   temperature(): number {

@@ -210,6 +210,18 @@ const NO_PAIRS: ClosePairs = {
   tooDense: false,
 };
 
+/** Where in an ordered list the pairs of a first atom begin. */
+export function firstPairOf({ first, count }: ClosePairs, atom: number): number {
+  let low = 0;
+  let high = count;
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (first[middle]! < atom) low = middle + 1;
+    else high = middle;
+  }
+  return low;
+}
+
 /** Decides which close pairs are bonds. */
 export function markBonds(atoms: AtomTable, pairs: ClosePairs): void {
   const { element } = atoms;

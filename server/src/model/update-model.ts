@@ -3,7 +3,7 @@ import type { FrameTree } from '../formats/tree';
 import type { Snapshot } from '../text/snapshot';
 import { annotateSome, kindFormulas, LISTED_KEYS } from './annotate-xyz';
 import { emptyNotes } from './annotation';
-import type { ClosePairs } from './close-pairs';
+import { type ClosePairs, firstPairOf } from './close-pairs';
 import { hillFormula } from './formula';
 import { atomsOf, type FragmentSet, fragmentsFromLabels, UnionFind } from './fragment-set';
 import type { FrameModel } from './frame-model';
@@ -99,18 +99,6 @@ function refragmented({ fragments }: FrameModel, pairs: ClosePairs, rebonded: re
   }
   for (const [place, atom] of region.entries()) labels[atom] = region[sets.find(place)]!;
   return fragmentsFromLabels(labels, 'bonds', () => false);
-}
-
-/** Where in an ordered list the pairs of a first atom begin. */
-function firstPairOf({ first, count }: ClosePairs, atom: number): number {
-  let low = 0;
-  let high = count;
-  while (low < high) {
-    const middle = (low + high) >> 1;
-    if (first[middle]! < atom) low = middle + 1;
-    else high = middle;
-  }
-  return low;
 }
 
 /** Atoms at the ends of bonds that are in one of two lists alone. */

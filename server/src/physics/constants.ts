@@ -38,6 +38,9 @@ export const COULOMB_KJ_A_PER_MOL =
     (4 * Math.PI * VACUUM_PERMITTIVITY_F_PER_M * ANGSTROM_M)) *
   1e-3;
 
+/** One electronvolt for each particle, kJ/mol. Exact since SI-2019: e N_A. */
+export const ELECTRONVOLT_KJ_PER_MOL = ELEMENTARY_CHARGE_C * AVOGADRO_PER_MOL * 1e-3;
+
 /** Molar gas constant, kJ/(mol·K): k_B·N_A (exact). */
 export const GAS_CONSTANT_KJ_PER_MOL_K = BOLTZMANN_J_PER_K * AVOGADRO_PER_MOL * 1e-3;
 

@@ -20,7 +20,7 @@ export interface Reading {
 /** Reads a text and analyses its first frame. */
 export function read(text: string, settings: Partial<AnalysisSettings> = {}, language: Language = 'xyz'): Reading {
   const file = parse(snapshotOf(text), language);
-  const request = { settings: { ...DEFAULT_SETTINGS, ...settings }, forced: {}, periodic: false };
+  const request = { settings: { ...DEFAULT_SETTINGS, ...settings }, forced: {}, periodic: false, knowledge: null };
   const frame = new FileAnalysis(file, request).frame(0);
   const found = new FileFindings(file);
   const pairs = [...found.pairsOfFrame(frame)].map((pair) => pairRecord(frame.system, pair));

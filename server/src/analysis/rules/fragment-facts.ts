@@ -21,7 +21,8 @@ export function reportFragmentFacts(context: RuleContext): void {
     if (!usable[f]) continue;
     if (moments.dipoleSource[f] === 'none' && fragments.count > 1 && context.isNews(`dipole ${kind}`)) {
       context.findings.add('dipole-missing', context.placeOf(f)!, () => {
-        return `Nothing gives the dipole of ${model.labels[f] === '' ? kind : context.nameOf(f)}.`;
+        const reason = moments.dipoleNote[f] === '' ? '' : ` ${moments.dipoleNote[f]}`;
+        return `Nothing gives the dipole of ${model.labels[f] === '' ? kind : context.nameOf(f)}.${reason}`;
       });
     }
     if (lacksDirection(context, f) && context.isNews(`direction ${kind}`)) {
