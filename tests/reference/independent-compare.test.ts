@@ -7,7 +7,8 @@ import { independentFrames } from './independent.js';
 
 const { water, hydroxide, fluoroChloroMethane } = MOLECULES;
 const placed = scatter([water, fluoroChloroMethane, hydroxide], 4, seeded(3));
-const expected = independentFrames(writeXyz(placed, { charges: true, fragments: true }), 'xyz');
+const keys = 'fragment_polarizabilities="1.45 4.2 2.1"';
+const expected = independentFrames(writeXyz(placed, { charges: true, fragments: true, keys }), 'xyz');
 const printed = (): ProgramFrame[] => JSON.parse(JSON.stringify(expected));
 
 type Json = { [key: string]: Json } | Json[] | number | string | null;

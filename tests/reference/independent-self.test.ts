@@ -7,6 +7,7 @@ import { MOLECULES, type Molecule, move, randomRotation, scatter, seeded, writeX
 import { add, dot, length, scale, subtract } from './independent/linear.js';
 import { derivativeOfInverse, siteEnergy } from './independent/multipoles.js';
 import { parseXyz } from './independent/parse-xyz.js';
+import { casimirPolder, fieldOf } from './independent/polarization.js';
 import { fittedCharges } from './independent/reference.js';
 import { dipolePairAverage, gaussLegendre, ionDipoleAverage } from './independent/thermal.js';
 import type { Vec } from './independent/types.js';
@@ -125,6 +126,171 @@ describe('interaction by derivatives of 1/R', () => {
   });
 });
 
+describe('induction', () => {
+  const { argon, sodium, chloride } = MOLECULES;
+  const away = (r: number) => move(argon, same, [0, 0, r]);
+  const induction = (first: Molecule, second: Molecule, keys: string) =>
+    pairOf(first, second, keys).energyKJPerMol.induction;
+
+  test.each([3, 0.8])('the field in a cloud, %d of its radius away, is the damped tensors', (part) => {
+    const r: Vec = [1.3 * part, -0.4 * part, 0.9 * part];
+    const dipole: Vec = [0.4, 0.7, -0.3];
+    const [charge, cloud] = [-0.6, 2.7];
+    const d = length(r);
+    const x = (0.39 * d ** 3) / cloud;
+    const [l3, l5] = [1 - Math.exp(-x), 1 - (1 + x) * Math.exp(-x)];
+    const field = fieldOf(charge, dipole, r, cloud);
+    r.forEach((value, k) => {
+      const u = value / d;
+      const expected = (l3 * charge * u) / d ** 2 + ((3 * l5 * dot(dipole, r) * u) / d - l3 * dipole[k]) / d ** 3;
+      close(field[k], expected, 1e-12);
+    });
+  });
+
+  test('the field of a cloud is that of its charge within r, summed shell by shell', () => {
+    const [cloud, r] = [5, 2.2];
+    const density = (s: number) => ((3 * 0.39) / (4 * Math.PI * cloud)) * Math.exp((-0.39 * s ** 3) / cloud);
+    let within = 0;
+    for (const { node, weight } of gaussLegendre(60)) {
+      const s = (r / 2) * (1 + node);
+      within += weight * (r / 2) * 4 * Math.PI * s * s * density(s);
+    }
+    close(fieldOf(1, [0, 0, 0], [0, 0, r], cloud)[2], within / r ** 2, 1e-12);
+  });
+
+  test('far away nothing is damped: −½ α Q²/R⁴ and −½ α μ² (1 + 3 cos²θ)/R⁶', () => {
+    const ion = 'fragment_charges="1 0" fragment_polarizabilities="0.18 1.64"';
+    close(induction(sodium, away(12), ion)!, (-COULOMB * 1.64) / 2 / 12 ** 4, 1e-12);
+    for (const degrees of [0, 35, 90]) {
+      const angle = (degrees * Math.PI) / 180;
+      const dipole = [Math.sin(angle), 0, Math.cos(angle)].map((x) => x * 1.855);
+      const keys = `fragment_charges="0 0" fragment_dipoles="${dipole.join(' ')} 0 0 0" fragment_polarizabilities="1 1.64"`;
+      const size = (1.855 * DEBYE) ** 2 * (1 + 3 * Math.cos(angle) ** 2);
+      close(induction(argon, away(9), keys)!, (-COULOMB * 1.64 * size) / 2 / 9 ** 6, 1e-12);
+    }
+  });
+
+  test('two ions and their dipoles each act on the other', () => {
+    const keys = 'fragment_charges="1 -1" fragment_dipoles="0 0 0.3 0 0 -0.2" fragment_polarizabilities="0.18 3.7"';
+    const unit = 'dipole_unit=e*angstrom';
+    // On the line of centres: Q/R² + 2μ/R³ ahead of the ion and −Q/R² + 2μ/R³ behind it.
+    const [atSecond, atFirst] = [1 / 64 + 0.6 / 512, 1 / 64 - 0.4 / 512];
+    const expected = (-COULOMB / 2) * (3.7 * atSecond ** 2 + 0.18 * atFirst ** 2);
+    close(induction(sodium, move(chloride, same, [0, 0, 8]), `${keys} ${unit}`)!, expected, 1e-12);
+  });
+
+  test('a close pair is damped, and one without a polarizability on one side is not', () => {
+    const keys = (alpha: number) => `fragment_charges="1 0" fragment_polarizabilities="${alpha} 1.64"`;
+    const bare = (-COULOMB * 1.64) / 2 / 2 ** 4;
+    const x = (0.39 * 8) / Math.sqrt(0.9 * 1.64);
+    close(induction(sodium, away(2), keys(0.9))!, bare * (1 - Math.exp(-x)) ** 2, 1e-12);
+    close(induction(sodium, away(2), keys(0))!, bare, 1e-12);
+  });
+
+  // London's table (Trans. Faraday Soc. 33 (1937) 8) as textbooks reprint it: energy·R⁶ in 10⁻⁷⁹ J·m⁶ at 293 K.
+  test.each([
+    ['H2O', 1.84, 1.48, 190, 10],
+    ['NH3', 1.5, 2.21, 84, 10],
+    ['CO', 0.12, 1.99, 0.0034, 0.057],
+  ])('Keesom and Debye constants of %s', (_, debye, alpha, keesom, debyeConstant) => {
+    const r = 20;
+    // kJ·Å⁶/mol in 1e-79 J·m⁶.
+    const printed = (r ** 6 * 1e3 * 1e-60 * 1e79) / 6.02214076e23;
+    let mean = 0;
+    const directions: Vec[] = [
+      [1, 0, 0],
+      [0, 1, 0],
+      [0, 0, 1],
+    ];
+    for (const a of directions) {
+      for (const b of directions) {
+        const dipoles = [...a, ...b].map((x) => x * debye).join(' ');
+        const keys = `fragment_dipoles="${dipoles}" fragment_polarizabilities="${alpha} ${alpha}"`;
+        const pair = independentFrames(writeXyz([argon, away(r)], { fragments: true, keys }), 'xyz', {
+          temperatureK: 293,
+          cutoffA: 100,
+        })[0].pairs[0];
+        close(pair.thermal.leadingKJPerMol! * printed, -keesom, 0.02);
+        mean += pair.energyKJPerMol.induction! / 9;
+      }
+    }
+    close(mean * printed, -debyeConstant, 0.01);
+  });
+});
+
+describe('dispersion', () => {
+  const { argon, carbonDioxide } = MOLECULES;
+  const slaterKirkwood = (a1: number, n1: number, a2: number, n2: number) =>
+    (1.5 * a1 * a2) / (Math.sqrt(a1 / n1) + Math.sqrt(a2 / n2));
+
+  test('the integral of Casimir and Polder is the formula of Slater and Kirkwood', () => {
+    for (const [a1, n1, a2, n2] of [
+      [11.1, 8, 11.1, 8],
+      [9.8, 4.75, 90, 30],
+      [0.1, 60, 400, 1],
+    ]) {
+      close(casimirPolder(a1, n1, a2, n2), slaterKirkwood(a1, n1, a2, n2), 1e-12);
+    }
+    expect(casimirPolder(0, 8, 11.1, 8)).toBe(0);
+    expect(casimirPolder(11.1, 8, 11.1, 0)).toBe(0);
+  });
+
+  test('argon and carbon dioxide: −C₆/R⁶ with 8 and 2.49 + 2·3.15 electrons', () => {
+    const keys = 'fragment_polarizabilities="1.64 2.91"';
+    const { dispersion } = pairOf(argon, move(carbonDioxide, same, [5, 0, 0]), keys).energyKJPerMol;
+    const c6 = slaterKirkwood(1.64 / ATOMIC_UNIT ** 3, 8, 2.91 / ATOMIC_UNIT ** 3, 8.79);
+    close(dispersion!, ((-COULOMB / ATOMIC_UNIT) * c6 * ATOMIC_UNIT ** 6) / 5 ** 6, 1e-12);
+  });
+});
+
+describe('induction and dispersion of a pair', () => {
+  const { argon } = MOLECULES;
+  const apart = (keys: string, options = {}) => pairOf(water, move(water, same, [0, 1, 5]), keys, options);
+  const both = (pair: PairResult) => [pair.energyKJPerMol.induction, pair.energyKJPerMol.dispersion];
+
+  test('unknown without both polarizabilities, without a direction, or within the other', () => {
+    expect(both(apart(''))).toEqual([null, null]);
+    expect(both(apart('fragment_polarizabilities="1.45 nan"'))).toEqual([null, null]);
+    const keys = 'fragment_dipole_sizes="1.855 1.855" fragment_polarizabilities="1.45 1.45"';
+    const text = writeXyz([water, move(water, same, [0, 1, 5])], { fragments: true, keys });
+    const [induction, dispersion] = both(independentFrames(text, 'xyz')[0].pairs[0]);
+    expect(induction).toBeNull();
+    expect(dispersion).toBeLessThan(0);
+    const enclosed = pairOf(chain, move(water, same, [0, 4, 0]), 'fragment_polarizabilities="9 1.45"');
+    expect(both(enclosed)).toEqual([null, null]);
+  });
+
+  test('no polarizability, no energy', () => {
+    const pair = apart('fragment_polarizabilities="0 1.45"');
+    expect(Math.abs(pair.energyKJPerMol.dispersion!)).toBe(0);
+    expect(pair.energyKJPerMol.induction).toBeLessThan(0);
+    expect(Math.abs(apart('fragment_polarizabilities="0 0"').energyKJPerMol.induction!)).toBe(0);
+  });
+
+  test('of the nearest image', () => {
+    const keys = 'fragment_polarizabilities="1.45 1.64"';
+    const box = `Lattice="20 0 0 7 21 0 -4 6 22" ${keys}`;
+    const open = pairOf(water, move(argon, same, [0, 1, 5]), keys);
+    const cell: Vec = add(add([20, 0, 0], [7, 21, 0]), [-4, 6, 22]);
+    const thrown = pairOf(water, move(argon, same, add([0, 1, 5], cell)), box);
+    close(thrown.energyKJPerMol.induction!, open.energyKJPerMol.induction!, 1e-9);
+    close(thrown.energyKJPerMol.dispersion!, open.energyKJPerMol.dispersion!, 1e-9);
+    expect(thrown.image).toEqual([-1, -1, -1]);
+  });
+
+  test('review where either exceeds both kT and its part of the reference, else as before', () => {
+    const plain = apart('');
+    expect(plain).toMatchObject({ contact: 'apart', regime: 'far', advice: 'accept' });
+    const strong = apart('fragment_polarizabilities="13 13"');
+    expect(Math.abs(strong.energyKJPerMol.dispersion!)).toBeGreaterThan(2.5);
+    expect(strong.advice).toBe('review');
+    expect(apart('fragment_polarizabilities="13 13"', { temperatureK: 3000 }).advice).toBe('accept');
+    const part = Math.abs(strong.energyKJPerMol.dispersion! / strong.referenceKJPerMol!);
+    expect(apart('fragment_polarizabilities="13 13"', { tolerance: part * 0.99 }).advice).toBe('review');
+    expect(apart('fragment_polarizabilities="13 13"', { tolerance: part * 1.01 }).advice).toBe('accept');
+  });
+});
+
 describe('the ladder converges to the Coulomb sum', () => {
   test.each([
     ['two neutral fragments', fluoroChloroMethane, 16, 32],
@@ -147,7 +313,8 @@ describe('the ladder converges to the Coulomb sum', () => {
 describe('identities', () => {
   const random = seeded(11);
   const [a, b] = scatter([formaldehyde, fluoroChloroMethane], 4, random);
-  const pair = pairOf(a, b);
+  const alphas = ['fragment_polarizabilities="2.77 4.2"', 'fragment_polarizabilities="4.2 2.77"'];
+  const pair = pairOf(a, b, alphas[0]);
   const numbers = (p: PairResult) => [
     p.distanceA,
     ...Object.values(p.energyKJPerMol),
@@ -165,20 +332,20 @@ describe('identities', () => {
 
   test('rotation and translation', () => {
     const rotate = randomRotation(random);
-    const turned = pairOf(move(a, rotate, [3, -2, 9]), move(b, rotate, [3, -2, 9]));
+    const turned = pairOf(move(a, rotate, [3, -2, 9]), move(b, rotate, [3, -2, 9]), alphas[0]);
     agree(turned);
     expect(turned.phiDeg).toBeCloseTo(pair.phiDeg!, 5);
   });
 
   test('mirror: φ changes sign, energies do not', () => {
     const flip = (v: Vec): Vec => [-v[0], v[1], v[2]];
-    const mirrored = pairOf(move(a, flip, [0, 0, 0]), move(b, flip, [0, 0, 0]));
+    const mirrored = pairOf(move(a, flip, [0, 0, 0]), move(b, flip, [0, 0, 0]), alphas[0]);
     agree(mirrored);
     expect(mirrored.phiDeg).toBeCloseTo(-pair.phiDeg!, 5);
   });
 
   test('exchange of the fragments', () => {
-    const exchanged = pairOf(b, a);
+    const exchanged = pairOf(b, a, alphas[1]);
     agree(exchanged);
     expect(exchanged.theta1Deg).toBeCloseTo(180 - pair.theta2Deg!, 5);
     expect(exchanged.theta2Deg).toBeCloseTo(180 - pair.theta1Deg!, 5);
@@ -195,8 +362,10 @@ describe('identities', () => {
   });
 
   test('permittivity: first power at fixed orientation, second for the average at small x', () => {
-    const medium = pairOf(a, b, '', { relativePermittivity: 4 });
+    const medium = pairOf(a, b, alphas[0], { relativePermittivity: 4 });
     close(medium.energyKJPerMol.coulomb!, pair.energyKJPerMol.coulomb! / 4, 1e-12);
+    close(medium.energyKJPerMol.induction!, pair.energyKJPerMol.induction! / 16, 1e-12);
+    expect(medium.energyKJPerMol.dispersion).toBe(pair.energyKJPerMol.dispersion);
     const far = [1, 4].map((e) => pairOf(a, move(b, same, [60, 0, 0]), '', { relativePermittivity: e }).thermal);
     close(far[0].averageKJPerMol!, far[1].averageKJPerMol! * 16, 1e-4);
   });

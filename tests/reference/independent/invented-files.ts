@@ -106,12 +106,36 @@ export function inventedFiles(): InventedFile[] {
       return writeXyz(scatter([water, hydrogenFluoride, formaldehyde], 6, random), { keys });
     }),
     xyz('a-skewed-cell', 16, skewedCell),
+    xyz('polarizable-neutral', 18, (random) => {
+      // Far more polarizable than they are, so that some pairs come up for review for it alone.
+      const keys = 'fragment_polarizabilities="1.45 8.3 12.8 2.21 9.6"';
+      return writeXyz(scatter(POLAR, 3.2, random), { ...column, keys });
+    }),
+    xyz('polarizable-ions', 19, (random) => {
+      const keys = 'fragment_polarizabilities="1.4 1.45 5.48 2.8 nan 0" relative_permittivity=3.5';
+      const molecules = [ammonium, water, chloride, formaldehyde, hydroxide, carbonDioxide];
+      return writeXyz(scatter(molecules, 2.4, random), { ...column, keys });
+    }),
+    xyz('polarizable-in-contact', 20, (random) => {
+      const keys = 'fragment_polarizabilities="0.8 1.45 2.91 1.45 0.18 4.1"';
+      const molecules = [hydrogenFluoride, water, carbonDioxide, water, sodium, fluoroChloroMethane];
+      return writeXyz(scatter(molecules, 1.2, random), { ...column, keys });
+    }),
+    xyz('polarizable-with-dipoles', 21, (random) => {
+      const keys =
+        `fragment_charges="0 1 nan nan -0.4" fragment_dipoles="${randomVectors(4, 1.6, random)} nan nan nan" ` +
+        'fragment_polarizabilities="1.64 2.2 0 2.6 3.1"';
+      return writeXyz(scatter([argon, magnesium, water, ammonia, formaldehyde], 3, random), { fragments: true, keys });
+    }),
+    xyz('polarizable-in-a-cell', 22, (random) => {
+      return skewedCell(random, 'fragment_polarizabilities="1.45 2.8 1.4 2.3 4.2" relative_permittivity=1.8');
+    }),
     ...peptides(),
   ];
 }
 
 /** Molecules of a skewed cell, every atom thrown into some cell or other; sometimes one direction is open. */
-function skewedCell(random: () => number): string {
+function skewedCell(random: () => number, more = ''): string {
   const cell: Vec[] = [
     [13, 0.4, -0.2],
     [-5.5, 12, 0],
@@ -128,7 +152,7 @@ function skewedCell(random: () => number): string {
     });
     molecules.push({ ...placed, positions: thrown });
   }
-  const keys = `Lattice="${cell.flat().join(' ')}" pbc="T T ${open ? 'F' : 'T'}"`;
+  const keys = `Lattice="${cell.flat().join(' ')}" pbc="T T ${open ? 'F' : 'T'}" ${more}`;
   return writeXyz(molecules, { charges: true, fragments: true, keys });
 }
 

@@ -21,6 +21,8 @@ export interface Case {
   point: number | null;
   /** Coulomb sum over the charge columns. */
   coulomb: number | null;
+  /** Induction and dispersion, which no reference energy holds. */
+  polarization: (number | null)[];
   sharedProton: boolean;
   settings: Settings;
   decide: Decisions;
@@ -148,6 +150,10 @@ function adviceOf(it: Case, verdict: Verdict): string {
   }
   const { contactRatio } = contact.closest;
   if (ion && contactRatio !== null && decide.below(contactRatio, 1.5, 'advice')) return 'review';
+  const beside = settings.tolerance * Math.abs(verdict.referenceKJPerMol ?? 0);
+  const counts = (energy: number | null) =>
+    energy !== null && exceeds(Math.abs(energy), kT) && exceeds(Math.abs(energy), beside);
+  if (it.polarization.some(counts)) return 'review';
   if (it.sharedProton) return 'review';
   if (contact.kind === 'apart') {
     if (verdict.regime === 'far') return 'accept';

@@ -12,6 +12,7 @@ import {
   quadrupoleOperator,
   siteEnergy,
 } from './multipoles.js';
+import { dispersionEnergy, inductionEnergy } from './polarization.js';
 import { dipolePairAverage, ionDipoleAverage } from './thermal.js';
 import type { EnergyResult, Fragment, PairResult, ParsedFrame, Settings, ThermalResult, Vec } from './types.js';
 
@@ -48,6 +49,7 @@ export function buildPair(
     enclosed,
     point: enclosed ? null : energies.pointDipole,
     coulomb: energies.coulomb,
+    polarization: [energies.induction, energies.dispersion],
     sharedProton: !bonded && sharesProton(first, second, shift, decide),
     settings,
     decide,
@@ -175,6 +177,10 @@ function energiesOf(
   if (t1 && t2) energies.chargeQuadrupole = between(q1, t2) + between(t1, q2);
   if (d1 && d2 && t1 && t2) energies.dipoleQuadrupole = between(d1, t2) + between(t1, d2);
   if (t1 && t2) energies.quadrupoleQuadrupole = between(t1, t2);
+  const induced = inductionEnergy(first, second, vector);
+  // The medium screens the field, and the energy goes with its square.
+  if (induced !== null) energies.induction = induced / permittivity ** 2;
+  energies.dispersion = dispersionEnergy(first, second, length(vector));
   return energies;
 }
 

@@ -105,8 +105,8 @@ export interface EnergyResult {
   dipoleQuadrupole: number | null;
   quadrupoleQuadrupole: number | null;
   coulomb: number | null;
-  induction: null;
-  dispersion: null;
+  induction: number | null;
+  dispersion: number | null;
 }
 
 export interface ThermalResult {
