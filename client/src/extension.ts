@@ -6,6 +6,7 @@ import {
   State,
   TransportKind,
 } from 'vscode-languageclient/node';
+import { readWorkspaceFiles, watchLibraryFiles } from './library-files';
 import { type ServerState, type StatusParams, StatusView } from './status';
 import { currentThemeKind } from './theme';
 
@@ -39,6 +40,10 @@ export async function activate(context: ExtensionContext): Promise<void> {
     status,
     started.onDidChangeState(({ newState }) => status.serverIs(SERVER_STATES[newState])),
     started.onNotification('polewise/status', (params: StatusParams) => status.update(params)),
+    started.onRequest('polewise/readFiles', readWorkspaceFiles),
+    watchLibraryFiles(() => {
+      if (started.isRunning()) void started.sendNotification('polewise/filesChanged');
+    }),
     window.onDidChangeActiveColorTheme(() => {
       if (started.isRunning()) void started.sendNotification('polewise/theme', { themeKind: currentThemeKind() });
     }),

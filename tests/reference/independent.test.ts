@@ -36,6 +36,9 @@ const OPTION_SETS: [string, Options][] = [
 /** Differences beyond this many are counted only: a wrong convention differs everywhere. */
 const SHOWN = 30;
 
+/** The second calculation knows what a file says and nothing else. */
+const ALONE = ['--no-library', '--no-estimates'];
+
 function flags(options: Options): string[] {
   const given: [string, string | number | undefined][] = [
     ['--temperature', options.temperatureK],
@@ -49,11 +52,15 @@ function flags(options: Options): string[] {
 }
 
 function programPrints(files: string[], options: Options): ProgramOutput[] {
-  const printed = execFileSync(process.execPath, [CLI, 'pairs', ...files, '--format', 'json', ...flags(options)], {
-    encoding: 'utf8',
-    maxBuffer: 2 ** 29,
-    stdio: ['ignore', 'pipe', 'pipe'],
-  });
+  const printed = execFileSync(
+    process.execPath,
+    [CLI, 'pairs', ...files, '--format', 'json', ...ALONE, ...flags(options)],
+    {
+      encoding: 'utf8',
+      maxBuffer: 2 ** 29,
+      stdio: ['ignore', 'pipe', 'pipe'],
+    },
+  );
   const output: ProgramOutput | ProgramOutput[] = JSON.parse(printed);
   return Array.isArray(output) ? output : [output];
 }

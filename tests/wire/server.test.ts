@@ -6,6 +6,8 @@ import {
   LSPErrorCodes,
   type TextDocumentContentChangeEvent,
 } from 'vscode-languageserver-protocol';
+import { builtInKnowledge } from '../../server/src/analysis/built-in-knowledge';
+import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Language } from '../../server/src/formats/tree';
 import { indexLines } from '../../server/src/text/lines';
 import { snapshotOf } from '../../server/src/text/snapshot';
@@ -16,10 +18,13 @@ const CLUSTER = readFileSync('samples/water-cluster.xyz', 'utf8');
 const MISTAKES = readFileSync('samples/typical-mistakes.xyz', 'utf8');
 const SITE = readFileSync('samples/binding-site.pdb', 'utf8');
 
+/** What the server knows besides the text. */
+const REQUEST = { ...DEFAULT_REQUEST, knowledge: builtInKnowledge({ library: true, estimates: true }) };
+
 /** Diagnostics as a fresh analysis of the text gives them: code and range. */
 function fresh(text: string, language: Language = 'xyz'): string[] {
   const lines = indexLines(snapshotOf(text));
-  return analyse(text, language).findings.map(({ code, start, end }) => {
+  return analyse(text, language, REQUEST).findings.map(({ code, start, end }) => {
     const [from, to] = [lines.positionAt(start), lines.positionAt(end)];
     return `${code} ${from.line}:${from.column}-${to.line}:${to.column}`;
   });
@@ -167,7 +172,7 @@ describe('hover', () => {
     client.open(uri, CLUSTER);
     const hover = await client.hover(uri, 2, 3);
     const text = (hover!.contents as { value: string }).value;
-    expect(text).toContain('**H2O** · fragment 1, atom 1 · charge 0.00 e (assumed) · dipole 1.855 D (axis)');
+    expect(text).toContain('**H2O** · fragment 1, atom 1 · charge 0.00 e (library) · dipole 1.855 D (axis)');
     expect(text).toMatch(
       /Strongest partner \*\*H2O \(6\)\*\* at 2\.80 Å: attractive, −15\.7 kJ\/mol = 6\.3 kT, point dipole near, \*\*compute\*\*/,
     );

@@ -14,7 +14,7 @@ import type { Language } from '../formats/tree';
 import { diagnosticsOf, rangeOf } from './diagnostics';
 import type { Clock } from './pace';
 import { renderHover } from './render-hover';
-import { SettingsStore } from './settings';
+import { type LibraryFile, libraryFileNames, readSettings, SettingsStore } from './settings';
 import { busyStatus, failedStatus, readyStatus, STATUS_NOTIFICATION, type StatusParams } from './status';
 import { offsetOf } from './text-store';
 import { Workspace } from './workspace';
@@ -33,6 +33,10 @@ interface ClientAbilities {
   refresh: boolean;
 }
 
+/** Asks the editor for the texts of files by their names in the workspace of a document: a list of texts, null for what cannot be read. */
+const READ_FILES_REQUEST = 'polewise/readFiles';
+/** Tells that such a file has changed. */
+const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
 const THEME_NOTIFICATION = 'polewise/theme';
 const THEMES: readonly PictureTheme[] = ['light', 'dark', 'high-contrast'];
 
@@ -48,9 +52,19 @@ export function startServer(connection: Connection, platform: Platform): void {
   let pushed: unknown = {};
   let theme: PictureTheme | null = null;
 
-  const settings = new SettingsStore(async (uri) =>
-    client.configuration ? connection.workspace.getConfiguration({ scopeUri: uri, section: 'polewise' }) : pushed,
-  );
+  /** The texts of files beside a document; only the editor can read them, wherever the workspace lives. */
+  const readFiles = async (uri: string, names: readonly string[]): Promise<LibraryFile[]> => {
+    const answer: unknown = await connection.sendRequest(READ_FILES_REQUEST, { uri, names }).catch(() => null);
+    const texts: unknown[] = Array.isArray(answer) ? answer : [];
+    return names.map((name, k) => ({ name, text: typeof texts[k] === 'string' ? texts[k] : null }));
+  };
+  const settings = new SettingsStore(async (uri) => {
+    const raw: unknown = client.configuration
+      ? await connection.workspace.getConfiguration({ scopeUri: uri, section: 'polewise' })
+      : pushed;
+    const names = libraryFileNames(raw);
+    return readSettings(raw, names.length === 0 ? [] : await readFiles(uri, names));
+  });
   const tell = (status: StatusParams) => void connection.sendNotification(STATUS_NOTIFICATION, status);
   const workspace = new Workspace(
     { clock: platform.clock, settingsOf: (uri) => settings.of(uri) },
@@ -91,6 +105,12 @@ export function startServer(connection: Connection, platform: Platform): void {
 
   connection.onDidChangeConfiguration((change) => {
     pushed = (change.settings as { polewise?: unknown } | null)?.polewise ?? {};
+    settings.clear();
+    workspace.refresh();
+    if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
+  });
+
+  connection.onNotification(FILES_CHANGED_NOTIFICATION, () => {
     settings.clear();
     workspace.refresh();
     if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();

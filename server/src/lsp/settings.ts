@@ -5,8 +5,11 @@ import {
   type Centre,
   DEFAULT_ENERGY_UNIT,
   DEFAULT_SETTINGS,
+  type Knowledge,
 } from '../analysis/settings';
 import { isFindingCode, SEVERITIES, type Severity } from '../base/catalogue';
+import { FragmentLibrary } from '../library/match';
+import { readLibrary } from '../library/user-library';
 import { findMedium } from '../physics/media';
 import { readQuantity } from '../physics/quantity';
 import { ENERGY_UNITS, type EnergyUnit } from '../physics/units';
@@ -24,9 +27,10 @@ export interface ServerSettings {
 
 const DEFAULT_MAX_FINDINGS = 200;
 const DEFAULT_ANALYSIS_LIMIT = 200000;
+const MOST_LIBRARY_FILES = 20;
 
 /** Checks settings as the editor sends them: a wrong one gives its default and a complaint, one out of range is clamped. */
-export function readSettings(raw: unknown): ServerSettings {
+export function readSettings(raw: unknown, libraryFiles: readonly LibraryFile[] = []): ServerSettings {
   const reader = new SettingsReader(raw);
   const settings = {
     ...DEFAULT_SETTINGS,
@@ -36,10 +40,7 @@ export function readSettings(raw: unknown): ServerSettings {
     tolerance: reader.number('tolerance', 0.01, 1, DEFAULT_SETTINGS.tolerance),
     cutoffA: reader.number('cutoff', 1, 100, DEFAULT_SETTINGS.cutoffA),
   };
-  const knowledge = builtInKnowledge({
-    library: reader.flag('library', true),
-    estimates: reader.flag('estimates', true),
-  });
+  const knowledge = reader.knowledge(libraryFiles);
   return {
     request: Object.freeze({
       settings: Object.freeze(settings),
@@ -92,6 +93,22 @@ class SettingsReader {
     return this.#complain(name, 'is neither true nor false', fallback);
   }
 
+  knowledge(files: readonly LibraryFile[]): Knowledge | null {
+    const estimates = this.flag('estimates', true);
+    const known = builtInKnowledge({ library: this.flag('library', true), estimates });
+    if (files.length === 0) return known;
+    let entries = known?.library?.entries ?? [];
+    for (const { name, text } of files) {
+      const { data, reason } = parsed(text);
+      const read =
+        reason === null ? readLibrary(data, entries) : { entries, problems: [{ path: '', message: reason }] };
+      entries = read.entries;
+      const [first] = read.problems;
+      if (first !== undefined) this.complaints.push(`${name}: ${first.path || '/'}: ${first.message}`);
+    }
+    return { library: new FragmentLibrary(entries), estimates };
+  }
+
   temperature(): number {
     const value = this.#value('temperature');
     if (value === undefined) return DEFAULT_SETTINGS.temperatureK;
@@ -125,12 +142,33 @@ class SettingsReader {
   }
 }
 
+/** A file of molecules that the settings name; `null` for one that cannot be read. */
+export interface LibraryFile {
+  readonly name: string;
+  readonly text: string | null;
+}
+
+function parsed(text: string | null): { data: unknown; reason: string | null } {
+  if (text === null) return { data: null, reason: 'the file cannot be read' };
+  try {
+    return { data: JSON.parse(text), reason: null };
+  } catch (error) {
+    return { data: null, reason: (error as Error).message };
+  }
+}
+
+/** The names of the library files in settings as the editor sends them. */
+export function libraryFileNames(raw: unknown): string[] {
+  const names = (raw as { libraryFiles?: unknown } | null | undefined)?.libraryFiles;
+  return Array.isArray(names) ? names.filter((name) => typeof name === 'string').slice(0, MOST_LIBRARY_FILES) : [];
+}
+
 /** The settings of each resource, asked for once until they change. */
 export class SettingsStore {
-  readonly #ask: (uri: string) => Promise<unknown>;
+  readonly #ask: (uri: string) => Promise<ServerSettings>;
   readonly #known = new Map<string, Promise<ServerSettings>>();
 
-  constructor(ask: (uri: string) => Promise<unknown>) {
+  constructor(ask: (uri: string) => Promise<ServerSettings>) {
     this.#ask = ask;
   }
 
@@ -138,7 +176,7 @@ export class SettingsStore {
   of(uri: string): Promise<ServerSettings> {
     let settings = this.#known.get(uri);
     if (settings === undefined) {
-      settings = this.#ask(uri).then(readSettings);
+      settings = this.#ask(uri);
       this.#known.set(uri, settings);
       // What could not be had is asked for again.
       settings.catch(() => this.#known.delete(uri));
