@@ -46,7 +46,7 @@ export function waterBoxXyz(molecules: number, { kinds, charges, list, row, cell
 /** PDB records of a stretched chain of glycines with a water beside each, and charges in the occupancy columns of a remark. */
 export function proteinLikePdb(residues: number): string {
   const random = randomFrom(residues);
-  const rows: string[] = ['REMARK  99 POLEWISE _:HOH:* dipole_size=1.85 axis=O>H1,H2'];
+  const rows: string[] = ['REMARK  99 fragment=*:HOH:* dipole_size=1.85 axis=O>H1,H2'];
   let serial = 0;
   const atom = (
     record: string,

@@ -107,7 +107,7 @@ const CASES: readonly Case[] = [
   {
     name: 'an annotation behind the atoms',
     language: 'pdb',
-    text: `${proteinLikePdb(3)}REMARK  99 POLEWISE A:GLY:3 dipole="1 2 3" charge=0.5\n`,
+    text: `${proteinLikePdb(3)}REMARK  99 fragment=A:GLY:3 dipole="1 2 3" charge=0.5\n`,
     edits: 100,
     quickShare: 0,
   },

@@ -7,7 +7,7 @@ import {
   type TextDocumentContentChangeEvent,
 } from 'vscode-languageserver-protocol';
 import { builtInKnowledge } from '../../server/src/analysis/built-in-knowledge';
-import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
+import { type AnalysisRequest, DEFAULT_REQUEST } from '../../server/src/analysis/settings';
 import type { Language } from '../../server/src/formats/tree';
 import { indexLines } from '../../server/src/text/lines';
 import { snapshotOf } from '../../server/src/text/snapshot';
@@ -19,7 +19,10 @@ const MISTAKES = readFileSync('samples/typical-mistakes.xyz', 'utf8');
 const SITE = readFileSync('samples/binding-site.pdb', 'utf8');
 
 /** What the server knows besides the text. */
-const REQUEST = { ...DEFAULT_REQUEST, knowledge: builtInKnowledge({ library: true, estimates: true }) };
+const REQUEST: AnalysisRequest = {
+  ...DEFAULT_REQUEST,
+  knowledge: builtInKnowledge({ library: true, estimates: true }),
+};
 
 /** Diagnostics as a fresh analysis of the text gives them: code and range. */
 function fresh(text: string, language: Language = 'xyz'): string[] {

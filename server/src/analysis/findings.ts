@@ -7,6 +7,7 @@ import { NoteKind, noteOf, PairNotes } from './pair-notes';
 import { reportClashes, reportCoincident, reportJoined } from './rules/contacts';
 import { RuleContext } from './rules/context';
 import { reportDipolesAgainstCharges } from './rules/dipole-charges';
+import { reportDipolesAgainstKnowledge } from './rules/dipole-expected';
 import { reportFragmentFacts, reportSmallCell } from './rules/fragment-facts';
 import { reportChargeSum, reportDipoleSum, reportElectronParity } from './rules/frame-charge';
 import { reportLengthUnit } from './rules/length-unit';
@@ -69,6 +70,7 @@ export class FileFindings {
     reportChargeSum(context);
     reportDipoleSum(context);
     reportDipolesAgainstCharges(context);
+    reportDipolesAgainstKnowledge(context);
     yield;
     // A fragment that could not be read whole is of no kind that anything should be said of.
     if (!this.#hasErrors(frame)) reportFragmentFacts(context);

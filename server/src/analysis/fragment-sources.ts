@@ -31,6 +31,8 @@ export function fillSources(
     moments.dipoleSource[f] = 'none';
     return;
   }
+  // The oxygen of a water without hydrogens is no atom.
+  if (match?.by === 'residue' && match.entry.molecule.elements.length > 1) moments.isAtom[f] = 0;
   moments.dipoleSource[f] = chooseDipole(model, members, note, f, moments, known, match);
 }
 

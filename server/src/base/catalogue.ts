@@ -145,27 +145,28 @@ export const CATALOGUE = {
     severity: 'warning',
     title: 'Dipole in another unit',
     meaning:
-      'The annotated dipole points along the dipole of the atomic charges, but is larger or smaller by just the factor between two units.',
+      'The annotated dipole points along the dipole of the atomic charges (without charges: the published or estimated one), but is larger or smaller by just the factor between two units.',
     remedy: 'Convert the value or correct dipole_unit.',
   },
   'dipole-reversed': {
     severity: 'warning',
     title: 'Dipole reversed',
     meaning:
-      'The annotated dipole points against the dipole of the atomic charges. Here dipoles point from negative to positive charge; the arrow drawn by chemists is the reverse.',
+      'The annotated dipole points against the dipole of the atomic charges (without charges: the published or estimated one). Here dipoles point from negative to positive charge; the arrow drawn by chemists is the reverse.',
     remedy: 'Change the sign of all three components.',
   },
   'dipole-rotated': {
     severity: 'warning',
     title: 'Dipole in another orientation',
     meaning:
-      'The annotated dipole has the size of the dipole of the atomic charges but another direction: it probably belongs to another orientation of the molecule.',
+      'The annotated dipole has the size of the dipole of the atomic charges (without charges: the published or estimated one) but another direction: it probably belongs to another orientation of the molecule.',
     remedy: 'Derive the vector again, or give size and axis, which follow the atoms.',
   },
   'dipole-mismatch': {
     severity: 'warning',
     title: 'Dipole against charges',
-    meaning: 'The annotated dipole differs in size by more than 40 % from the dipole of the atomic charges.',
+    meaning:
+      'The annotated dipole differs in size by more than 40 % from the dipole of the atomic charges (without charges: from the published one, or by far more than the error of an estimate).',
     remedy: 'Check both; one of them does not belong to this molecule.',
   },
   'electron-parity': {
@@ -208,7 +209,7 @@ export const CATALOGUE = {
     severity: 'information',
     title: 'Dipole differs from the charges',
     meaning:
-      'The annotated dipole differs in size by 20–40 % from the dipole of the atomic charges. Force-field charges are commonly over-polarized (common practice, no source).',
+      'The annotated dipole differs in size by 20–40 % from the dipole of the atomic charges (without charges: from the published one). Force-field charges are commonly over-polarized (common practice, no source).',
     remedy: 'The annotated value is used; nothing to do if the difference is intended.',
   },
   'dipole-sum': {

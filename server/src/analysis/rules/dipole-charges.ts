@@ -8,7 +8,7 @@ import { type RuleContext, shown } from './context';
 /** Two dipoles closer than this agree, e·Å. */
 const AGREEMENT_EA = 0.1 * DEBYE_E_A;
 /** Factors between units in which dipoles are given: a.u./D, e·Å/D, e·Å/a.u. */
-const UNIT_FACTORS = [BOHR_A / DEBYE_E_A, 1 / DEBYE_E_A, 1 / BOHR_A];
+export const UNIT_FACTORS = [BOHR_A / DEBYE_E_A, 1 / DEBYE_E_A, 1 / BOHR_A];
 const UNIT_SHARE = 0.05;
 const SAME_DIRECTION_DEG = 15;
 const OPPOSITE_DEG = 20;
@@ -35,9 +35,9 @@ export function reportDipolesAgainstCharges(context: RuleContext): void {
   }
 }
 
-type Vector = [number, number, number];
+export type Vector = [number, number, number];
 
-function vectorAt(array: Float64Array, f: number): Vector {
+export function vectorAt(array: Float64Array, f: number): Vector {
   return [array[3 * f]!, array[3 * f + 1]!, array[3 * f + 2]!];
 }
 
@@ -82,12 +82,12 @@ function compare(context: RuleContext, f: number, annotated: Vector, column: Vec
   }
 }
 
-function debye(sizeEA: number): string {
+export function debye(sizeEA: number): string {
   return `${shown(sizeEA / DEBYE_E_A)} D`;
 }
 
 /** The written numbers times a factor, with as many significant digits as they have. */
-function scaled(context: RuleContext, written: WrittenDipole, factor: number): TextEdit[] {
+export function scaled(context: RuleContext, written: WrittenDipole, factor: number): TextEdit[] {
   return written.items.flatMap(({ start, end }) => {
     // A size may have its unit behind it, which stays.
     const [text = ''] = /^[+-]?[\d.]+(?:[eEdD][+-]?\d+)?/.exec(context.file.text.slice(start, end)) ?? [];
@@ -101,7 +101,7 @@ function scaled(context: RuleContext, written: WrittenDipole, factor: number): T
 }
 
 /** Changes the sign of each component as written, or turns the axis round. */
-function reversal(context: RuleContext, f: number, written: WrittenDipole): { fix?: Fix } {
+export function reversal(context: RuleContext, f: number, written: WrittenDipole): { fix?: Fix } {
   const { text } = context.file;
   const { axis } = context.frame.model.notes[f]!;
   if (written.items.length === 3) {
@@ -121,7 +121,11 @@ function reversal(context: RuleContext, f: number, written: WrittenDipole): { fi
 }
 
 /** Replaces the vector by the dipole of the charges, in the unit as written. */
-function rederived(column: Vector, written: WrittenDipole): { fix?: Fix } {
+export function rederived(
+  column: Vector,
+  written: WrittenDipole,
+  title = 'Take the dipole of the charges',
+): { fix?: Fix } {
   if (written.items.length !== 3) return {};
   const scale = dipoleUnitEA(written.unit)!;
   const edits = written.items.map(({ start, end }, a) => ({
@@ -129,5 +133,5 @@ function rederived(column: Vector, written: WrittenDipole): { fix?: Fix } {
     end,
     text: String(Number((column[a as 0]! / scale).toPrecision(5))),
   }));
-  return { fix: { title: 'Take the dipole of the charges', edits } };
+  return { fix: { title, edits } };
 }

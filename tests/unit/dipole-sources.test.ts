@@ -1,0 +1,123 @@
+import { describe, expect, test } from 'vitest';
+import { builtInKnowledge } from '../../server/src/analysis/built-in-knowledge';
+import { type AnalysisRequest, DEFAULT_REQUEST } from '../../server/src/analysis/settings';
+import { fragmentRecord } from '../../server/src/features/records';
+import { analyse, applyFix } from '../support/analyse';
+
+/** Dipoles, charges and polarizabilities that a file does not give, and what is said of dipoles that it gives. */
+
+const KNOWING: AnalysisRequest = {
+  ...DEFAULT_REQUEST,
+  knowledge: builtInKnowledge({ library: true, estimates: true }),
+};
+const ESTIMATING: AnalysisRequest = {
+  ...DEFAULT_REQUEST,
+  knowledge: builtInKnowledge({ library: false, estimates: true }),
+};
+
+/** Experimental geometry of water, C2 along z, oxygen up: its dipole points down. */
+const WATER = ['O 0 0 0.1173', 'H 0 0.7572 -0.4692', 'H 0 -0.7572 -0.4692'];
+const FORMALDEHYDE = ['C 0 0 0', 'O 0 0 1.205', 'H 0.94 0 -0.54', 'H -0.94 0 -0.54'];
+
+const xyz = (atoms: readonly string[], comment = '') => [atoms.length, comment, ...atoms, ''].join('\n');
+
+function first(text: string, request: AnalysisRequest, language: 'xyz' | 'pdb' = 'xyz') {
+  const { frames } = analyse(text, language, request);
+  return fragmentRecord(frames[0]!, 0, () => ({ name: '', label: null }));
+}
+
+describe('a fragment of which the file says nothing', () => {
+  test('without knowledge has no dipole', () => {
+    expect(first(xyz(WATER), DEFAULT_REQUEST)).toMatchObject({ dipoleSource: 'none', dipoleD: null });
+  });
+
+  test('has the published dipole along the axis of its atoms, and says how sure it is', () => {
+    // Water: 1.85 D, CCCBDB (NIST SRD 101, release 17b); from the oxygen to the hydrogens.
+    const record = first(xyz(WATER), KNOWING);
+    expect(record).toMatchObject({ dipoleSource: 'library', chargeSource: 'library', dipoleNormD: 1.85 });
+    expect(record.dipoleD![2]).toBeCloseTo(-1.85, 10);
+    expect(record.dipoleErrorD).toBeGreaterThan(0);
+    expect(record.dipoleNote).toContain('CCCBDB');
+    expect(record.polarizabilitySource).toContain('library');
+  });
+
+  test('has the same dipole turned, when it is turned', () => {
+    const turned = WATER.map((line) => line.replace(/^(\S+) (\S+) (\S+) (\S+)$/, '$1 $4 $2 $3'));
+    const { dipoleD } = first(xyz(turned), KNOWING);
+    expect(dipoleD![0]).toBeCloseTo(-1.85, 10);
+  });
+
+  test('without the library has a dipole from its geometry, within three mean errors of the published size', () => {
+    // Formaldehyde: 2.33 D, CCCBDB.
+    const record = first(xyz(FORMALDEHYDE), ESTIMATING);
+    expect(record.dipoleSource).toBe('estimated');
+    expect(Math.abs(record.dipoleNormD! - 2.33)).toBeLessThan(3 * record.dipoleErrorD!);
+    expect(record.dipoleD![2]).toBeLessThan(0);
+    expect(record.dipoleAngleErrorDeg).toBeGreaterThan(0);
+  });
+
+  test.each([
+    ['a radical', ['O 0 0 0', 'H 0 0 0.97'], /odd number of electrons/i],
+    ['a metal', ['Ti 0 0 0', 'O 0 0 1.62'], /metal|odd|parameters/i],
+  ])('%s is refused with a reason', (_, atoms, reason) => {
+    const record = first(xyz(atoms), ESTIMATING);
+    expect(record).toMatchObject({ dipoleSource: 'none', dipoleD: null, dipoleErrorD: null });
+    expect(record.dipoleNote).toMatch(reason);
+  });
+
+  test('an ion by the name of its residue carries its charge', () => {
+    const line = 'HETATM    1 NA    NA A   1       0.000   0.000   0.000  1.00  0.00          NA  ';
+    expect(first(`${line}\nEND\n`, KNOWING, 'pdb')).toMatchObject({ chargeE: 1, chargeSource: 'library' });
+  });
+
+  test('a water without hydrogens has the size of the dipole and no direction', () => {
+    const line = 'HETATM    1  O   HOH A   1       0.000   0.000   0.000  1.00  0.00           O  ';
+    expect(first(`${line}\nEND\n`, KNOWING, 'pdb')).toMatchObject({
+      dipoleSource: 'library',
+      dipoleNormD: 1.85,
+      dipoleD: null,
+    });
+  });
+});
+
+describe('a dipole of the file, without charges, beside the published one', () => {
+  const codes = (text: string) => analyse(text, 'xyz', KNOWING).findings.map(({ code }) => code);
+
+  test.each([
+    ['that agrees', '0 0 -1.85', []],
+    ['reversed', '0 0 1.85', ['dipole-reversed']],
+    ['in atomic units', '0 0 -0.728', ['dipole-unit']],
+    ['in e·Å', '0 0 -0.385', ['dipole-unit']],
+    ['of another orientation', '1.85 0 0', ['dipole-rotated']],
+    [
+      'of a polarized water model (SPC/E, 2.35 D: H. J. C. Berendsen et al., J. Phys. Chem. 91 (1987) 6269)',
+      '0 0 -2.35',
+      ['dipole-deviation'],
+    ],
+    ['of another molecule', '0 0 -3.9', ['dipole-mismatch']],
+  ])('%s', (_, dipole, expected) => {
+    expect(codes(xyz(WATER, `fragment_dipoles="${dipole}"`))).toEqual(expected);
+  });
+
+  test.each([['0 0 1.85'], ['0 0 -0.728'], ['1.85 0 0']])(
+    '%s D is mended by the fix, and nothing else is said',
+    (dipole) => {
+      const text = xyz(WATER, `fragment_dipoles="${dipole}"`);
+      const [finding] = analyse(text, 'xyz', KNOWING).findings;
+      expect(finding!.message).toContain('published');
+      expect(codes(applyFix(text, finding!))).toEqual([]);
+    },
+  );
+
+  test('is compared with an estimate where nothing is published, and by its error', () => {
+    const text = (dipole: string) => xyz(FORMALDEHYDE, `fragment_dipoles="${dipole}"`);
+    const said = (dipole: string) => analyse(text(dipole), 'xyz', ESTIMATING).findings;
+    expect(said('0 0 2.4').map(({ code }) => code)).toEqual(['dipole-reversed']);
+    expect(said('0 0 2.4')[0]!.message).toContain('estimated from its geometry');
+    expect(said('0 0 -2.9')).toEqual([]);
+  });
+
+  test('an axis the wrong way round is noticed too', () => {
+    expect(codes(xyz(WATER, 'kind_dipole_sizes=H2O:1.85 kind_axes=H2O:H>O'))).toEqual(['dipole-reversed']);
+  });
+});
