@@ -91,7 +91,9 @@ export class ModelKnowledge {
     centreA: Vector,
   ): OfferedDipole {
     const note = `${entry.name}: ${source}${entry.note === null ? '' : ` (${entry.note})`}`;
-    const known = { source: 'library', sizeEA: value, sizeErrorEA: LIBRARY_SPREAD * value, note } as const;
+    // How far a user's own value is off only the user knows.
+    const sizeErrorEA = entry.fromUser ? Number.NaN : LIBRARY_SPREAD * value;
+    const known = { source: 'library', sizeEA: value, sizeErrorEA, note } as const;
     const members = this.#members(f);
     const along = axis && this.#between(members, axis.before, axis.after);
     if (along !== null || value === 0) return { ...known, direction: along, angleErrorDeg: Number.NaN };

@@ -40,13 +40,13 @@ function compare(context: RuleContext, f: number, written: WrittenDipole): void 
   const expectedSize = Math.hypot(...expected);
   if (!(Math.max(size, expectedSize) > SMALLEST_EA)) return;
   const isPublished = !moments.expectedNote[f]!.startsWith('estimated');
-  const sizeError = moments.dipoleErrorEA[f]!;
+  const sizeError = moments.dipoleErrorEA[f]! || 0;
   const angleError = ERRORS * (moments.dipoleAngleErrorDeg[f]! || 0);
   const angle = angleBetween(annotated, expected);
   const ratio = size / expectedSize;
   const share = Math.abs(ratio - 1);
   const [source = ''] = moments.expectedNote[f]!.split(/[,(]/);
-  const what = `${isPublished ? 'the published one' : 'the one estimated from its geometry'} ${debye(expectedSize)} ± ${shown(sizeError / DEBYE_E_A, 1)} D`;
+  const what = `${isPublished ? 'the published one' : 'the one estimated from its geometry'} ${debye(expectedSize)}${sizeError > 0 ? ` ± ${shown(sizeError / DEBYE_E_A, 1)} D` : ''}`;
   const compared = `The annotated dipole of ${context.nameOf(f)} is ${debye(size)}, ${what}${isPublished ? ` (${source.trim()})` : ''}`;
   const alike = ALIKE_DEG + angleError;
   const span = written.span;
