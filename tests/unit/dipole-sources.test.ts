@@ -38,7 +38,7 @@ describe('a fragment of which the file says nothing', () => {
     expect(record.dipoleD![2]).toBeCloseTo(-1.85, 10);
     expect(record.dipoleErrorD).toBeGreaterThan(0);
     expect(record.dipoleNote).toContain('CCCBDB');
-    expect(record.polarizabilitySource).toContain('library');
+    expect(record.polarizabilitySource).toContain('CCCBDB');
   });
 
   test('has the same dipole turned, when it is turned', () => {

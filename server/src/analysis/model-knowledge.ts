@@ -1,4 +1,4 @@
-import type { SourcedValue } from '../library/entry';
+import type { LibraryEntry, SourcedValue } from '../library/entry';
 import type { LibraryMatch } from '../library/match';
 import { firstPairOf } from '../model/close-pairs';
 import type { FrameModel } from '../model/frame-model';
@@ -37,6 +37,7 @@ export class ModelKnowledge {
   /** 1 for a fragment that is cut from a chain: it is no molecule. */
   readonly #isCut: Uint8Array;
   readonly #hydrogensShown: boolean;
+  readonly #notes = new Map<LibraryEntry, string>();
 
   constructor(model: FrameModel, knowledge: Knowledge) {
     this.#model = model;
@@ -90,7 +91,7 @@ export class ModelKnowledge {
     chargeE: number,
     centreA: Vector,
   ): OfferedDipole {
-    const note = `${entry.name}: ${source}${entry.note === null ? '' : ` (${entry.note})`}`;
+    const note = this.#noteOf(entry, source);
     // How far a user's own value is off only the user knows.
     const sizeErrorEA = entry.fromUser ? Number.NaN : LIBRARY_SPREAD * value;
     const known = { source: 'library', sizeEA: value, sizeErrorEA, note } as const;
@@ -110,6 +111,16 @@ export class ModelKnowledge {
     };
   }
 
+  /** Where an entry's dipole is from; one string for thousands of waters. */
+  #noteOf(entry: LibraryEntry, source: string): string {
+    let note = this.#notes.get(entry);
+    if (note === undefined) {
+      note = `${entry.name}: ${source}${entry.note === null ? '' : ` (${entry.note})`}`;
+      this.#notes.set(entry, note);
+    }
+    return note;
+  }
+
   /** The estimated direction of a dipole whose size is known; `null` where there is none. */
   direction(f: number, chargeE: number, centreA: Vector): Vector | null {
     const estimate = this.#estimate(f, chargeE, centreA);
@@ -122,7 +133,7 @@ export class ModelKnowledge {
   /** The polarizability volume of a fragment, Å³, as published or as a sum of published components; `null` where neither is known. */
   polarizability(f: number, match: LibraryMatch | null, chargeE: number): { valueA3: number; source: string } | null {
     const published = match?.entry.polarizabilityA3;
-    if (published) return { valueA3: published.value, source: `library (${published.source})` };
+    if (published) return { valueA3: published.value, source: published.source };
     if (!this.#knowledge.estimates || this.#isCut[f]) return null;
     const members = this.#members(f);
     if (members.length > MOST_ESTIMATED_ATOMS) return null;
