@@ -40,6 +40,8 @@ export interface ClientOptions {
   /** Whether the client asks for diagnostics itself (default true). */
   readonly pull?: boolean;
   readonly settings?: unknown;
+  /** Texts of the files of the workspace by name. */
+  readonly files?: Readonly<Record<string, string>>;
   /** The server's program (default: the built server). */
   readonly server?: string;
   /** A module that Node loads before the server, and that answers what {@link WireClient.askPreloaded} asks. */
@@ -52,13 +54,15 @@ export class WireClient {
   readonly published: PublishDiagnosticsParams[] = [];
   readonly statuses: Status[] = [];
   settings: unknown;
+  files: Record<string, string>;
   initialized: InitializeResult | undefined;
   readonly #process: ChildProcess;
   readonly #exit: Promise<number | null>;
   readonly #waiting: { test: () => boolean; done: () => void }[] = [];
 
-  private constructor({ settings = {}, server = 'server/dist/server.cjs', preload }: ClientOptions) {
+  private constructor({ settings = {}, files = {}, server = 'server/dist/server.cjs', preload }: ClientOptions) {
     this.settings = settings;
+    this.files = { ...files };
     const loaded = preload === undefined ? [] : ['--expose-gc', '--require', resolve(preload)];
     this.#process = spawn('node', [...loaded, resolve(server), '--stdio'], {
       stdio: ['pipe', 'pipe', 'inherit', ...(preload === undefined ? [] : ['ipc' as const])],
@@ -67,6 +71,9 @@ export class WireClient {
     this.connection = createProtocolConnection(
       new StreamMessageReader(this.#process.stdout!),
       new StreamMessageWriter(this.#process.stdin!),
+    );
+    this.connection.onRequest('polewise/readFiles', ({ names }: { names: string[] }) =>
+      names.map((name) => this.files[name] ?? null),
     );
     this.connection.onRequest(ConfigurationRequest.type, ({ items }) => items.map(() => this.settings));
     this.connection.onRequest(RegistrationRequest.type, () => undefined);
@@ -127,6 +134,12 @@ export class WireClient {
 
   close(uri: string): void {
     void this.connection.sendNotification(DidCloseTextDocumentNotification.type, { textDocument: { uri } });
+  }
+
+  /** A file of the workspace is saved. */
+  save(name: string, text: string): void {
+    this.files[name] = text;
+    void this.connection.sendNotification('polewise/filesChanged');
   }
 
   configure(settings: unknown): void {

@@ -297,6 +297,51 @@ describe('settings', () => {
       expect(status.detail).toContain(`polewise.${name}`);
   });
 
+  describe('library files', () => {
+    const BARE = '3\n\nO 0 0 0.1173\nH 0 0.7572 -0.4692\nH 0 -0.7572 -0.4692\n';
+    const water = (dipole: string) =>
+      JSON.stringify({ molecules: [{ name: 'water', dipole: { value: dipole, source: 'our own' } }] });
+    const dipoleIn = async (own: WireClient) => {
+      const hover = await own.hover('file:///b.xyz', 2, 1);
+      return /dipole ([^()]*) \(([^)]*)\)/
+        .exec((hover!.contents as { value: string }).value)!
+        .slice(1, 3)
+        .join(' from ');
+    };
+
+    it('give values of their own, and a saved one takes hold', async () => {
+      const own = await WireClient.start({
+        settings: { libraryFiles: ['polewise-library.json'] },
+        files: { 'polewise-library.json': water('2.5 D') },
+      });
+      own.open('file:///b.xyz', BARE);
+      expect(await dipoleIn(own)).toBe('2.500 D from library');
+      own.save('polewise-library.json', water('6.671e-30 C*m'));
+      expect(await dipoleIn(own)).toBe('2.000 D from library');
+      await own.stop();
+    });
+
+    it.each([
+      ['missing', {}, 'cannot be read'],
+      ['no JSON', { 'a.json': '{' }, 'JSON'],
+      ['wrong', { 'a.json': water('2.5 furlong') }, '/molecules/0/dipole'],
+    ])('that are %s leave the built-in values and a word in the status', async (_, files, word) => {
+      const own = await WireClient.start({ settings: { libraryFiles: ['a.json'] }, files });
+      own.open('file:///b.xyz', BARE);
+      expect(await dipoleIn(own)).toBe('1.85 ± 0.06 D from library');
+      expect(own.statuses.at(-1)!.detail).toContain(word);
+      await own.stop();
+    });
+
+    it('are of no use where library and estimates are switched off', async () => {
+      const own = await WireClient.start({ settings: { library: false, estimates: false } });
+      own.open('file:///b.xyz', BARE);
+      const hover = await own.hover('file:///b.xyz', 2, 1);
+      expect((hover!.contents as { value: string }).value).toContain('dipole unknown');
+      await own.stop();
+    });
+  });
+
   it('beyond analysisLimit pairs are off, and the status says so', async () => {
     const { diagnostics, status } = await kinds({ analysisLimit: 10 });
     expect(diagnostics).toEqual([]);

@@ -87,13 +87,13 @@ export class ModelKnowledge {
   #published(
     f: number,
     { entry, axis }: LibraryMatch,
-    { value, source }: SourcedValue,
+    { value, source, fromUser }: SourcedValue,
     chargeE: number,
     centreA: Vector,
   ): OfferedDipole {
     const note = this.#noteOf(entry, source);
     // How far a user's own value is off only the user knows.
-    const sizeErrorEA = entry.fromUser ? Number.NaN : LIBRARY_SPREAD * value;
+    const sizeErrorEA = fromUser ? Number.NaN : LIBRARY_SPREAD * value;
     const known = { source: 'library', sizeEA: value, sizeErrorEA, note } as const;
     const members = this.#members(f);
     const along = axis && this.#between(members, axis.before, axis.after);

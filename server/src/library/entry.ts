@@ -5,6 +5,8 @@ import type { Molecule } from './smiles';
 export interface SourcedValue {
   readonly value: number;
   readonly source: string;
+  /** Whether it comes from the user's own file. */
+  readonly fromUser: boolean;
 }
 
 /**

@@ -202,13 +202,18 @@ class EntryReader {
     if (value === null) return null;
     if (typeof value !== 'object' || Array.isArray(value)) {
       const number = this.#number(value, path, kind);
-      return number === undefined ? undefined : { value: number, source: '' };
+      return number === undefined ? undefined : this.#sourced(number, '');
     }
     const fields = this.#problems.object(value, path, ['value', 'source'], 'A quantity');
     const number = this.#number(fields?.value, `${path}/value`, kind);
     const source = fields !== null && 'source' in fields ? this.#problems.text(fields.source, `${path}/source`) : null;
     if (number === undefined) return undefined;
-    return { value: number, source: this.#sources.get(source ?? '') ?? source ?? '' };
+    return this.#sourced(number, this.#sources.get(source ?? '') ?? source ?? '');
+  }
+
+  #sourced(value: number, source: string): SourcedValue {
+    const fromUser = this.#fromUser;
+    return { value, source: source === '' && fromUser ? 'a library file of your own' : source, fromUser };
   }
 
   #number(value: unknown, path: string, kind: keyof typeof QUANTITIES): number | undefined {
