@@ -1,7 +1,7 @@
 import { describe, expect, test } from 'vitest';
 import { builtInKnowledge } from '../../server/src/analysis/built-in-knowledge';
 import { type AnalysisRequest, DEFAULT_REQUEST } from '../../server/src/analysis/settings';
-import { fragmentRecord } from '../../server/src/features/records';
+import { fragmentRecord, pairRecord } from '../../server/src/features/records';
 import { analyse, applyFix } from '../support/analyse';
 
 /** Dipoles, charges and polarizabilities that a file does not give, and what is said of dipoles that it gives. */
@@ -78,6 +78,42 @@ describe('a fragment of which the file says nothing', () => {
       dipoleD: null,
     });
   });
+});
+
+describe('a pair of waters of which the file says nothing', () => {
+  const shifted = WATER.map((line) => {
+    const [symbol, x, y, z] = line.split(' ');
+    return [symbol, x, y, (Number(z) + 5).toFixed(4)].join(' ');
+  });
+  const { frames, pairs } = analyse(xyz([...WATER, ...shifted]), 'xyz', KNOWING);
+  const record = pairRecord(frames[0]!.system, pairs[0]![0]!);
+
+  test('in a row: each dipole moves the energy by its own share of error, and the two are independent', () => {
+    // E is proportional to each size, both off by 3 %.
+    const { dipoleDipole } = record.energyKJPerMol;
+    expect(record.dipoleUncertaintyKJPerMol).toBeCloseTo(Math.SQRT2 * 0.03 * Math.abs(dipoleDipole!), 10);
+  });
+
+  test('has induction and dispersion, and an averaged induction of −2 μ²α/R⁶', () => {
+    expect(record.energyKJPerMol.induction).toBeLessThan(0);
+    expect(record.energyKJPerMol.dispersion).toBeLessThan(0);
+    // Debye's average: P. Debye, Phys. Z. 21 (1920) 178; k_e = 1389.354576 kJ·Å/(mol·e²), 1 D = 0.20819434 e·Å (CODATA 2022).
+    const average = (-2 * (1.85 * 0.20819434) ** 2 * 1.501 * 1389.354576) / 5 ** 6;
+    expect(record.thermal.inductionKJPerMol! / average).toBeCloseTo(1, 6);
+  });
+
+  test('given by the file has no uncertainty of that kind', () => {
+    const text = xyz([...WATER, ...shifted], 'kind_dipole_sizes=H2O:1.85 kind_axes=H2O:O>H');
+    const given = analyse(text, 'xyz', KNOWING);
+    expect(pairRecord(given.frames[0]!.system, given.pairs[0]![0]!).dipoleUncertaintyKJPerMol).toBeNull();
+  });
+});
+
+test('a fragment of twenty thousand atoms is refused at once', () => {
+  const chain = Array.from({ length: 20_000 }, (_, n) => `C ${(1.3 * n).toFixed(1)} ${n % 2} 0`);
+  const record = first(xyz(chain), ESTIMATING);
+  expect(record).toMatchObject({ dipoleSource: 'none', polarizabilityA3: null });
+  expect(record.dipoleNote).toMatch(/300 atoms/);
 });
 
 describe('a dipole of the file, without charges, beside the published one', () => {

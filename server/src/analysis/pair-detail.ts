@@ -1,3 +1,5 @@
+import { COULOMB_KJ_A_PER_MOL } from '../physics/constants';
+import { debyeAverage } from '../physics/induction-pair';
 import { dipoleDipoleAverage, ionDipoleAverage, motionOf } from '../physics/thermal-average';
 import { type Arrangement, nameArrangement } from './arrangement';
 import type { Pair } from './pair';
@@ -22,6 +24,8 @@ export interface PairThermal {
   readonly leadingKJPerMol: number;
   readonly alignment: number;
   readonly motion: 'free' | 'hindered' | 'locked' | null;
+  /** Debye induction averaged over all orientations, undamped. */
+  readonly inductionKJPerMol: number;
 }
 
 const DEGREES = 180 / Math.PI;
@@ -83,13 +87,16 @@ const NO_THERMAL: PairThermal = {
   leadingKJPerMol: Number.NaN,
   alignment: Number.NaN,
   motion: null,
+  inductionKJPerMol: Number.NaN,
 };
 
 /** The thermal average of two neutral dipoles, or of a dipole beside an ion (whose own dipole is left out); none for two ions. */
 export function thermalOf(system: System, pair: Pair): PairThermal {
   const { moments, isIon, couplingKJA, kTKJPerMol } = system;
   const { first, second, distanceA: r } = pair;
-  if (pair.contact === 'bonded' || pair.enclosed || (isIon[first] && isIon[second])) return NO_THERMAL;
+  if (pair.contact === 'bonded' || pair.enclosed) return NO_THERMAL;
+  const inductionKJPerMol = averagedInduction(system, pair);
+  if (isIon[first] && isIon[second]) return { ...NO_THERMAL, inductionKJPerMol };
   let coupling: number;
   const withIon = isIon[first] === 1 || isIon[second] === 1;
   if (withIon) {
@@ -98,7 +105,7 @@ export function thermalOf(system: System, pair: Pair): PairThermal {
   } else {
     coupling = (couplingKJA * normOf(system, first) * normOf(system, second)) / (r * r * r * kTKJPerMol);
   }
-  if (Number.isNaN(coupling)) return NO_THERMAL;
+  if (Number.isNaN(coupling)) return { ...NO_THERMAL, inductionKJPerMol };
   const average = withIon ? ionDipoleAverage(coupling) : dipoleDipoleAverage(coupling);
   return {
     coupling,
@@ -107,7 +114,68 @@ export function thermalOf(system: System, pair: Pair): PairThermal {
     leadingKJPerMol: average.leadingKT * kTKJPerMol,
     alignment: average.alignment,
     motion: motionOf(average.alignment),
+    inductionKJPerMol,
   };
+}
+
+function averagedInduction(system: System, { first, second, distanceA }: Pair): number {
+  const { moments, settings } = system;
+  const { chargeE, polarizabilityA3 } = moments;
+  const energy = debyeAverage(
+    chargeE[first]!,
+    normOf(system, first),
+    polarizabilityA3[first]!,
+    chargeE[second]!,
+    normOf(system, second),
+    polarizabilityA3[second]!,
+    distanceA,
+  );
+  return (energy * COULOMB_KJ_A_PER_MOL) / (settings.relativePermittivity * settings.relativePermittivity);
+}
+
+/**
+ * How far the energy of the fixed arrangement is off on average because dipoles that are published or estimated have errors, kJ/mol; NaN
+ * where the file gives both. To first order E = −μ·F: the error of the size moves μ along itself, that of the direction across, in the
+ * field F of the other fragment; both fragments' errors are independent.
+ */
+export function uncertaintyOf(system: System, pair: Pair): number {
+  if (pair.contact === 'bonded' || pair.enclosed) return Number.NaN;
+  const { dipoleSource, dipoleErrorEA, dipoleAngleErrorDeg, dipoleNormEA } = system.moments;
+  let squares = 0;
+  let isAny = false;
+  for (const f of [pair.first, pair.second]) {
+    if (dipoleSource[f] !== 'library' && dipoleSource[f] !== 'estimated') continue;
+    const sizeError = dipoleErrorEA[f]!;
+    if (Number.isNaN(sizeError)) continue;
+    isAny = true;
+    const direction = directionOf(system, f);
+    const field = fieldOfOther(system, pair, f);
+    // A dipole of no size has no error by symmetry.
+    if (direction === null && dipoleNormEA[f]! < ZERO_DIPOLE_EA) continue;
+    if (direction === null) return Number.NaN;
+    const along = field[0] * direction[0] + field[1] * direction[1] + field[2] * direction[2];
+    const turn = Math.sin(Math.min(dipoleAngleErrorDeg[f]! || 0, 90) / DEGREES);
+    squares += (along * sizeError) ** 2 + (Math.hypot(...field) * dipoleNormEA[f]! * turn) ** 2;
+  }
+  return isAny ? Math.sqrt(squares) * system.couplingKJA : Number.NaN;
+}
+
+/** Field of the other fragment's charge and dipole at the centre of `f`, e/Å². */
+function fieldOfOther(system: System, pair: Pair, f: number): [number, number, number] {
+  const { chargeE, dipoleEA } = system.moments;
+  const other = f === pair.first ? pair.second : pair.first;
+  const away = f === pair.first ? -1 : 1;
+  const [ux, uy, uz] = pair.u.map((component) => away * component) as [number, number, number];
+  const r2 = pair.distanceA * pair.distanceA;
+  const [mx, my, mz] = [dipoleEA[3 * other]!, dipoleEA[3 * other + 1]!, dipoleEA[3 * other + 2]!];
+  const along = 3 * (mx * ux + my * uy + mz * uz);
+  const charge = chargeE[other]! / r2;
+  const cube = r2 * pair.distanceA;
+  return [
+    charge * ux + (along * ux - mx) / cube,
+    charge * uy + (along * uy - my) / cube,
+    charge * uz + (along * uz - mz) / cube,
+  ];
 }
 
 function normOf(system: System, f: number): number {

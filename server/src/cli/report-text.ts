@@ -141,7 +141,7 @@ function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale:
     fixed(record.phiDeg, 0),
     record.arrangement ?? NOTHING,
     energy(pointDipole ?? partial) + mark,
-    energy(record.referenceKJPerMol),
+    energy(record.referenceKJPerMol) + uncertainty(record.dipoleUncertaintyKJPerMol, scale),
     record.basis === 'none' ? NOTHING : record.basis,
     record.relativeError === null ? NOTHING : percent(record.relativeError),
     energy(record.energyKJPerMol.induction),
@@ -172,6 +172,13 @@ function sourcesText(frame: FrameAnalysis, unit: string, scale: number): string 
     );
   }
   return lines.map((line) => `  ${line}\n`).join('');
+}
+
+/** The mean error for those of published and estimated dipoles, behind an energy. */
+function uncertainty(valueKJPerMol: Maybe, scale: number): string {
+  if (valueKJPerMol === null) return '';
+  const value = valueKJPerMol * scale;
+  return ` ±${value >= 1 || value === 0 ? value.toFixed(0) : value.toPrecision(1)}`;
 }
 
 function plural(count: number, what: string): string {

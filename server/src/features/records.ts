@@ -5,7 +5,7 @@ import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { inductionOfFrame } from '../analysis/frame-induction';
 import type { ChargeSource, DipoleSource } from '../analysis/moments';
 import type { Pair } from '../analysis/pair';
-import { anglesOf, thermalOf, validBeyondOf } from '../analysis/pair-detail';
+import { anglesOf, thermalOf, uncertaintyOf, validBeyondOf } from '../analysis/pair-detail';
 import type { Basis, Regime } from '../analysis/reference';
 import type { Centre } from '../analysis/settings';
 import type { System } from '../analysis/system';
@@ -71,6 +71,8 @@ export interface PairRecord {
     readonly leadingKJPerMol: Maybe;
     readonly alignment: Maybe;
     readonly motion: 'free' | 'hindered' | 'locked' | null;
+    /** Debye induction averaged over orientations. */
+    readonly inductionKJPerMol: Maybe;
   };
   readonly closest: {
     readonly atoms: readonly number[] | null;
@@ -83,6 +85,8 @@ export interface PairRecord {
   readonly referenceKJPerMol: Maybe;
   readonly errorKJPerMol: Maybe;
   readonly relativeError: Maybe;
+  /** Mean error of the energy for the errors of published or estimated dipoles; null where the file gives both. */
+  readonly dipoleUncertaintyKJPerMol: Maybe;
   readonly validBeyondA: Maybe;
   readonly advice: Advice | null;
 }
@@ -200,6 +204,7 @@ export function pairRecord(system: System, pair: Pair): PairRecord {
       leadingKJPerMol: known(thermal.leadingKJPerMol),
       alignment: known(thermal.alignment),
       motion: thermal.motion,
+      inductionKJPerMol: known(thermal.inductionKJPerMol),
     },
     closest: {
       atoms: hasAtoms ? [system.atomNumbers[pair.closest1]!, system.atomNumbers[pair.closest2]!] : null,
@@ -212,6 +217,7 @@ export function pairRecord(system: System, pair: Pair): PairRecord {
     referenceKJPerMol: known(pair.referenceKJPerMol),
     errorKJPerMol: known(pair.errorKJPerMol),
     relativeError: known(relative),
+    dipoleUncertaintyKJPerMol: known(uncertaintyOf(system, pair)),
     validBeyondA: known(validBeyondOf(system, pair)),
     advice: pair.advice,
   };

@@ -120,7 +120,10 @@ function verdict({ partner, pair }: PartnerView, unit: EnergyUnit, kTKJPerMol: n
   const advice = pair.advice === null ? 'parts of one molecule' : `**${pair.advice}**`;
   if (energy === null) return `${who}: energy not known, ${advice}`;
   const kind = energy < 0 ? 'attractive' : energy > 0 ? 'repulsive' : 'no interaction';
-  const size = `${fixed(energy * energyUnitsPerKJPerMol(unit, kTKJPerMol), 1)} ${unit}`;
+  const scale = energyUnitsPerKJPerMol(unit, kTKJPerMol);
+  const { dipoleUncertaintyKJPerMol } = pair;
+  const error = dipoleUncertaintyKJPerMol === null ? '' : ` ± ${fixed(dipoleUncertaintyKJPerMol * scale, 1)}`;
+  const size = `${fixed(energy * scale, 1)}${error} ${unit}`;
   const regime = pair.regime === null ? 'no basis to judge the point dipole' : `point dipole ${pair.regime}`;
   return `${who}: ${kind}, ${size} = ${fixed(Math.abs(energy) / kTKJPerMol, 1)} kT, ${regime}, ${advice}`;
 }
