@@ -1,4 +1,5 @@
 import {
+  CodeActionKind,
   type Connection,
   DidChangeConfigurationNotification,
   DocumentDiagnosticReportKind,
@@ -9,9 +10,12 @@ import {
   ResponseError,
   TextDocumentSyncKind,
 } from 'vscode-languageserver';
+import { outlineOf } from '../features/outline';
 import type { PictureTheme } from '../features/pair-picture-parts';
 import type { Language } from '../formats/tree';
+import { codeActionsAt, FIX_ALL_KIND } from './code-actions';
 import { diagnosticsOf, rangeOf } from './diagnostics';
+import { foldingOf, symbolsOf } from './outline';
 import type { Clock } from './pace';
 import { renderHover } from './render-hover';
 import { type LibraryFile, libraryFileNames, readSettings, SettingsStore } from './settings';
@@ -89,6 +93,9 @@ export function startServer(connection: Connection, platform: Platform): void {
       capabilities: {
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
         hoverProvider: true,
+        codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, FIX_ALL_KIND] },
+        documentSymbolProvider: true,
+        foldingRangeProvider: true,
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -153,6 +160,27 @@ export function startServer(connection: Connection, platform: Platform): void {
       },
       range: rangeOf(document.lines, data.span),
     };
+  });
+
+  connection.onCodeAction(async ({ textDocument: { uri }, range, context: { diagnostics, only } }, token) => {
+    const analysed = await workspace.analysed(uri);
+    if (analysed === null || token.isCancellationRequested) return [];
+    const { document } = analysed;
+    const start = offsetOf(document, range.start);
+    const span = { start, end: Math.max(start, offsetOf(document, range.end)) };
+    return codeActionsAt(analysed, span, diagnostics, only);
+  });
+
+  connection.onDocumentSymbol(async ({ textDocument: { uri } }, token) => {
+    const analysed = await workspace.analysed(uri);
+    if (analysed === null || token.isCancellationRequested) return [];
+    const only = analysed.tree.frames.length === 1 && !analysed.limited ? await workspace.frame(analysed, 0) : null;
+    return symbolsOf(analysed.document.lines, outlineOf(analysed.tree, only));
+  });
+
+  connection.onFoldingRanges(async ({ textDocument: { uri } }, token) => {
+    const analysed = await workspace.analysed(uri);
+    return analysed === null || token.isCancellationRequested ? [] : foldingOf(analysed.tree);
   });
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {

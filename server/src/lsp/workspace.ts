@@ -1,3 +1,4 @@
+import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { frameIndexAt, type HoverData, hoverSteps } from '../features/hover';
 import type { Language } from '../formats/tree';
 import { type Analysed, analyseDocument } from './analyser';
@@ -106,10 +107,24 @@ export class Workspace {
     return entry.running;
   }
 
+  /** A frame of an analysis, as long as that is the newest; `null` where it is not any more. */
+  async frame(analysed: Analysed, index: number): Promise<FrameAnalysis | null> {
+    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
+    try {
+      return await analysed.frames.frame(index, pace);
+    } catch (error) {
+      if (error instanceof Outdated) return null;
+      throw error;
+    }
+  }
+
+  #isNewest(analysed: Analysed): boolean {
+    return this.#entries.get(analysed.document.uri)?.latest === analysed;
+  }
+
   /** What to show at an offset of an analysis, as long as that is the newest; `null` where it is not any more, or there is nothing. */
   async hover(analysed: Analysed, offset: number): Promise<HoverData | null> {
-    const isWanted = () => this.#entries.get(analysed.document.uri)?.latest === analysed;
-    const pace = new Pace(this.#surroundings.clock, isWanted);
+    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
     const index = frameIndexAt(analysed.tree, offset);
     try {
       const frame = index < 0 ? null : await analysed.frames.frame(index, pace);

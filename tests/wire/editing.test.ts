@@ -1,0 +1,133 @@
+import { readdirSync, readFileSync } from 'node:fs';
+import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import {
+  type CodeAction,
+  CodeActionRequest,
+  type Diagnostic,
+  type DocumentSymbol,
+  DocumentSymbolRequest,
+  FoldingRangeRequest,
+  type Range,
+  type TextDocumentEdit,
+} from 'vscode-languageserver-protocol';
+import { indexLines } from '../../server/src/text/lines';
+import { snapshotOf } from '../../server/src/text/snapshot';
+import { WireClient } from './client';
+
+/** Remedies, outline and folding over a real connection. */
+
+const SAMPLES = readdirSync('samples').filter((name) => /\.(xyz|pdb)$/.test(name));
+let client: WireClient;
+let count = 0;
+
+beforeAll(async () => {
+  client = await WireClient.start();
+});
+
+afterAll(async () => {
+  expect(await client.stop()).toBe(0);
+});
+
+function open(text: string, language = 'xyz'): string {
+  const uri = `file:///editing/${++count}.${language}`;
+  client.open(uri, text, language);
+  return uri;
+}
+
+function actions(uri: string, range: Range, diagnostics: Diagnostic[], only?: string[]): Promise<CodeAction[]> {
+  const context = { diagnostics, ...(only === undefined ? {} : { only }) };
+  return client.connection.sendRequest(CodeActionRequest.type, {
+    textDocument: { uri },
+    range,
+    context,
+  }) as Promise<CodeAction[]>;
+}
+
+/** The text after the edits of an action, which must be for the version that is open. */
+function applied(text: string, action: CodeAction): string {
+  const [change] = action.edit!.documentChanges as TextDocumentEdit[];
+  expect(change!.textDocument.version).toBe(1);
+  const { starts } = indexLines(snapshotOf(text));
+  const offset = ({ line, character }: Range['start']) => (starts[line] ?? text.length) + character;
+  return [...change!.edits]
+    .map((edit) => ({ range: edit.range, newText: 'newText' in edit ? edit.newText : '' }))
+    .sort((a, b) => offset(b.range.start) - offset(a.range.start))
+    .reduce((result, { range, newText }) => {
+      return result.slice(0, offset(range.start)) + newText + result.slice(offset(range.end));
+    }, text);
+}
+
+const whole = (text: string): Range => ({
+  start: { line: 0, character: 0 },
+  end: { line: text.split('\n').length, character: 0 },
+});
+
+describe.each(SAMPLES)('in %s', (name) => {
+  const text = readFileSync(`samples/${name}`, 'utf8');
+  const language = name.endsWith('.pdb') ? 'pdb' : 'xyz';
+
+  it('every remedy takes away the finding that it is for, and brings no error', async () => {
+    const uri = open(text, language);
+    const before = await client.diagnostics(uri);
+    for (const action of await actions(uri, whole(text), before)) {
+      const [mended] = action.diagnostics!;
+      const after = await client.diagnostics(open(applied(text, action), language));
+      const count = (list: Diagnostic[]) => list.filter(({ code }) => code === mended!.code).length;
+      expect(count(after), action.title).toBeLessThan(count(before));
+      expect(after.filter(({ severity }) => severity === 1).length).toBeLessThanOrEqual(
+        before.filter(({ severity }) => severity === 1).length,
+      );
+    }
+  });
+});
+
+describe('remedies', () => {
+  const WRONG = '5\n\nO 0 0 0.1173\nH 0 0.7572 -0.4692\nH 0 -0.7572 -0.4692\n';
+
+  it('are those of the place asked about', async () => {
+    const uri = open(WRONG);
+    const found = await client.diagnostics(uri);
+    const at = (line: number) => ({ start: { line, character: 0 }, end: { line, character: 0 } });
+    const [only, ...others] = await actions(uri, at(0), found);
+    expect(only).toMatchObject({ title: 'Set the count to 3', kind: 'quickfix', isPreferred: true });
+    expect(only!.diagnostics).toHaveLength(1);
+    expect(others).toEqual([]);
+    expect(applied(WRONG, only!)).toBe(WRONG.replace('5', '3'));
+    expect(await actions(uri, at(3), found)).toEqual([]);
+  });
+
+  it('that are safe are applied all at once where that is asked for', async () => {
+    const uri = open(WRONG);
+    const [all] = await actions(uri, whole(WRONG), [], ['source.fixAll']);
+    expect(all).toMatchObject({ kind: 'source.fixAll.polewise' });
+    expect(applied(WRONG, all!)).toBe(WRONG.replace('5', '3'));
+  });
+
+  it('of a closed document are none', async () => {
+    expect(await actions('file:///never/opened.xyz', whole(WRONG), [])).toEqual([]);
+  });
+});
+
+describe('the outline', () => {
+  const symbols = async (uri: string) =>
+    (await client.connection.sendRequest(DocumentSymbolRequest.type, { textDocument: { uri } })) as DocumentSymbol[];
+
+  it('shows the frame, and its fragments with composition and charge', async () => {
+    const uri = open(readFileSync('samples/ion-pair.xyz', 'utf8'));
+    const [frame, ...others] = await symbols(uri);
+    expect(others).toEqual([]);
+    expect(frame).toMatchObject({ name: 'Frame 1', range: { start: { line: 0, character: 0 } } });
+    expect(frame!.children!.map(({ name, detail }) => `${name}: ${detail}`).slice(0, 2)).toEqual([
+      'ammonium (1): H4N, +1.00 e',
+      'formate (2): CHO2, −1.00 e',
+    ]);
+  });
+
+  it('shows every frame of a trajectory, and each folds', async () => {
+    const uri = open(readFileSync('samples/polar-dimer-scan.xyz', 'utf8'));
+    expect(await symbols(uri)).toHaveLength(12);
+    const folds = await client.connection.sendRequest(FoldingRangeRequest.type, { textDocument: { uri } });
+    expect(folds).toHaveLength(12);
+    expect(folds![1]).toEqual({ startLine: 14, endLine: 27 });
+  });
+});
