@@ -7,6 +7,7 @@ import {
   type DocumentSymbol,
   DocumentSymbolRequest,
   FoldingRangeRequest,
+  InlayHintRequest,
   type Range,
   type TextDocumentEdit,
 } from 'vscode-languageserver-protocol';
@@ -105,6 +106,45 @@ describe('remedies', () => {
 
   it('of a closed document are none', async () => {
     expect(await actions('file:///never/opened.xyz', whole(WRONG), [])).toEqual([]);
+  });
+});
+
+describe('hints', () => {
+  const hints = async (own: WireClient, uri: string, from: number, to: number) => {
+    const range = { start: { line: from, character: 0 }, end: { line: to, character: 0 } };
+    const found = await own.connection.sendRequest(InlayHintRequest.type, { textDocument: { uri }, range });
+    return found!.map(({ position, label }) => `${position.line}: ${label as string}`);
+  };
+  const text = readFileSync('samples/bare-cluster.xyz', 'utf8');
+
+  it('tell fragments, dipoles and closest contacts, at the ends of lines', async () => {
+    const all = await hints(client, open(text), 0, 30);
+    expect(all).toContain('2: C3H6O (1) 2.88 D library');
+    expect(all).toContain('12: C2H5FO (2) 1.70 D estimated');
+    expect(all).toContain('21: H2O (3) 1.85 D library');
+    const { distanceA, atoms } = (await import('../support/analyse')).analyse(text).pairs[0]!.map((pair) => ({
+      distanceA: pair.closestA,
+      atoms: [pair.first, pair.second],
+    }))[0]!;
+    expect(atoms).toEqual([0, 1]);
+    expect(all.some((hint) => hint.includes(`${distanceA.toFixed(2)} Å to atom`))).toBe(true);
+  });
+
+  it('are given for the lines asked for alone', async () => {
+    const some = await hints(client, open(text), 20, 22);
+    expect(some.map((hint) => Number(hint.split(':')[0])).every((line) => line >= 20 && line <= 22)).toBe(true);
+    expect(some).toContain('21: H2O (3) 1.85 D library');
+  });
+
+  it('are switched off kind by kind', async () => {
+    const own = await WireClient.start({ settings: { hints: { fragments: false } } });
+    own.open('file:///h.xyz', text);
+    const contacts = await hints(own, 'file:///h.xyz', 0, 30);
+    expect(contacts.length).toBeGreaterThan(0);
+    expect(contacts.every((hint) => hint.includes('Å to atom'))).toBe(true);
+    own.configure({ hints: { fragments: false, contacts: false } });
+    expect(await hints(own, 'file:///h.xyz', 0, 30)).toEqual([]);
+    await own.stop();
   });
 });
 

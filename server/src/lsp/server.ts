@@ -5,6 +5,7 @@ import {
   DocumentDiagnosticReportKind,
   ErrorCodes,
   type Hover,
+  type InlayHint,
   LSPErrorCodes,
   MarkupKind,
   ResponseError,
@@ -96,6 +97,7 @@ export function startServer(connection: Connection, platform: Platform): void {
         codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, FIX_ALL_KIND] },
         documentSymbolProvider: true,
         foldingRangeProvider: true,
+        inlayHintProvider: true,
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -181,6 +183,19 @@ export function startServer(connection: Connection, platform: Platform): void {
   connection.onFoldingRanges(async ({ textDocument: { uri } }, token) => {
     const analysed = await workspace.analysed(uri);
     return analysed === null || token.isCancellationRequested ? [] : foldingOf(analysed.tree);
+  });
+
+  connection.languages.inlayHint.on(async ({ textDocument: { uri }, range }, token): Promise<InlayHint[]> => {
+    const analysed = await workspace.analysed(uri);
+    if (analysed === null || analysed.limited || token.isCancellationRequested) return [];
+    const { lines } = analysed.document;
+    const hints = await workspace.hints(analysed, range.start.line, range.end.line + 1);
+    return hints.map(({ offset, text, tooltip }) => ({
+      position: rangeOf(lines, { start: offset, end: offset }).start,
+      label: text,
+      tooltip,
+      paddingLeft: true,
+    }));
   });
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {

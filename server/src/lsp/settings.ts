@@ -8,6 +8,7 @@ import {
   type Knowledge,
 } from '../analysis/settings';
 import { isFindingCode, SEVERITIES, type Severity } from '../base/catalogue';
+import type { HintKinds } from '../features/inlay-hints';
 import { FragmentLibrary } from '../library/match';
 import { readLibrary } from '../library/user-library';
 import { findMedium } from '../physics/media';
@@ -20,6 +21,7 @@ export interface ServerSettings {
   readonly energyUnit: EnergyUnit;
   readonly severities: ReadonlyMap<string, Severity | 'off'>;
   readonly maxFindings: number;
+  readonly hints: HintKinds;
   readonly analysisLimit: number;
   /** What was wrong with the settings, in words for the status. */
   readonly complaints: readonly string[];
@@ -50,6 +52,7 @@ export function readSettings(raw: unknown, libraryFiles: readonly LibraryFile[] 
     }),
     energyUnit: reader.choice<EnergyUnit>('energyUnit', ENERGY_UNITS, DEFAULT_ENERGY_UNIT),
     severities: reader.severities(),
+    hints: { fragments: reader.flag('hints.fragments', true), contacts: reader.flag('hints.contacts', true) },
     maxFindings: reader.number('maxFindings', 1, 5000, DEFAULT_MAX_FINDINGS),
     analysisLimit: reader.number('analysisLimit', 0, 1e7, DEFAULT_ANALYSIS_LIMIT),
     complaints: reader.complaints,
@@ -64,8 +67,12 @@ class SettingsReader {
     this.#raw = raw !== null && typeof raw === 'object' ? (raw as Record<string, unknown>) : {};
   }
 
+  /** A setting by its name; a dot leads into a group. */
   #value(name: string): unknown {
-    return this.#raw[name] ?? undefined;
+    const [group = '', inner] = name.split('.');
+    const value = this.#raw[group] ?? undefined;
+    if (inner === undefined) return value;
+    return (value as Readonly<Record<string, unknown>> | undefined)?.[inner] ?? undefined;
   }
 
   #complain<T>(name: string, reason: string, fallback: T): T {

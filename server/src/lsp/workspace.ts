@@ -1,5 +1,6 @@
 import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { frameIndexAt, type HoverData, hoverSteps } from '../features/hover';
+import { type Hint, hintSteps } from '../features/inlay-hints';
 import type { Language } from '../formats/tree';
 import { type Analysed, analyseDocument } from './analyser';
 import { type Clock, Outdated, Pace } from './pace';
@@ -120,6 +121,25 @@ export class Workspace {
 
   #isNewest(analysed: Analysed): boolean {
     return this.#entries.get(analysed.document.uri)?.latest === analysed;
+  }
+
+  /** The hints between two lines of an analysis, as long as that is the newest. */
+  async hints(analysed: Analysed, firstLine: number, endLine: number): Promise<Hint[]> {
+    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
+    const found: Hint[] = [];
+    try {
+      for (const { index, firstLine: from, endLine: to } of analysed.tree.frames) {
+        if (to <= firstLine || from >= endLine) continue;
+        const frame = await analysed.frames.frame(index, pace);
+        const { hints } = analysed.settings;
+        const [first, end] = [Math.max(from, firstLine), Math.min(to, endLine)];
+        found.push(...(await pace.finish(hintSteps(analysed.tree, frame, first, end, hints))));
+      }
+      return found;
+    } catch (error) {
+      if (error instanceof Outdated) return [];
+      throw error;
+    }
   }
 
   /** What to show at an offset of an analysis, as long as that is the newest; `null` where it is not any more, or there is nothing. */
