@@ -107,7 +107,7 @@ export interface FindingRecord extends PlaceRecord {
   readonly related: readonly ({ readonly message: string } & PlaceRecord)[];
 }
 
-function known(value: number): Maybe {
+export function known(value: number): Maybe {
   return Number.isFinite(value) ? value : null;
 }
 

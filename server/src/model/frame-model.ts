@@ -142,7 +142,7 @@ function usableCell(file: CoordinateTree, tree: FrameTree, asked: boolean, probl
   return null;
 }
 
-function sameElements(a: FrameTree, b: FrameTree): boolean {
+export function sameElements(a: FrameTree, b: FrameTree): boolean {
   if (a === b || a.atoms.count !== b.atoms.count) return false;
   return a.atoms.element.every((z, i) => z === b.atoms.element[i]);
 }
