@@ -7,7 +7,7 @@ import { findMedium } from '../physics/media';
 import { type Dimension, readQuantity } from '../physics/quantity';
 import { withUserEntries } from './library-file';
 
-/** The analysis flags that `findings`, `pairs` and `dimers` share. */
+/** The analysis flags that all commands share. */
 export interface AnalysisFlags {
   readonly temperature?: number;
   readonly permittivity?: number;

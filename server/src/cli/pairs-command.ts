@@ -116,7 +116,7 @@ export async function openForReport(
   const prepare = (place: number) => {
     const frame = analysis.frame(frameNumbers[place]! - 1);
     const nameOf = namesOf(frame.model, companion?.model ?? null);
-    return { frame, nameOf, wanted: focusOf(frame, options.focus, nameOf) };
+    return { frame, nameOf, wanted: options.focus === undefined ? null : focusOf(frame, options.focus, nameOf) };
   };
   // A focus that means nothing must be said before anything is written.
   let prepared: ReturnType<typeof prepare> | null = prepare(0);
@@ -157,7 +157,7 @@ function* only(pairs: Iterable<Pair>, wanted: readonly boolean[]): Generator<Pai
   for (const pair of pairs) if (wanted[pair.first] || wanted[pair.second]) yield pair;
 }
 
-function namesOf(model: FrameModel, companion: FrameModel | null): (fragment: number) => FragmentName {
+export function namesOf(model: FrameModel, companion: FrameModel | null): (fragment: number) => FragmentName {
   return (fragment) => {
     const own = model.fragments.count;
     const [source, f] = fragment < own ? [model, fragment] : [companion!, fragment - own];
@@ -165,13 +165,8 @@ function namesOf(model: FrameModel, companion: FrameModel | null): (fragment: nu
   };
 }
 
-/** Which fragments a focus means: a number, a selector `chain:residue:number`, or a name; `null` without one. */
-function focusOf(
-  frame: FrameAnalysis,
-  focus: string | undefined,
-  nameOf: (f: number) => FragmentName,
-): boolean[] | null {
-  if (focus === undefined) return null;
+/** Which fragments a focus means: a number, a selector `chain:residue:number`, or a name. */
+export function focusOf(frame: FrameAnalysis, focus: string, nameOf: (f: number) => FragmentName): boolean[] {
   const { model, system } = frame;
   const fragments = Array.from({ length: system.count }, (_, f) => f);
   if (/^\d+$/.test(focus)) return fragments.map((f) => f + 1 === Number(focus));

@@ -8,6 +8,7 @@ import { type FindingsOptions, findingsCommand } from './findings-command';
 import { UsageError } from './input';
 import { type AnalysisFlags, positive, requestOf, withAnalysisFlags } from './options';
 import { type PairsOptions, pairsCommand } from './pairs-command';
+import { type SeriesOptions, seriesCommand } from './series-command';
 import { VERSION } from './version';
 
 const ADVICE: readonly Advice[] = ['accept', 'review', 'compute', 'repair'];
@@ -69,6 +70,25 @@ function buildProgram(status: Status): Command {
     )
     .action(async (files: string[], options: AnalysisFlags & PairsOptions) => {
       status.value = await pairsCommand(files, requestOf(options), options);
+    });
+
+  withAnalysisFlags(
+    program.command('series').argument('<file>', 'a coordinate file of several frames, - for standard input'),
+  )
+    .description('print one pair over all frames, and where its sign, regime, contact or rank beside kT changes')
+    .option(
+      '--pair <A,B>',
+      'two fragments of the first frame, each a number, a name, or chain:residue:number (default the strongest pair)',
+    )
+    .addOption(new Option('--format <format>').choices(['text', 'json', 'csv']).default('text'))
+    .addOption(
+      new Option('--unit <unit>', 'energy unit of the text table').choices(ENERGY_UNITS).default(DEFAULT_ENERGY_UNIT),
+    )
+    .addOption(withFlag())
+    .action(async (file: string, options: AnalysisFlags & SeriesOptions & { with?: string }) => {
+      const request = requestOf(options);
+      const companion = options.with === undefined ? null : await readCompanion(options.with, request);
+      status.value = await seriesCommand(file, request, options, companion);
     });
 
   withFrameFlags(

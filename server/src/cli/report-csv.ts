@@ -1,7 +1,7 @@
 import type { PairRecord } from '../features/records';
 import { eachPairRecord, type PairReport } from './pairs-command';
 
-type Field = string | number | null;
+export type Field = string | number | null;
 
 /** The fields of a record in their order: nested names joined by a dot, lists by blanks in one field. */
 function fieldsOf(record: PairRecord): [string, Field][] {
@@ -32,7 +32,7 @@ export function csvReport(): PairReport {
   };
 }
 
-function quoted(field: Field): string {
+export function quoted(field: Field): string {
   if (field === null) return '';
   const text = String(field);
   return /[",\r\n]/.test(text) ? `"${text.replace(/"/g, '""')}"` : text;

@@ -15,10 +15,10 @@ import type { FileForReport, PairReport, PairsOptions } from './pairs-command';
 import { type Column, textTable } from './table';
 
 const MOST_FRAGMENTS = 30;
-const NOTHING = '–';
+export const NOTHING = '–';
 const PARTIAL = '*';
 
-const CAUTIONS =
+export const CAUTIONS =
   'Estimates for triage, no substitute for a quantum calculation. Hydrogen bonds, charge transfer and exchange are in none of these\n' +
   'numbers, and a bulk permittivity does not screen touching molecules. Dipoles point from negative to positive charge.\n';
 
@@ -181,7 +181,7 @@ function uncertainty(valueKJPerMol: Maybe, scale: number): string {
   return ` ±${value >= 1 || value === 0 ? value.toFixed(0) : value.toPrecision(1)}`;
 }
 
-function plural(count: number, what: string): string {
+export function plural(count: number, what: string): string {
   return `${count} ${what}${count === 1 ? '' : 's'}`;
 }
 
@@ -189,14 +189,14 @@ function percent(share: number): string {
   return share > 9.99 ? '>999 %' : `${(100 * share).toFixed(share < 0.1 ? 1 : 0)} %`;
 }
 
-function fixed(value: Maybe, digits: number): string {
+export function fixed(value: Maybe, digits: number): string {
   if (value === null) return NOTHING;
   const text = value.toFixed(digits);
   return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
 }
 
 /** Two decimals, more where the number is small, none where it is large. */
-function shownEnergy(value: number): string {
+export function shownEnergy(value: number): string {
   const size = Math.abs(value);
   if (size !== 0 && size < 0.001) return value.toExponential(1).replace(/-/g, '−');
   return fixed(value, size >= 1000 ? 0 : size >= 0.1 ? 2 : 4);
