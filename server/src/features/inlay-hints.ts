@@ -52,7 +52,7 @@ export function* hintSteps(
     if (kinds.fragments) add(first, fragmentText(frame, f), 'Fragment, its dipole, and where that comes from');
     if (kinds.contacts) {
       const contact = closestContact(frame, f);
-      if (contact !== null) add(contact.atom, contact.text, 'Closest atom of another fragment');
+      if (contact !== null) add(contact.atom, contact.text, contact.tooltip);
       yield;
     }
   }
@@ -69,7 +69,7 @@ function fragmentText({ model, moments }: FrameAnalysis, f: number): string {
   return Number.isNaN(size) ? `${name}, no dipole` : `${name} ${size.toFixed(2)} D ${moments.dipoleSource[f]}`;
 }
 
-function closestContact(frame: FrameAnalysis, f: number): { atom: number; text: string } | null {
+function closestContact(frame: FrameAnalysis, f: number): { atom: number; text: string; tooltip: string } | null {
   const { system, model } = frame;
   let best: { ratio: number; own: number; other: number; partner: number; distanceA: number } | null = null;
   for (const pair of pairsOfFragment(frame, f)) {
@@ -87,5 +87,6 @@ function closestContact(frame: FrameAnalysis, f: number): { atom: number; text: 
   if (best === null || best.partner >= model.fragments.count) return null;
   const partner = model.labels[best.partner] || `${model.names[best.partner]} (${best.partner + 1})`;
   const atom = system.atomNumbers[best.own]! - 1;
-  return { atom, text: `${best.distanceA.toFixed(2)} Å to atom ${system.atomNumbers[best.other]} of ${partner}` };
+  const tooltip = `Closest contact with another fragment: atom ${system.atomNumbers[best.other]}, ${best.ratio.toFixed(2)} of the sum of van der Waals radii`;
+  return { atom, text: `${best.distanceA.toFixed(2)} Å to ${partner}`, tooltip };
 }
