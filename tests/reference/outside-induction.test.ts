@@ -5,7 +5,7 @@ import { debyeAverage, debyeEnergy } from '../../server/src/physics/induction-pa
 
 /**
  * Published examples of Debye induction. From memory, and each agrees with its own inputs; left out are the induction columns of HCl, HBr
- * and HI in London's table of 1937 (3–8 % off their inputs) and a lecture text that prints a factor of 4 too many.
+ * and HI in London's table of 1937 (3–8 % off their inputs) and a teaching text that prints a factor of 4 too many.
  */
 
 const AVOGADRO = 6.02214076e23;
