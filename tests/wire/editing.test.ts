@@ -3,6 +3,8 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
   type CodeAction,
   CodeActionRequest,
+  type CompletionItem,
+  CompletionRequest,
   type Diagnostic,
   type DocumentSymbol,
   DocumentSymbolRequest,
@@ -145,6 +147,45 @@ describe('hints', () => {
     own.configure({ hints: { fragments: false, contacts: false } });
     expect(await hints(own, 'file:///h.xyz', 0, 30)).toEqual([]);
     await own.stop();
+  });
+});
+
+describe('completion', () => {
+  const labels = async (text: string, line: number, language = 'xyz') => {
+    const character = text.split('\n')[line]!.length;
+    const items = await client.connection.sendRequest(CompletionRequest.type, {
+      textDocument: { uri: open(text, language) },
+      position: { line, character },
+    });
+    return items as CompletionItem[];
+  };
+
+  it('offers the keys of a comment line that are not given yet, with what they mean', async () => {
+    const items = await labels('3\ndipole_unit=D kind_', 1);
+    expect(items.map(({ label }) => label)).toContain('kind_axes');
+    expect(items.map(({ label }) => label)).not.toContain('dipole_unit');
+    const axes = items.find(({ label }) => label === 'kind_axes')!;
+    expect(axes.detail).toContain('composition');
+    expect(axes.textEdit).toEqual({
+      range: { start: { line: 1, character: 14 }, end: { line: 1, character: 19 } },
+      newText: 'kind_axes=',
+    });
+  });
+
+  it.each([
+    ['3\nrelative_permittivity=tol', 'toluene'],
+    ['3\nsilence="near-field edge', 'edge-field'],
+    ['3\ndipole_unit=', 'e*angstrom'],
+  ])('offers the values of a key: %s', async (text, label) => {
+    expect((await labels(text, 1)).map((item) => item.label)).toContain(label);
+  });
+
+  it('offers the keys of a REMARK, and none on other lines', async () => {
+    expect((await labels('REMARK  99 fragment=*:HOH:* dip', 0, 'pdb')).map(({ label }) => label)).toContain(
+      'dipole_size',
+    );
+    expect(await labels('3\nwater\nO', 2)).toEqual([]);
+    expect(await labels('ATOM  ', 0, 'pdb')).toEqual([]);
   });
 });
 

@@ -15,6 +15,7 @@ import { outlineOf } from '../features/outline';
 import type { PictureTheme } from '../features/pair-picture-parts';
 import type { Language } from '../formats/tree';
 import { codeActionsAt, FIX_ALL_KIND } from './code-actions';
+import { completionItemsAt } from './completion';
 import { diagnosticsOf, rangeOf } from './diagnostics';
 import { foldingOf, symbolsOf } from './outline';
 import type { Clock } from './pace';
@@ -98,6 +99,7 @@ export function startServer(connection: Connection, platform: Platform): void {
         documentSymbolProvider: true,
         foldingRangeProvider: true,
         inlayHintProvider: true,
+        completionProvider: { triggerCharacters: ['=', ' ', '_'] },
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -196,6 +198,12 @@ export function startServer(connection: Connection, platform: Platform): void {
       tooltip,
       paddingLeft: true,
     }));
+  });
+
+  // Completion needs the text alone: it does not wait for any analysis.
+  connection.onCompletion(({ textDocument: { uri }, position }) => {
+    const document = workspace.document(uri);
+    return document === undefined ? [] : completionItemsAt(document, position);
   });
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
