@@ -170,7 +170,7 @@ test('the alignment names the motion: free below 0.10, hindered to 0.50, locked 
 
 test('two ions have no thermal average', () => {
   const pair = pairOf(point([0, 0, 0], [0.1, 0, 0], 1), point([6, 0, 0], [0, 0.2, 0], -1));
-  expect(Object.values(pair.thermal)).toEqual([null, null, null, null, null, null]);
+  expect(new Set(Object.values(pair.thermal))).toEqual(new Set([null]));
 });
 
 test("the ion's own dipole is left out beside a neutral dipole, and charges up to 0.1 e make no ion", () => {

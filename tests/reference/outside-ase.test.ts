@@ -118,11 +118,10 @@ function expectConvention(text: string): void {
       expect(entry.form).toMatch(/^(?:bare|quoted)$/);
       if (entry.key !== 'kind_axes') expect([entry.key, typedValue(comment, entry).kind]).not.toContain('invalid');
     }
-    const properties = entries.find(({ key }) => key === 'Properties')!;
-    const widths = comment
-      .slice(properties.inner.start, properties.inner.end)
-      .split(':')
-      .filter((_, k) => k % 3 === 2);
+    // Without the key a line is a symbol and three coordinates.
+    const properties = entries.find(({ key }) => key === 'Properties')?.inner;
+    const declared = properties === undefined ? 'species:S:1:pos:R:3' : comment.slice(properties.start, properties.end);
+    const widths = declared.split(':').filter((_, k) => k % 3 === 2);
     const columns = widths.reduce((sum, width) => sum + Number(width), 0);
     for (const line of lines.slice(at + 2, at + 2 + count)) expect(line.trim().split(/\s+/)).toHaveLength(columns);
     at += count + 2;
