@@ -5,6 +5,7 @@ import type { FrameModel } from '../model/frame-model';
 import { additivePolarizability } from '../physics/additive-polarizability';
 import { DEBYE_E_A } from '../physics/constants';
 import { type DipoleEstimate, estimateDipole } from '../physics/dipole-estimate';
+import { COVALENT_RADIUS_A } from '../physics/elements';
 import { fragmentGraph } from '../physics/fragment-graph';
 import type { Knowledge } from './settings';
 
@@ -27,6 +28,10 @@ export interface OfferedDipole {
 const LIBRARY_SPREAD = 0.03;
 /** Estimates below this have no direction worth telling, e·Å. */
 const DIRECTED_EA = 0.3 * DEBYE_E_A;
+/** C, N, O and S. */
+const MAY_BEAR_HYDROGEN: ReadonlySet<number> = new Set([6, 7, 8, 16]);
+/** Cosine of 150 degrees. */
+const STRAIGHT_COSINE = -Math.sqrt(3) / 2;
 /** A fragment of more atoms is not estimated while someone types. */
 const MOST_ESTIMATED_ATOMS = 300;
 
@@ -55,13 +60,48 @@ export class ModelKnowledge {
     const members = this.#members(f);
     if (members.length > MOST_ESTIMATED_ATOMS) return null;
     const residue = residues?.[atoms.residue?.[members[0]!] ?? -1];
+    const elements = this.#elements(members);
+    const bonds = this.#bondsWithin(f, members);
+    // A lone atom is an ion only where its residue says so: silver clusters and sodium dimers are none.
+    if (residue === undefined && members.length === 1) return null;
+    if (residue === undefined && !elements.includes(1) && !this.#isSurelyBare(members, bonds)) return null;
     return library.match({
-      elements: this.#elements(members),
-      bonds: this.#bondsWithin(f, members),
+      elements,
+      bonds,
       residueName: residue?.name ?? null,
       chargeE,
-      hydrogensShown: this.#hydrogensShown,
+      hydrogensShown: this.#hydrogensShown || residue === undefined,
     });
+  }
+
+  /**
+   * Whether a fragment without hydrogens has none to miss: its bonds among C, N, O and S are as short as multiple bonds are, and its carbons
+   * with two neighbours are straight. The skeletons of methanol and formic acid are no carbon monoxide and dioxide.
+   */
+  #isSurelyBare(members: Int32Array, bonds: readonly number[]): boolean {
+    const { element } = this.#model.tree.atoms;
+    const { positionA } = this.#model;
+    const vector = (from: number, to: number) =>
+      [0, 1, 2].map((a) => positionA[3 * members[to]! + a]! - positionA[3 * members[from]! + a]!);
+    const neighbours = new Map<number, number[]>();
+    for (let k = 0; k < bonds.length; k += 2) {
+      const [i, j] = [bonds[k]!, bonds[k + 1]!];
+      neighbours.set(i, [...(neighbours.get(i) ?? []), j]);
+      neighbours.set(j, [...(neighbours.get(j) ?? []), i]);
+      const [z1, z2] = [element[members[i]!]!, element[members[j]!]!];
+      if (!MAY_BEAR_HYDROGEN.has(z1) || !MAY_BEAR_HYDROGEN.has(z2)) continue;
+      const share = Math.hypot(...vector(i, j)) / (COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!);
+      const isOxygen = z1 === 8 && z2 === 8;
+      const most = members.length === 2 ? (isOxygen ? 0.95 : 0.83) : isOxygen ? 1 : 0.93;
+      if (!(share < most)) return false;
+    }
+    for (const [atom, [first, second, ...others]] of neighbours) {
+      if (element[members[atom]!] !== 6 || first === undefined || second === undefined || others.length > 0) continue;
+      const [a, b] = [vector(atom, first), vector(atom, second)];
+      const dot = a.reduce((sum, component, k) => sum + component * b[k]!, 0);
+      if (dot / (Math.hypot(...a) * Math.hypot(...b)) > STRAIGHT_COSINE) return false;
+    }
+    return true;
   }
 
   /** The dipole of a fragment as published for its kind, else as estimated; a sentence where there is none. */

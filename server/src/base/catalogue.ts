@@ -153,7 +153,7 @@ export const CATALOGUE = {
     title: 'Dipole reversed',
     meaning:
       'The annotated dipole points against the dipole of the atomic charges (without charges: the published or estimated one). Here dipoles point from negative to positive charge; the arrow drawn by chemists is the reverse.',
-    remedy: 'Change the sign of all three components.',
+    remedy: 'Change the sign of all three components, or turn the axis round.',
   },
   'dipole-rotated': {
     severity: 'warning',

@@ -128,7 +128,7 @@ function whyNot(
   if (!centreA.every(Number.isFinite)) return 'The centre is not a point.';
   const whole = Math.round(netChargeE);
   if (!(Math.abs(netChargeE - whole) <= WHOLE)) return 'The net charge is not a whole number.';
-  if ((protons - whole) % 2 !== 0) return 'An odd number of electrons: radicals cannot be estimated.';
+  if ((protons - whole) % 2 !== 0) return 'An odd number of electrons: an ion whose charge is not given, or a radical.';
   return atomsMeet(count, positionsA) ? 'Two atoms stand at one point.' : null;
 }
 

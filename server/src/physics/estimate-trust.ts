@@ -51,6 +51,9 @@ export function reasonForDoubt(graph: FragmentGraph, elements: ArrayLike<number>
     ) {
       return 'Hydrogen isocyanide is beyond the scheme.';
     }
+    if (is(i, O) && bonds(i) >= 3 && netChargeE < 0.5) {
+      return 'An oxygen with three bonds and no charge to go with them: molecules that touch, or a wrong charge.';
+    }
     if (is(i, ...HALOGENS) && bonds(i) > 1) return 'A halogen with more than one bond is beyond the scheme.';
     if (is(i, S) && bonds(i) >= 4 && everyNeighbour(graph, i, (j) => is(j, ...HALOGENS))) {
       return 'A hypervalent sulfur halide is beyond the scheme.';

@@ -76,10 +76,15 @@ function compare(context: RuleContext, f: number, annotated: Vector, column: Vec
       () => rederived(column, written),
     );
   } else if (share > MISMATCH_SHARE) {
-    context.findings.add('dipole-mismatch', span, () => `${sizes}, ${shown(100 * share, 2)} % off.`);
+    context.findings.add('dipole-mismatch', span, () => `${sizes}, ${percent(share)} off.`);
   } else if (share >= DEVIATION_SHARE) {
-    context.findings.add('dipole-deviation', span, () => `${sizes}, ${shown(100 * share, 2)} % off.`);
+    context.findings.add('dipole-deviation', span, () => `${sizes}, ${percent(share)} off.`);
   }
+}
+
+/** A share in words. */
+export function percent(share: number): string {
+  return share > 10 ? 'far' : `${shown(100 * share, 2)} %`;
 }
 
 export function debye(sizeEA: number): string {
