@@ -17,7 +17,7 @@ const SURELY_FAR = 3;
 /** The advice on a pair, the first rule that applies; `null` for parts of one molecule. */
 export function adviseOn(system: System, pair: Readonly<Pair>, sharedProton: boolean): Advice | null {
   const { moments, kTKJPerMol, isIon, settings } = system;
-  const { first, second, contact, regime, basis, strengthKJPerMol, errorKJPerMol, energies } = pair;
+  const { first, second, contact, regime, basis, strengthKJPerMol, energies } = pair;
   if (contact === 'bonded') return null;
   if (contact === 'clash') return 'repair';
   const touching = contact === 'touching';
@@ -35,6 +35,7 @@ export function adviseOn(system: System, pair: Readonly<Pair>, sharedProton: boo
   if (Math.abs(energies.induction) > limit || Math.abs(energies.dispersion) > limit) return 'review';
   if (sharedProton) return 'review';
   const negligible = NEGLIGIBLE_KT * kTKJPerMol;
-  if (!touching && (regime === 'far' || (strengthKJPerMol < negligible && errorKJPerMol < negligible))) return 'accept';
+  const error = pair.errorKJPerMol + pair.doubtKJPerMol;
+  if (!touching && (regime === 'far' || (strengthKJPerMol < negligible && error < negligible))) return 'accept';
   return 'review';
 }

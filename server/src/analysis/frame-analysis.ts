@@ -49,7 +49,7 @@ export class FileAnalysis {
     const settings = settingsOf(this.request, model);
     const moments = yield* momentSteps(model, settings.centre, this.request.knowledge);
     const parts = [{ model, moments }, ...(this.#companion === null ? [] : [this.#companion])];
-    const system = yield* systemSteps(parts, settings);
+    const system = yield* systemSteps(parts, settings, this.request.knowledge);
     yield;
     const partners = new Partners(system);
     yield;

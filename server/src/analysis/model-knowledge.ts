@@ -33,7 +33,7 @@ const MAY_BEAR_HYDROGEN: ReadonlySet<number> = new Set([6, 7, 8, 16]);
 /** Cosine of 150 degrees. */
 const STRAIGHT_COSINE = -Math.sqrt(3) / 2;
 /** A fragment of more atoms is not estimated while someone types. */
-const MOST_ESTIMATED_ATOMS = 300;
+export const MOST_ESTIMATED_ATOMS = 300;
 
 /** What is known of the fragments of one frame besides what the file says. */
 export class ModelKnowledge {

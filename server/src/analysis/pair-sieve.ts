@@ -1,7 +1,7 @@
 import { ELEMENT_STRIDE } from '../physics/element-pair-table';
 import { vdwSums2A2 } from './contact';
 import { CONTACT_REACH_A, isWithinCutoff } from './partners';
-import { NEGLIGIBLE_KT } from './reference';
+import { doubtAt, NEGLIGIBLE_KT } from './reference';
 import type { System } from './system';
 
 /** What a look at a pair tells. */
@@ -56,7 +56,8 @@ export class PairSieve {
           : null;
     if (charges === null) return Sieved.open;
     const reference = mayTouch ? this.#coulombOfApart(f, g, x, y, z, charges) : this.#coulomb(f, g, x, y, z, charges);
-    const error = Math.abs(this.#point(f, g, x, y, z, distanceA) - reference);
+    let error = Math.abs(this.#point(f, g, x, y, z, distanceA) - reference);
+    if (charges === system.fittedE) error += doubtAt(system, f, g, 'fitted', distanceA);
     const bound = Math.max(
       system.settings.tolerance * Math.abs(reference),
       (NEGLIGIBLE_KT * system.kTKJPerMol) / system.couplingKJA,

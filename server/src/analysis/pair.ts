@@ -4,7 +4,7 @@ import * as law from '../physics/multipole-energies';
 import { type Advice, adviseOn } from './advice';
 import { type Contact, scanAtoms } from './contact';
 import { dispersionOf, inductionOf } from './pair-polarization';
-import { type Basis, basisOf, errorBound, extendedDipoleOf, type Regime, regimeOf } from './reference';
+import { type Basis, basisOf, doubtAt, errorBound, extendedDipoleOf, type Regime, regimeOf } from './reference';
 import { ZERO_DIPOLE_EA } from './settings';
 import type { System } from './system';
 
@@ -44,6 +44,8 @@ export interface Pair {
   readonly basis: Basis;
   readonly referenceKJPerMol: number;
   readonly errorKJPerMol: number;
+  /** By how much the reference itself may be off because charges were estimated: the regime counts it with the error. */
+  readonly doubtKJPerMol: number;
   readonly regime: Regime | null;
   /** What the pair matters, kJ/mol: the larger of reference and point estimate in size; with ε_r = 1 where they touch. */
   readonly strengthKJPerMol: number;
@@ -83,7 +85,8 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
   }
   const reference = bonded ? Number.NaN : referenceEnergy(system, f, g, u, distanceA, basis, scan, energies);
   const error = enclosed ? Number.NaN : Math.abs(energies.pointDipole - reference);
-  const regime = judgeRegime(system, f, g, distanceA, bonded, enclosed, basis, reference, error);
+  const doubt = Number.isNaN(error) ? 0 : doubtAt(system, f, g, basis, distanceA) * couplingKJA;
+  const regime = judgeRegime(system, f, g, distanceA, bonded, enclosed, basis, reference, error + doubt);
   const point = Math.abs(energies.pointDipole);
   const known = enclosed ? Math.abs(energies.coulomb) : Math.max(point || 0, Math.abs(reference) || 0);
   const strength = (known || 0) * (contact === 'touching' ? settings.relativePermittivity : 1);
@@ -103,6 +106,7 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
     basis,
     referenceKJPerMol: reference,
     errorKJPerMol: error,
+    doubtKJPerMol: doubt,
     regime,
     strengthKJPerMol: strength,
     advice: null,

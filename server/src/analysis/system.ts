@@ -3,10 +3,12 @@ import { AtomFlag } from '../formats/tree';
 import type { Cell } from '../model/cell';
 import type { FrameModel } from '../model/frame-model';
 import { COULOMB_KJ_A_PER_MOL, DEBYE_E_A, thermalEnergyKJPerMol } from '../physics/constants';
+import { eeqCharges, hasEeqParameters } from '../physics/eeq-charges';
 import { fitCharges } from '../physics/fitted-charges';
 import { ChainGraph } from './chain-graph';
+import { MOST_ESTIMATED_ATOMS } from './model-knowledge';
 import { type Moments, momentColumns, roomForMoments, wordColumns } from './moments';
-import { type AnalysisSettings, ION_CHARGE_E, ZERO_DIPOLE_EA } from './settings';
+import { type AnalysisSettings, ION_CHARGE_E, type Knowledge, ZERO_DIPOLE_EA } from './settings';
 
 /** Dipoles from charges below this have no meaningful direction: coordinate rounding, e·Å. */
 export const ROUNDING_DIPOLE_EA = 0.02 * DEBYE_E_A;
@@ -28,6 +30,8 @@ export interface Part {
  */
 export interface System {
   readonly settings: AnalysisSettings;
+  /** Whether charges may be equilibrated where a fragment has no charge column. */
+  readonly estimates: boolean;
   readonly kTKJPerMol: number;
   /** k_e/ε_r, kJ·Å/mol. */
   readonly couplingKJA: number;
@@ -51,6 +55,11 @@ export interface System {
   /** 1 where net charge and dipole in use are those of the charge column. */
   readonly ownCharges: Uint8Array;
   readonly fitted: Uint8Array;
+  /**
+   * Size of the quadrupole of charges that are neither the file's nor known but estimated, by which a reference that rests on them is
+   * doubted, e·Å²; 0 elsewhere.
+   */
+  readonly doubtEA2: Float64Array;
   /** 1 where nothing tells how the charge is spread: two or more atoms, no charges, dipole zero or unknown. */
   readonly featureless: Uint8Array;
   readonly isIon: Uint8Array;
@@ -61,9 +70,13 @@ export interface System {
 const FRAGMENTS_A_STEP = 512;
 
 /** Lays out the fragments of one or two parts for pair work, and fits the charges that the reference energy needs. */
-export function* systemSteps(parts: readonly Part[], settings: AnalysisSettings): Steps<System> {
+export function* systemSteps(
+  parts: readonly Part[],
+  settings: AnalysisSettings,
+  knowledge: Knowledge | null,
+): Steps<System> {
   const moments = parts.length === 1 ? parts[0]!.moments : joinMoments(parts.map((part) => part.moments));
-  const system = emptySystem(parts, moments, settings);
+  const system = emptySystem(parts, moments, settings, knowledge);
   let before = 0;
   let atomsBefore = 0;
   for (const { model } of parts) {
@@ -81,11 +94,17 @@ export function* systemSteps(parts: readonly Part[], settings: AnalysisSettings)
 }
 
 /** A system with room for all fragments of its parts, none of them laid out. */
-export function emptySystem(parts: readonly Part[], moments: Moments, settings: AnalysisSettings): System {
+export function emptySystem(
+  parts: readonly Part[],
+  moments: Moments,
+  settings: AnalysisSettings,
+  knowledge: Knowledge | null,
+): System {
   const { count } = moments;
   const atomCount = parts.reduce((sum, { model }) => sum + model.fragments.members.length, 0);
   return {
     settings,
+    estimates: knowledge?.estimates ?? false,
     kTKJPerMol: thermalEnergyKJPerMol(settings.temperatureK),
     couplingKJA: COULOMB_KJ_A_PER_MOL / settings.relativePermittivity,
     cell: parts[0]!.model.cell,
@@ -102,6 +121,7 @@ export function emptySystem(parts: readonly Part[], moments: Moments, settings: 
     hasColumn: new Uint8Array(count),
     ownCharges: new Uint8Array(count),
     fitted: new Uint8Array(count),
+    doubtEA2: new Float64Array(count),
     featureless: new Uint8Array(count),
     isIon: new Uint8Array(count),
     chains: new ChainGraph(parts.map((part) => part.model)),
@@ -128,6 +148,7 @@ export function layOut(system: System, model: FrameModel, f: number, fragment: n
   system.usable[fragment] = model.usable[f]!;
   const flags = [system.hasColumn, system.ownCharges, system.fitted, system.featureless, system.isIon];
   for (const flag of flags) flag[fragment] = 0;
+  system.doubtEA2[fragment] = 0;
   if (model.usable[f]) describeCharges(fragment, begin, at, system);
 }
 
@@ -156,9 +177,49 @@ function describeCharges(f: number, from: number, to: number, system: System): v
     positions.set(localA.subarray(3 * k, 3 * k + 3), 3 * index);
     charges[index] = fittedE[k]!;
   }
-  if (!fitCharges(movable.length, positions, charges, chargeE[f]!, dipole, [0, 0, 0])) return;
+  if (!hasColumn && system.estimates) equilibrate(system, movable, positions, chargeE[f]!, charges);
+  const fits = fitCharges(movable.length, positions, charges, chargeE[f]!, dipole, [0, 0, 0]);
+  if (!hasColumn && system.estimates && movable.length > 1) {
+    system.doubtEA2[f] = quadrupoleSize(movable.length, positions, charges);
+  }
+  if (!fits) return;
   for (const [index, k] of movable.entries()) fittedE[k] = charges[index]!;
   system.fitted[f] = 1;
+}
+
+/** Fills in charges equilibrated by EEQ as the start of the fit; leaves the zeros where there are none. */
+function equilibrate(
+  system: System,
+  atoms: readonly number[],
+  positions: Float64Array,
+  netChargeE: number,
+  charges: Float64Array,
+): void {
+  if (atoms.length < 2 || atoms.length > MOST_ESTIMATED_ATOMS) return;
+  const elements = new Uint8Array(atoms.length);
+  for (let i = 0; i < atoms.length; i++) {
+    elements[i] = system.element[atoms[i]!]!;
+    if (!hasEeqParameters(elements[i]!)) return;
+  }
+  if (eeqCharges(atoms.length, elements, positions, netChargeE, charges) !== null) charges.fill(0);
+}
+
+/** √(Σ Θ_ab²) of the traceless quadrupole of some charges, e·Å². */
+function quadrupoleSize(count: number, positions: Float64Array, charges: Float64Array): number {
+  let [xx, xy, xz, yy, yz, zz] = [0, 0, 0, 0, 0, 0];
+  for (let i = 0; i < count; i++) {
+    const q = charges[i]!;
+    const x = positions[3 * i]!;
+    const y = positions[3 * i + 1]!;
+    const z = positions[3 * i + 2]!;
+    xx += q * (2 * x * x - y * y - z * z);
+    yy += q * (2 * y * y - x * x - z * z);
+    zz += q * (2 * z * z - x * x - y * y);
+    xy += q * x * y;
+    xz += q * x * z;
+    yz += q * y * z;
+  }
+  return Math.sqrt((xx * xx + yy * yy + zz * zz) / 4 + 4.5 * (xy * xy + xz * xz + yz * yz));
 }
 
 function joinMoments(all: readonly Moments[]): Moments {

@@ -132,7 +132,7 @@ function rewritten(frame: FrameAnalysis, { model, fresh }: UpdatedModel): Rewrit
 function rebuilt(frame: FrameAnalysis, { model, newOf, fresh }: UpdatedModel): Rewritten {
   const moments = roomForMoments(model.fragments.count);
   const known = frame.knowledge === null ? null : new ModelKnowledge(model, frame.knowledge);
-  const system = emptySystem([{ model, moments }], moments, frame.settings);
+  const system = emptySystem([{ model, moments }], moments, frame.settings, frame.knowledge);
   system.starts.set(model.fragments.starts);
   for (const [from, to, count] of runsOf(newOf)) copyRun(frame.system, system, from, to, count);
   for (const f of fresh) {
@@ -160,6 +160,7 @@ function copyRun(old: System, now: System, from: number, to: number, count: numb
   const flags = ['usable', 'hasColumn', 'ownCharges', 'fitted', 'featureless', 'isIon'] as const;
   for (const flag of flags) copy(old[flag], now[flag], 1, from, to, count);
   copy(old.moments.isAtom, now.moments.isAtom, 1, from, to, count);
+  copy(old.doubtEA2, now.doubtEA2, 1, from, to, count);
   const [at, into] = [old.starts[from]!, now.starts[to]!];
   const atoms = old.starts[from + count]! - at;
   for (const column of ['element', 'ghost', 'columnE', 'fittedE'] as const) {

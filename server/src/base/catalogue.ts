@@ -138,7 +138,7 @@ export const CATALOGUE = {
     severity: 'warning',
     title: 'Point dipole does not hold',
     meaning:
-      'The pair interacts noticeably (more than half of kT), and the point-dipole estimate differs from the reference by more than twice what is allowed: the tolerance (20 %) of the reference, or 0.1 kT where that is more.',
+      'The pair interacts noticeably (more than half of kT), and the point-dipole estimate differs from the reference by more than twice what is allowed: the tolerance (20 %) of the reference, or 0.1 kT where that is more. What a reference of estimated charges may itself be off by (±) counts with it.',
     remedy: 'Do not trust the point-dipole number; compute this pair.',
   },
   'dipole-unit': {
@@ -236,7 +236,7 @@ export const CATALOGUE = {
     severity: 'information',
     title: 'Point dipole at its edge',
     meaning:
-      'The point-dipole estimate differs from the reference by more than what is allowed (the tolerance of the reference, or 0.1 kT where that is more), but by less than twice of it.',
+      'The point-dipole estimate differs from the reference by more than what is allowed (the tolerance of the reference, or 0.1 kT where that is more), but by less than twice of it. What a reference of estimated charges may itself be off by (±) counts with it.',
     remedy: 'Use the number with care.',
   },
   'dipole-missing': {

@@ -87,6 +87,8 @@ export interface PairRecord {
   readonly relativeError: Maybe;
   /** Mean error of the energy for the errors of published or estimated dipoles; null where the file gives both. */
   readonly dipoleUncertaintyKJPerMol: Maybe;
+  /** By how much the reference may be off because it rests on estimated charges; the regime counts it with the error. */
+  readonly doubtKJPerMol: Maybe;
   readonly validBeyondA: Maybe;
   readonly advice: Advice | null;
 }
@@ -218,6 +220,7 @@ export function pairRecord(system: System, pair: Pair): PairRecord {
     errorKJPerMol: known(pair.errorKJPerMol),
     relativeError: known(relative),
     dipoleUncertaintyKJPerMol: known(uncertaintyOf(system, pair)),
+    doubtKJPerMol: Number.isNaN(pair.errorKJPerMol) ? null : pair.doubtKJPerMol,
     validBeyondA: known(validBeyondOf(system, pair)),
     advice: pair.advice,
   };

@@ -1,6 +1,6 @@
 import type { FindingCode } from '../../base/catalogue';
 import type { Related } from '../../base/finding';
-import { evaluatePair } from '../pair';
+import { evaluatePair, type Pair } from '../pair';
 import { NoteKind, type PairNotes } from '../pair-notes';
 import type { Basis } from '../reference';
 import { type RuleContext, shown } from './context';
@@ -126,8 +126,8 @@ class NearField {
     const pair = evaluatePair(context.frame.system, first, second);
     const { kTKJPerMol } = context.frame.system;
     const known = Number.isNaN(pair.referenceKJPerMol) ? pair.energies.pointDipole : pair.referenceKJPerMol;
-    const share = pair.errorKJPerMol / Math.abs(pair.referenceKJPerMol);
-    const off = Number.isFinite(share) ? `, point dipole off by ${shown(100 * share, 2)} %` : '';
+    const share = shareOff(pair);
+    const off = share === null ? '' : `, point dipole off by ${share}`;
     return `${context.nameOf(first === f ? second : first)}: R ${shown(pair.distanceA)} Å, ${energy(known, kTKJPerMol)}${off}`;
   }
 
@@ -143,14 +143,21 @@ class NearField {
     if (Number.isNaN(pair.referenceKJPerMol)) {
       return `${names}: the extents of the two overlap, so no reference can be given; the point dipole would say ${energy(pair.energies.pointDipole, kTKJPerMol)}.`;
     }
-    const share = pair.errorKJPerMol / Math.abs(pair.referenceKJPerMol);
     // What decides stands first: lists of problems cut the rest.
-    const off = Number.isFinite(share) ? `Point dipole off by ${shown(100 * share, 2)} %` : 'Point dipole off';
+    const share = shareOff(pair);
+    const off = share === null ? 'Point dipole off' : `Point dipole off by ${share}`;
     return (
       `${off}: ${names}; it gives ${shown(pair.energies.pointDipole)} kJ/mol, and ${BASIS_WORDS[pair.basis]} ` +
       `${pair.basis === 'extent' ? 'give' : 'gives'} ${energy(pair.referenceKJPerMol, kTKJPerMol)}.`
     );
   }
+}
+
+/** Error of the point dipole as a share of the reference, with what that may be off by; `null` where there is none. */
+function shareOff({ errorKJPerMol, doubtKJPerMol, referenceKJPerMol }: Pair): string | null {
+  const [share, doubt] = [errorKJPerMol, doubtKJPerMol].map((value) => (100 * value) / Math.abs(referenceKJPerMol));
+  if (!Number.isFinite(share)) return null;
+  return doubt === 0 ? `${shown(share!, 2)} %` : `${shown(share!, 2)} ± ${shown(doubt!, 2)} %`;
 }
 
 function energy(valueKJPerMol: number, kTKJPerMol: number): string {
