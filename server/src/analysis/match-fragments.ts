@@ -74,6 +74,7 @@ class Comparison {
     this.#ofFragment = [
       ...momentColumns(old.moments).map(([column, width], k) => [column, nowMoments[k]![0], width] as const),
       [old.moments.isAtom, now.moments.isAtom, 1],
+      [old.doubtEA2, now.doubtEA2, 1],
       ...flags.map((flag) => [old[flag], now[flag], 1] as const),
     ];
     this.#ofAtom = [
