@@ -166,7 +166,7 @@ export const CATALOGUE = {
     severity: 'warning',
     title: 'Dipole against charges',
     meaning:
-      'The annotated dipole differs in size by more than 40 % from the dipole of the atomic charges (without charges: from the published one, or by far more than the error of an estimate).',
+      'The annotated dipole differs in size by more than 40 % from the dipole of the atomic charges (without charges: by more than 60 % from the published one, or by far more than the error of an estimate).',
     remedy: 'Check both; one of them does not belong to this molecule.',
   },
   'electron-parity': {
