@@ -57,6 +57,34 @@ describe('a fragment of which the file says nothing', () => {
   });
 
   test.each([
+    ['methanol', ['C 0 0 0', 'O 0 0 1.42']],
+    ['formaldehyde', ['C 0 0 0', 'O 0 0 1.205']],
+    ['dimethyl ether', ['C 0 1.17 0.79', 'O 0 0 0', 'C 0 -1.17 0.79']],
+    ['formic acid', ['O 0 1.05 0.55', 'C 0 0 0', 'O 0 -1.21 0.5']],
+    ['hydrazine', ['N 0 0 0', 'N 0 0 1.45']],
+  ])('the skeleton of %s without hydrogens is taken for nothing, whatever else the file holds', (_, atoms) => {
+    const water = WATER.map((line) => line.replace(/^(\S+) (\S+)/, '$1 9$2').replace('90', '9.0'));
+    const record = first(xyz([...atoms, ...water]), KNOWING);
+    expect(record).toMatchObject({ dipoleSource: 'none', dipoleD: null, chargeSource: 'assumed' });
+    expect(record.dipoleNote).toMatch(/hydrogens/i);
+  });
+
+  test.each([
+    // 0.11 D, CCCBDB; the carbon is the negative end.
+    ['carbon monoxide', ['C 0 0 0', 'O 0 0 1.128'], 0.11],
+    ['carbon dioxide', ['C 0 0 0', 'O 0 0 1.16', 'O 0 0 -1.16'], 0],
+    ['nitrogen', ['N 0 0 0', 'N 0 0 1.098'], 0],
+  ])('%s, which has no hydrogens, is found in a file without any', (_, atoms, dipoleD) => {
+    expect(first(xyz(atoms), KNOWING)).toMatchObject({ dipoleSource: 'library', dipoleNormD: dipoleD });
+  });
+
+  test('a lone atom in XYZ is no ion: its charge is asked for', () => {
+    const text = xyz(['Na 0 0 0', 'Na 0 0 3.08']);
+    expect(first(text, KNOWING)).toMatchObject({ chargeE: 0, chargeSource: 'assumed' });
+    expect(analyse(text, 'xyz', KNOWING).findings.map(({ code }) => code)).toContain('ion-charge-missing');
+  });
+
+  test.each([
     ['a radical', ['O 0 0 0', 'H 0 0 0.97'], /odd number of electrons/i],
     ['a metal', ['Ti 0 0 0', 'O 0 0 1.62'], /metal|odd|parameters/i],
   ])('%s is refused with a reason', (_, atoms, reason) => {

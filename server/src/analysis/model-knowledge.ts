@@ -28,8 +28,13 @@ export interface OfferedDipole {
 const LIBRARY_SPREAD = 0.03;
 /** Estimates below this have no direction worth telling, e·Å. */
 const DIRECTED_EA = 0.3 * DEBYE_E_A;
-/** C, N, O and S. */
-const MAY_BEAR_HYDROGEN: ReadonlySet<number> = new Set([6, 7, 8, 16]);
+/** How many single bonds C, N, O and S form. */
+const SINGLE_BONDS: ReadonlyMap<number, number> = new Map([
+  [6, 4],
+  [7, 3],
+  [8, 2],
+  [16, 2],
+]);
 /** Cosine of 150 degrees. */
 const STRAIGHT_COSINE = -Math.sqrt(3) / 2;
 /** A fragment of more atoms is not estimated while someone types. */
@@ -75,33 +80,37 @@ export class ModelKnowledge {
   }
 
   /**
-   * Whether a fragment without hydrogens has none to miss: its bonds among C, N, O and S are as short as multiple bonds are, and its carbons
-   * with two neighbours are straight. The skeletons of methanol and formic acid are no carbon monoxide and dioxide.
+   * Whether a fragment without hydrogens has none to miss: atoms of C, N, O and S that have fewer neighbours than single bonds would give them
+   * have bonds as short as multiple ones, and carbons with two neighbours are straight. The skeletons of methanol and formic acid are no
+   * carbon monoxide and dioxide.
    */
   #isSurelyBare(members: Int32Array, bonds: readonly number[]): boolean {
     const { element } = this.#model.tree.atoms;
     const { positionA } = this.#model;
     const vector = (from: number, to: number) =>
       [0, 1, 2].map((a) => positionA[3 * members[to]! + a]! - positionA[3 * members[from]! + a]!);
-    const neighbours = new Map<number, number[]>();
+    const neighbours = Array.from(members, (): number[] => []);
+    for (let k = 0; k < bonds.length; k += 2) {
+      neighbours[bonds[k]!]!.push(bonds[k + 1]!);
+      neighbours[bonds[k + 1]!]!.push(bonds[k]!);
+    }
+    const isOpen = (atom: number) => neighbours[atom]!.length < (SINGLE_BONDS.get(element[members[atom]!]!) ?? 0);
     for (let k = 0; k < bonds.length; k += 2) {
       const [i, j] = [bonds[k]!, bonds[k + 1]!];
-      neighbours.set(i, [...(neighbours.get(i) ?? []), j]);
-      neighbours.set(j, [...(neighbours.get(j) ?? []), i]);
       const [z1, z2] = [element[members[i]!]!, element[members[j]!]!];
-      if (!MAY_BEAR_HYDROGEN.has(z1) || !MAY_BEAR_HYDROGEN.has(z2)) continue;
+      if (!SINGLE_BONDS.has(z1) || !SINGLE_BONDS.has(z2) || !(isOpen(i) || isOpen(j))) continue;
       const share = Math.hypot(...vector(i, j)) / (COVALENT_RADIUS_A[z1]! + COVALENT_RADIUS_A[z2]!);
       const isOxygen = z1 === 8 && z2 === 8;
       const most = members.length === 2 ? (isOxygen ? 0.95 : 0.83) : isOxygen ? 1 : 0.93;
       if (!(share < most)) return false;
     }
-    for (const [atom, [first, second, ...others]] of neighbours) {
-      if (element[members[atom]!] !== 6 || first === undefined || second === undefined || others.length > 0) continue;
+    return neighbours.every(([first, second, ...others], atom) => {
+      if (element[members[atom]!] !== 6 || first === undefined || second === undefined || others.length > 0)
+        return true;
       const [a, b] = [vector(atom, first), vector(atom, second)];
       const dot = a.reduce((sum, component, k) => sum + component * b[k]!, 0);
-      if (dot / (Math.hypot(...a) * Math.hypot(...b)) > STRAIGHT_COSINE) return false;
-    }
-    return true;
+      return dot / (Math.hypot(...a) * Math.hypot(...b)) <= STRAIGHT_COSINE;
+    });
   }
 
   /** The dipole of a fragment as published for its kind, else as estimated; a sentence where there is none. */
@@ -194,7 +203,11 @@ export class ModelKnowledge {
     if (members.length > MOST_ESTIMATED_ATOMS) {
       return { ok: false, reason: `More than ${MOST_ESTIMATED_ATOMS} atoms are not estimated.` };
     }
-    return estimateDipole(members.length, this.#elements(members), this.#positions(members), chargeE, centreA);
+    const elements = this.#elements(members);
+    if (!elements.includes(1) && !this.#isSurelyBare(members, this.#bondsWithin(f, members))) {
+      return { ok: false, reason: 'Hydrogens seem to be missing.' };
+    }
+    return estimateDipole(members.length, elements, this.#positions(members), chargeE, centreA);
   }
 
   #members(f: number): Int32Array {
