@@ -137,6 +137,32 @@ describe('a pair of waters of which the file says nothing', () => {
   });
 });
 
+test('errors of estimated directions move an energy that sizes do not: a dipole along the line, one across it', () => {
+  // Dipole 1 along z and dipole 2 along x, on the x axis: each stands at right angles to the field of the other, 2μ/R³ and μ/R³.
+  const across = FORMALDEHYDE.map((line) => {
+    const [symbol, x, y, z] = line.split(' ');
+    return [symbol, (Number(z) + 7).toFixed(4), x, y].join(' ');
+  });
+  const { frames, pairs } = analyse(xyz([...FORMALDEHYDE, ...across]), 'xyz', ESTIMATING);
+  const fragment = fragmentRecord(frames[0]!, 0, () => ({ name: '', label: null }));
+  const pair = pairRecord(frames[0]!.system, pairs[0]![0]!);
+  const dipoleEA = fragment.dipoleNormD! * 0.20819434;
+  const turn = Math.sin((fragment.dipoleAngleErrorDeg! * Math.PI) / 180);
+  // The centres are a little off the axis.
+  const expected = (Math.sqrt(5) * 1389.354576 * dipoleEA ** 2 * turn) / pair.distanceA! ** 3;
+  expect(pair.dipoleUncertaintyKJPerMol! / expected).toBeGreaterThan(0.9);
+  expect(pair.dipoleUncertaintyKJPerMol! / expected).toBeLessThan(1.1);
+});
+
+test('charges that do not add up say which of them is the guess of the library', () => {
+  const text = xyz(
+    ['O 0 0 0', 'H 0 0 0.97', ...WATER.map((line) => line.replace(/^(\S+) 0/, '$1 5'))],
+    'total_charge=0',
+  );
+  const found = analyse(text, 'xyz', KNOWING).findings.find(({ code }) => code === 'charge-sum');
+  expect(found!.message).toContain("The charge of HO (fragment 1) is the library's.");
+});
+
 test('a fragment of twenty thousand atoms is refused at once', () => {
   const chain = Array.from({ length: 20_000 }, (_, n) => `C ${(1.3 * n).toFixed(1)} ${n % 2} 0`);
   const record = first(xyz(chain), ESTIMATING);

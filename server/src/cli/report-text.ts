@@ -141,7 +141,9 @@ function pairRow(record: PairRecord, nameOf: (f: number) => FragmentName, scale:
     fixed(record.phiDeg, 0),
     record.arrangement ?? NOTHING,
     energy(pointDipole ?? partial) + mark,
-    energy(record.referenceKJPerMol) + uncertainty(record.dipoleUncertaintyKJPerMol, scale),
+    record.referenceKJPerMol === null
+      ? NOTHING
+      : energy(record.referenceKJPerMol) + uncertainty(record.dipoleUncertaintyKJPerMol, scale),
     record.basis === 'none' ? NOTHING : record.basis,
     record.relativeError === null ? NOTHING : percent(record.relativeError),
     energy(record.energyKJPerMol.induction),
@@ -176,9 +178,9 @@ function sourcesText(frame: FrameAnalysis, unit: string, scale: number): string 
 
 /** The mean error for those of published and estimated dipoles, behind an energy. */
 function uncertainty(valueKJPerMol: Maybe, scale: number): string {
-  if (valueKJPerMol === null) return '';
+  if (valueKJPerMol === null || valueKJPerMol === 0) return '';
   const value = valueKJPerMol * scale;
-  return ` ±${value >= 1 || value === 0 ? value.toFixed(0) : value.toPrecision(1)}`;
+  return ` ±${value >= 1 ? value.toFixed(0) : value.toPrecision(1)}`;
 }
 
 export function plural(count: number, what: string): string {

@@ -34,11 +34,16 @@ export function reportChargeSum(context: RuleContext): void {
   let sum = 0;
   for (let f = 0; f < own; f++) sum += moments.chargeE[f]!;
   if (!(Math.abs(sum - total.value) > CHARGE_TOLERANCE_E)) return;
+  // A guess from the library is not the file's mistake.
+  const guessed = moments.chargeSource.findIndex(
+    (source, f) => f < own && source === 'library' && moments.chargeE[f] !== 0,
+  );
+  const guess = guessed < 0 ? '' : ` The charge of ${context.nameOf(guessed)} is the library's.`;
   const assumed = moments.chargeSource.slice(0, own).every((source) => source === 'assumed');
   context.findings.add('charge-sum', total.span, () =>
     assumed
       ? `The total charge is ${shown(total.value)} e, and nothing says which fragment carries it; all are taken as neutral.`
-      : `The charges of the fragments add up to ${shown(sum)} e, and the total charge is ${shown(total.value)} e.`,
+      : `The charges of the fragments add up to ${shown(sum)} e, and the total charge is ${shown(total.value)} e.${guess}`,
   );
 }
 
