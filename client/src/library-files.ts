@@ -1,13 +1,8 @@
 import { type Disposable, Uri, workspace } from 'vscode';
+import type { ReadFilesParams } from '../../server/src/lsp/protocol';
 
 /** Longest file that is handed on: a library of thousands of molecules is smaller. */
 const MOST_BYTES = 5_000_000;
-
-/** What the server asks: files by their names in the workspace folder of a document. */
-interface ReadFilesParams {
-  readonly uri: string;
-  readonly names: readonly string[];
-}
 
 /** The texts of files of the workspace, wherever it lives; `null` for one that cannot be read. */
 export async function readWorkspaceFiles({ uri, names }: ReadFilesParams): Promise<(string | null)[]> {

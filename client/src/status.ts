@@ -1,12 +1,5 @@
 import { type Disposable, type DocumentSelector, LanguageStatusSeverity, languages, window, workspace } from 'vscode';
-
-/** What the server says of one document: parameters of the notification `polewise/status`. */
-export interface StatusParams {
-  readonly uri: string;
-  readonly state: 'idle' | 'busy' | 'limited' | 'failed';
-  readonly text: string;
-  readonly detail: string;
-}
+import type { StatusParams } from '../../server/src/lsp/protocol';
 
 const SEVERITY = {
   idle: LanguageStatusSeverity.Information,

@@ -1,7 +1,5 @@
 import { ColorThemeKind, window } from 'vscode';
-
-/** What the server needs to know of the colour theme: a picture in a hover cannot see it. */
-export type ThemeKind = 'light' | 'dark' | 'high-contrast';
+import type { ThemeKind } from '../../server/src/lsp/protocol';
 
 /** High contrast stands for light lines on black; its light variant is drawn like any light theme. */
 export function currentThemeKind(): ThemeKind {

@@ -1,37 +1,28 @@
 import {
-  CodeActionKind,
   type Connection,
   DidChangeConfigurationNotification,
   DocumentDiagnosticReportKind,
   ErrorCodes,
-  type Hover,
-  type InlayHint,
   LSPErrorCodes,
-  MarkupKind,
   ResponseError,
   TextDocumentSyncKind,
 } from 'vscode-languageserver';
-import { outlineOf } from '../features/outline';
-import type { PictureTheme } from '../features/pair-picture-parts';
 import type { Language } from '../formats/tree';
-import { codeActionsAt, FIX_ALL_KIND } from './code-actions';
-import { completionItemsAt } from './completion';
-import { diagnosticsOf, rangeOf } from './diagnostics';
-import { foldingOf, symbolsOf } from './outline';
-import type { Clock } from './pace';
-import { renderHover } from './render-hover';
+import { diagnosticsOf } from './diagnostics';
+import { EDITING_CAPABILITIES, serveEditing } from './editing';
+import {
+  FILES_CHANGED_NOTIFICATION,
+  READ_FILES_REQUEST,
+  STATUS_NOTIFICATION,
+  type StatusParams,
+  THEME_NOTIFICATION,
+  type ThemeKind,
+} from './protocol';
+import { READING_CAPABILITIES, serveReading } from './reading';
+import type { Platform } from './session';
 import { type LibraryFile, libraryFileNames, readSettings, SettingsStore } from './settings';
-import { busyStatus, failedStatus, readyStatus, STATUS_NOTIFICATION, type StatusParams } from './status';
-import { offsetOf } from './text-store';
+import { busyStatus, failedStatus, readyStatus } from './status';
 import { Workspace } from './workspace';
-
-/** What the entry gives the server of its platform. */
-export interface Platform {
-  readonly clock: Clock;
-  readonly version: string;
-  /** Base64 of the UTF-8 bytes of a text. */
-  base64(text: string): string;
-}
 
 interface ClientAbilities {
   configuration: boolean;
@@ -39,15 +30,10 @@ interface ClientAbilities {
   refresh: boolean;
 }
 
-/** Asks the editor for the texts of files by their names in the workspace of a document: a list of texts, null for what cannot be read. */
-const READ_FILES_REQUEST = 'polewise/readFiles';
-/** Tells that such a file has changed. */
-const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
-const THEME_NOTIFICATION = 'polewise/theme';
-const THEMES: readonly PictureTheme[] = ['light', 'dark', 'high-contrast'];
+const THEMES: readonly ThemeKind[] = ['light', 'dark', 'high-contrast'];
 
 /** The kind of theme that a client tells of, or `null`. */
-function themeOf(params: unknown): PictureTheme | null {
+function themeOf(params: unknown): ThemeKind | null {
   const kind = (params as { themeKind?: unknown } | null | undefined)?.themeKind;
   return THEMES.find((theme) => theme === kind) ?? null;
 }
@@ -56,7 +42,7 @@ function themeOf(params: unknown): PictureTheme | null {
 export function startServer(connection: Connection, platform: Platform): void {
   const client: ClientAbilities = { configuration: false, pull: false, refresh: false };
   let pushed: unknown = {};
-  let theme: PictureTheme | null = null;
+  let theme: ThemeKind | null = null;
 
   /** The texts of files beside a document; only the editor can read them, wherever the workspace lives. */
   const readFiles = async (uri: string, names: readonly string[]): Promise<LibraryFile[]> => {
@@ -94,12 +80,8 @@ export function startServer(connection: Connection, platform: Platform): void {
     return {
       capabilities: {
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
-        hoverProvider: true,
-        codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, FIX_ALL_KIND] },
-        documentSymbolProvider: true,
-        foldingRangeProvider: true,
-        inlayHintProvider: true,
-        completionProvider: { triggerCharacters: ['=', ' ', '_'] },
+        ...READING_CAPABILITIES,
+        ...EDITING_CAPABILITIES,
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -149,62 +131,16 @@ export function startServer(connection: Connection, platform: Platform): void {
     throw new ResponseError(LSPErrorCodes.ServerCancelled, 'outdated', { retriggerRequest: true });
   });
 
-  connection.onHover(async ({ textDocument: { uri }, position }, token): Promise<Hover | null> => {
-    const analysed = await workspace.analysed(uri);
-    if (analysed === null || token.isCancellationRequested) return null;
-    const { document } = analysed;
-    const offset = offsetOf(document, position);
-    const data = await workspace.hover(analysed, offset);
-    if (token.isCancellationRequested) return null;
-    if (data === null) return null;
-    return {
-      contents: {
-        kind: MarkupKind.Markdown,
-        value: renderHover(data, { unit: analysed.settings.energyUnit, theme, base64: platform.base64 }),
-      },
-      range: rangeOf(document.lines, data.span),
-    };
-  });
-
-  connection.onCodeAction(async ({ textDocument: { uri }, range, context: { diagnostics, only } }, token) => {
-    const analysed = await workspace.analysed(uri);
-    if (analysed === null || token.isCancellationRequested) return [];
-    const { document } = analysed;
-    const start = offsetOf(document, range.start);
-    const span = { start, end: Math.max(start, offsetOf(document, range.end)) };
-    return codeActionsAt(analysed, span, diagnostics, only);
-  });
-
-  connection.onDocumentSymbol(async ({ textDocument: { uri } }, token) => {
-    const analysed = await workspace.analysed(uri);
-    if (analysed === null || token.isCancellationRequested) return [];
-    const only = analysed.tree.frames.length === 1 && !analysed.limited ? await workspace.frame(analysed, 0) : null;
-    return symbolsOf(analysed.document.lines, outlineOf(analysed.tree, only));
-  });
-
-  connection.onFoldingRanges(async ({ textDocument: { uri } }, token) => {
-    const analysed = await workspace.analysed(uri);
-    return analysed === null || token.isCancellationRequested ? [] : foldingOf(analysed.tree);
-  });
-
-  connection.languages.inlayHint.on(async ({ textDocument: { uri }, range }, token): Promise<InlayHint[]> => {
-    const analysed = await workspace.analysed(uri);
-    if (analysed === null || analysed.limited || token.isCancellationRequested) return [];
-    const { lines } = analysed.document;
-    const hints = await workspace.hints(analysed, range.start.line, range.end.line + 1);
-    return hints.map(({ offset, text, tooltip }) => ({
-      position: rangeOf(lines, { start: offset, end: offset }).start,
-      label: text,
-      tooltip,
-      paddingLeft: true,
-    }));
-  });
-
-  // Completion needs the text alone: it does not wait for any analysis.
-  connection.onCompletion(({ textDocument: { uri }, position }) => {
-    const document = workspace.document(uri);
-    return document === undefined ? [] : completionItemsAt(document, position);
-  });
+  const session = {
+    connection,
+    platform,
+    workspace,
+    get theme() {
+      return theme;
+    },
+  };
+  serveReading(session);
+  serveEditing(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);

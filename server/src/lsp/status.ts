@@ -1,16 +1,5 @@
 import type { Analysed } from './analyser';
-
-/** What the status item of the editor shows for a document. */
-export interface StatusParams {
-  readonly uri: string;
-  readonly state: 'idle' | 'busy' | 'limited' | 'failed';
-  /** A few words. */
-  readonly text: string;
-  /** A sentence or two. */
-  readonly detail: string;
-}
-
-export const STATUS_NOTIFICATION = 'polewise/status';
+import type { StatusParams } from './protocol';
 
 const plural = (count: number, what: string) => `${count} ${what}${count === 1 ? '' : 's'}`;
 
