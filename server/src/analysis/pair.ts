@@ -57,8 +57,7 @@ const IMAGE = imageResult();
 
 /** Evaluates the pair of fragments `f` < `g`, both usable. Cost: their numbers of atoms multiplied. */
 export function evaluatePair(system: System, f: number, g: number): Pair {
-  const { moments, couplingKJA, settings } = system;
-  const { centreA, extentA } = moments;
+  const { centreA } = system.moments;
   const dx = centreA[3 * g]! - centreA[3 * f]!;
   const dy = centreA[3 * g + 1]! - centreA[3 * f + 1]!;
   const dz = centreA[3 * g + 2]! - centreA[3 * f + 2]!;
@@ -69,6 +68,22 @@ export function evaluatePair(system: System, f: number, g: number): Pair {
     [x, y, z] = IMAGE.vectorA as unknown as [number, number, number];
     image = [IMAGE.image[0]!, IMAGE.image[1]!, IMAGE.image[2]!];
   }
+  return evaluatePairAt(system, f, g, [x, y, z], image);
+}
+
+/**
+ * The pair as it would be with its second fragment moved, rigid and unturned, so that `separationA` leads from the first centre to the second.
+ * `image` is only noted.
+ */
+export function evaluatePairAt(
+  system: System,
+  f: number,
+  g: number,
+  [x, y, z]: readonly [number, number, number],
+  image: readonly [number, number, number],
+): Pair {
+  const { couplingKJA, settings } = system;
+  const { extentA } = system.moments;
   const distanceA = Math.sqrt(x * x + y * y + z * z);
   const u: [number, number, number] = [x / distanceA, y / distanceA, z / distanceA];
   const largest = Math.max(extentA[f]!, extentA[g]!);

@@ -160,7 +160,8 @@ function keyAt(entries: readonly Entry[], offset: number): KeyHover | null {
   return { kind: 'key', span: { start: entry.keySpan.start, end: entry.value.end }, key: entry.key, text };
 }
 
-function namesOf(frame: FrameAnalysis): (fragment: number) => FragmentName {
+/** What the fragments of a frame are called. */
+export function namesOf(frame: FrameAnalysis): (fragment: number) => FragmentName {
   return (f) => ({ name: frame.model.names[f]!, label: frame.model.labels[f] === '' ? null : frame.model.labels[f]! });
 }
 
@@ -192,11 +193,13 @@ export function pairsOfFragment(frame: FrameAnalysis, f: number): Pair[] {
     .filter((pair) => pair.contact !== 'apart' || isWithinCutoff(system, pair.first, pair.second, pair.distanceA));
 }
 
-function byStrength(a: Pair, b: Pair): number {
+/** Order of pairs by what they matter. */
+export function byStrength(a: Pair, b: Pair): number {
   return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
 }
 
-function viewFrom(frame: FrameAnalysis, f: number, pair: Pair): PartnerView {
+/** A pair as seen from fragment `f`, one of its two. */
+export function viewFrom(frame: FrameAnalysis, f: number, pair: Pair): PartnerView {
   const other = pair.first === f ? pair.second : pair.first;
   return {
     partner: fragmentRecord(frame, other, namesOf(frame)),

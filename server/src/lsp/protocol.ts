@@ -3,7 +3,14 @@
  * data; nothing here needs a package, so that every side can read it.
  */
 
+import type { Advice } from '../analysis/advice';
+import type { PairRow, RowQuery } from '../features/pair-list';
 import type { PictureTheme } from '../features/pair-picture-parts';
+import type { PairNumbers, PlaceData } from '../features/panel-place';
+import type { Maybe } from '../features/records';
+import type { SeriesFrame } from '../features/series';
+import type { SeriesEvent } from '../features/series-events';
+import type { EnergyUnit } from '../physics/units';
 
 /** What the status item of the editor shows for a document. */
 export interface StatusParams {
@@ -36,3 +43,104 @@ export interface ReadFilesParams {
 
 /** Tells that such a file has changed. */
 export const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
+
+/** A pair of a document; frame and fragments from 1. */
+export interface PairPlace extends PairNumbers {
+  readonly uri: string;
+  readonly frame: number;
+}
+
+/** A place of a document, from 0. */
+export interface Place {
+  readonly line: number;
+  readonly character: number;
+}
+
+/** What every answer to the panel carries: of which version of the text it speaks, and how energies are to be written. */
+export interface PanelAnswer {
+  readonly version: number;
+  readonly unit: EnergyUnit;
+  readonly unitsPerKJPerMol: number;
+  readonly kTKJPerMol: number;
+}
+
+/** Asks what the panel leads with for a place; answers null where the text has changed or is closed. */
+export const PANEL_PLACE_REQUEST = 'polewise/panelPlace';
+
+export interface PanelPlaceParams {
+  readonly uri: string;
+  readonly position: Place;
+  /** A pair that was chosen; shown as long as the cursor is on one of its fragments, or on none. */
+  readonly pair: ({ readonly frame: number } & PairNumbers) | null;
+}
+
+export interface PanelPlace extends PanelAnswer {
+  /** `null` where the document holds no frame. */
+  readonly place: PlaceData | null;
+}
+
+/** Asks for some rows of the table of all pairs of a frame. */
+export const PANEL_ROWS_REQUEST = 'polewise/panelRows';
+
+export interface PanelRowsParams {
+  readonly uri: string;
+  readonly frame: number;
+  readonly query: RowQuery;
+  readonly from: number;
+  readonly count: number;
+}
+
+export interface PanelRows extends PanelAnswer {
+  readonly frame: number;
+  readonly from: number;
+  readonly rows: readonly PairRow[];
+  /** Rows that the query wants, and pairs that the frame has. */
+  readonly matching: number;
+  readonly pairs: number;
+  /** Why there is no table, where there is none. */
+  readonly reason: string | null;
+}
+
+/** Asks for the energies of all fragments of a frame with each other. */
+export const PANEL_MATRIX_REQUEST = 'polewise/panelMatrix';
+
+export interface PanelFrameParams {
+  readonly uri: string;
+  readonly frame: number;
+}
+
+export interface PanelMatrix extends PanelAnswer {
+  readonly frame: number;
+  readonly titles: readonly string[];
+  /** Columns of the pairs that the frame has; fragments from 1. */
+  readonly first: readonly number[];
+  readonly second: readonly number[];
+  readonly energyKJPerMol: readonly Maybe[];
+  readonly advice: readonly (Advice | null)[];
+  readonly reason: string | null;
+}
+
+/** Asks for a pair over the frames of its document. */
+export const PANEL_SERIES_REQUEST = 'polewise/panelSeries';
+
+export type PanelSeriesParams = PairPlace;
+
+export interface PanelSeries extends PanelAnswer {
+  readonly frame: number;
+  readonly titles: readonly [string, string];
+  readonly frames: readonly SeriesFrame[];
+  readonly events: readonly SeriesEvent[];
+  readonly reason: string | null;
+}
+
+/** Asks where the atoms of some fragments of a frame stand: ranges of lines, from 0, the end line included. */
+export const FRAGMENT_LINES_REQUEST = 'polewise/fragmentLines';
+
+export interface FragmentLinesParams extends PanelFrameParams {
+  readonly fragments: readonly number[];
+}
+
+export interface FragmentLines {
+  readonly version: number;
+  readonly runs: readonly { readonly firstLine: number; readonly lastLine: number }[];
+}

@@ -1,19 +1,13 @@
 import type { HoverData, PartnerView } from '../features/hover';
+import { fixed, NOTHING } from '../features/number-text';
 import { pairPicture } from '../features/pair-picture';
+import { pictureInputOf } from '../features/pair-picture-input';
 import type { PictureTheme } from '../features/pair-picture-parts';
 import type { FragmentRecord, Maybe } from '../features/records';
 import { BOHR_A, COULOMB_METRE_E_A, DEBYE_E_A } from '../physics/constants';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
 
 const CAUTION = 'Estimate for triage, not a substitute for a quantum calculation.';
-const NOTHING = '–';
-
-function fixed(value: Maybe, digits: number): string {
-  if (value === null) return NOTHING;
-  const text = value.toFixed(digits);
-  return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
-}
-
 /** Text of the file, so that it stands as written and means nothing to Markdown. */
 export function escapeMarkdown(text: string): string {
   return text.replace(/[\\`*_{}[\]()#!|<>~&]/g, '\\$&').replace(/\s+/g, ' ');
@@ -134,27 +128,7 @@ function picture(
   { partner, pair }: PartnerView,
   { unit, theme, base64 }: HoverLook,
 ): string {
-  const [first, second] = [fragment, partner];
-  const { svg, text } = pairPicture({
-    name1: `${first.name} #${first.fragment}`,
-    name2: `${second.name} #${second.fragment}`,
-    distanceA: pair.distanceA,
-    extent1A: first.extentA,
-    extent2A: second.extentA,
-    charge1E: first.chargeE,
-    charge2E: second.chargeE,
-    dipole1D: first.dipoleD === null ? null : first.dipoleNormD,
-    dipole2D: second.dipoleD === null ? null : second.dipoleNormD,
-    theta1Deg: pair.theta1Deg,
-    theta2Deg: pair.theta2Deg,
-    phiDeg: pair.phiDeg,
-    pointKJPerMol: pair.energyKJPerMol.pointDipole,
-    referenceKJPerMol: pair.referenceKJPerMol,
-    kTKJPerMol,
-    unit,
-    unitsPerKJPerMol: energyUnitsPerKJPerMol(unit, kTKJPerMol),
-    theme,
-  });
+  const { svg, text } = pairPicture(pictureInputOf(fragment, partner, pair, { unit, kTKJPerMol, theme }));
   const words = escapeMarkdown(text);
   return `![${words}](data:image/svg+xml;base64,${base64(svg)}|width=360,height=164)`;
 }

@@ -10,6 +10,7 @@ import {
 import type { Language } from '../formats/tree';
 import { diagnosticsOf } from './diagnostics';
 import { EDITING_CAPABILITIES, serveEditing } from './editing';
+import { servePanel } from './panel';
 import {
   FILES_CHANGED_NOTIFICATION,
   READ_FILES_REQUEST,
@@ -141,6 +142,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   };
   serveReading(session);
   serveEditing(session);
+  servePanel(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);

@@ -23,12 +23,15 @@ export interface ServerSettings {
   readonly maxFindings: number;
   readonly hints: HintKinds;
   readonly analysisLimit: number;
+  /** The table of all pairs is off in a frame that has more. */
+  readonly panelPairLimit: number;
   /** What was wrong with the settings, in words for the status. */
   readonly complaints: readonly string[];
 }
 
 const DEFAULT_MAX_FINDINGS = 200;
 const DEFAULT_ANALYSIS_LIMIT = 200000;
+const DEFAULT_PANEL_PAIR_LIMIT = 300_000;
 const MOST_LIBRARY_FILES = 20;
 
 /** Checks settings as the editor sends them: a wrong one gives its default and a complaint, one out of range is clamped. */
@@ -55,6 +58,7 @@ export function readSettings(raw: unknown, libraryFiles: readonly LibraryFile[] 
     hints: { fragments: reader.flag('hints.fragments', true), contacts: reader.flag('hints.contacts', true) },
     maxFindings: reader.number('maxFindings', 1, 5000, DEFAULT_MAX_FINDINGS),
     analysisLimit: reader.number('analysisLimit', 0, 1e7, DEFAULT_ANALYSIS_LIMIT),
+    panelPairLimit: reader.number('limits.panelPairs', 0, 1e6, DEFAULT_PANEL_PAIR_LIMIT),
     complaints: reader.complaints,
   };
 }

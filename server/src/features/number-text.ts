@@ -1,0 +1,11 @@
+import type { Maybe } from './records';
+
+/** Stands where a number is not known. */
+export const NOTHING = '–';
+
+/** A number with so many decimals and a true minus sign, never −0. */
+export function fixed(value: Maybe, digits: number): string {
+  if (value === null) return NOTHING;
+  const text = value.toFixed(digits);
+  return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
+}
