@@ -59,6 +59,14 @@ const results = await Promise.all([
   }),
   build({
     ...packaged,
+    platform: 'browser',
+    target: 'es2022',
+    format: 'iife',
+    entryPoints: { panel: 'client/panel/main.ts' },
+    outdir: 'client/dist',
+  }),
+  build({
+    ...packaged,
     ...withLazyUnits,
     entryPoints: ['server/src/entry/server.ts'],
     outfile: 'server/dist/server.cjs',

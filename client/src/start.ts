@@ -8,6 +8,7 @@ import {
   THEME_NOTIFICATION,
 } from '../../server/src/lsp/protocol';
 import { readWorkspaceFiles, watchLibraryFiles } from './library-files';
+import { PairPanel } from './panel';
 import { type ServerState, StatusView } from './status';
 import { currentThemeKind } from './theme';
 
@@ -31,10 +32,14 @@ export async function start(context: ExtensionContext, makeClient: MakeClient): 
     initializationOptions: () => ({ themeKind: currentThemeKind() }),
   });
   const status = new StatusView(SELECTOR);
+  const panel = new PairPanel(context, client);
   context.subscriptions.push(
     status,
     client.onDidChangeState(({ newState }) => status.serverIs(SERVER_STATES[newState])),
-    client.onNotification(STATUS_NOTIFICATION, (params: StatusParams) => status.update(params)),
+    client.onNotification(STATUS_NOTIFICATION, (params: StatusParams) => {
+      status.update(params);
+      panel.statusChanged(params);
+    }),
     client.onRequest(READ_FILES_REQUEST, readWorkspaceFiles),
     watchLibraryFiles(() => {
       if (client.isRunning()) void client.sendNotification(FILES_CHANGED_NOTIFICATION);

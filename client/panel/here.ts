@@ -1,0 +1,213 @@
+import { fixed } from '../../server/src/features/number-text';
+import type { ChosenPair, PlaceData } from '../../server/src/features/panel-place';
+import type { FragmentRecord } from '../../server/src/features/records';
+import { curveCsv, curveLegend, drawCurve } from './curve';
+import { button, html } from './dom';
+import type { Host } from './host';
+import type { PanelPair } from './messages';
+import { pairsCsv } from './pair-csv';
+import { PairTable } from './pair-table';
+import { standaloneSvg } from './save-svg';
+import {
+  ADVICE_WORDS,
+  adviceMark,
+  CONTACT_WORDS,
+  type Energies,
+  energyOf,
+  energyText,
+  multipleOfKT,
+  REGIME_WORDS,
+  signWord,
+} from './words';
+
+/** What the cursor is on: the pair in front, then the partners. */
+export class HereView {
+  readonly element = html('div', { class: 'here' });
+  readonly #host: Host;
+  readonly #pair = html('section', { 'aria-label': 'Chosen pair' });
+  readonly #partnersSection = html('section', { 'aria-label': 'Partners' });
+  readonly #partnersTitle = html('h2', {});
+  readonly #partners: PairTable;
+  #place: PlaceData | null = null;
+
+  constructor(host: Host) {
+    this.#host = host;
+    this.#partners = new PairTable({
+      label: 'Partners in order of what they matter',
+      choose: ({ first, second }) => {
+        if (this.#place !== null) host.tell({ kind: 'choose', pair: { frame: this.#place.frame, first, second } });
+      },
+    });
+    const copy = button('Copy partners as CSV', () =>
+      host.tell({ kind: 'copy', text: pairsCsv(this.#place?.partners ?? []), what: 'the partners' }),
+    );
+    const actions = html('div', { class: 'actions' }, copy);
+    this.#partnersSection.append(this.#partnersTitle, this.#partners.element, actions);
+    this.element.append(this.#pair, this.#partnersSection);
+  }
+
+  show(place: PlaceData, energies: Energies): void {
+    this.#place = place;
+    const { chosen, here, partners, partnerCount } = place;
+    this.#pair.replaceChildren(...(chosen === null ? this.#nothing(place) : this.#chosen(place, chosen, energies)));
+    const some =
+      partners.length < partnerCount ? ` (the first ${partners.length} of ${partnerCount})` : ` (${partnerCount})`;
+    this.#partnersTitle.textContent =
+      here === null ? `Strongest pairs of this frame${some}` : `Partners of ${here.title}${some}`;
+    this.#partnersSection.hidden = partners.length === 0;
+    const source = {
+      count: partners.length,
+      rows: (from: number, count: number) => partners.slice(from, from + count),
+    };
+    this.#partners.show(source, energies, here?.fragment.fragment ?? null, null);
+    if (chosen !== null) this.#partners.mark(chosen.pair.first, chosen.pair.second);
+  }
+
+  #nothing({ here, reason }: PlaceData): HTMLElement[] {
+    return [
+      html('h2', {}, here === null ? 'No pair' : here.title),
+      ...(here === null ? [] : [html('p', {}, fragmentWords(here.fragment))]),
+      html('p', { class: 'quiet' }, reason),
+    ];
+  }
+
+  #chosen({ frame, centre, isAsked }: PlaceData, chosen: ChosenPair, energies: Energies): HTMLElement[] {
+    const { titles, pair, picture, first, second } = chosen;
+    const numbers: PanelPair = { frame, first: pair.first, second: pair.second };
+    const image = html('img', {
+      src: `data:image/svg+xml;utf8,${encodeURIComponent(picture.svg)}`,
+      alt: picture.text,
+      class: 'pair-picture',
+    });
+    const actions = html('div', { class: 'actions' });
+    actions.append(
+      button('Write this pair as a file…', () => this.#host.tell({ kind: 'write', pair: numbers })),
+      button('Select its atoms', () => this.#host.tell({ kind: 'choose', pair: numbers })),
+    );
+    if (isAsked)
+      actions.append(button('Follow the cursor again', () => this.#host.tell({ kind: 'choose', pair: null })));
+    actions.append(
+      button('Save drawing as SVG…', () =>
+        this.#host.tell({ kind: 'save', text: `${picture.svg}\n`, name: `pair-${pair.first}-${pair.second}` }),
+      ),
+    );
+    return [
+      html('h2', {}, `${titles[0]} – ${titles[1]}`),
+      ...verdict(chosen, energies),
+      image,
+      ...this.#curve(chosen, energies),
+      actions,
+      html(
+        'details',
+        {},
+        html('summary', {}, 'Terms, angles and where the dipoles come from'),
+        termTable(chosen, energies),
+        html('p', {}, `${titles[0]}: ${fragmentWords(first)}`),
+        html('p', {}, `${titles[1]}: ${fragmentWords(second)}`),
+        html('p', { class: 'quiet' }, `Dipoles point from negative to positive charge, about the centre of ${centre}.`),
+      ),
+      html('p', { class: 'quiet' }, 'Estimate for triage, not a substitute for a quantum calculation.'),
+    ];
+  }
+
+  #curve(chosen: ChosenPair, energies: Energies): HTMLElement[] {
+    const { curve, pair } = chosen;
+    if (curve === null) {
+      return [
+        html('p', { class: 'quiet' }, 'No curve: the energy of this pair is not known, or one lies within the other.'),
+      ];
+    }
+    const picture = drawCurve(chosen, energies);
+    const name = `curve-${pair.first}-${pair.second}`;
+    const figure = html('figure', {}, picture, html('figcaption', {}, curveLegend()));
+    const actions = html('div', { class: 'actions' });
+    actions.append(
+      button('Save curve as SVG…', () => this.#host.tell({ kind: 'save', text: standaloneSvg(picture), name })),
+      button('Copy curve as CSV', () => this.#host.tell({ kind: 'copy', text: curveCsv(curve), what: 'the curve' })),
+    );
+    figure.append(actions);
+    return [figure];
+  }
+}
+
+/** What to know at a glance: the advice, how strong, and whether to trust it. */
+function verdict({ pair, strengthKJPerMol }: ChosenPair, energies: Energies): HTMLElement[] {
+  const { advice, regime, contact, distanceA, closest } = pair;
+  const energy = energyOf(pair);
+  const head = html('p', { class: `verdict ${advice ?? 'none'}` });
+  head.append(
+    html('strong', {}, `${adviceMark(advice)} ${advice ?? 'one molecule'}`),
+    ` – ${advice === null ? 'the two are parts of one molecule' : ADVICE_WORDS[advice]}`,
+  );
+  const error = plusMinus(pair.dipoleUncertaintyKJPerMol, pair.doubtKJPerMol);
+  const size =
+    energy === null
+      ? 'The energy is not known.'
+      : `${signWord(energy)[0]!.toUpperCase()}${signWord(energy).slice(1)}, ${energyText(energies, energy)}${
+          error === null ? '' : ` ± ${energyText(energies, error)}`
+        }; it matters as ${multipleOfKT(energies, strengthKJPerMol)}.`;
+  const trust = regime === null ? 'Nothing to judge the point dipole by' : `${regime}: ${REGIME_WORDS[regime]}`;
+  const near = closest.distanceA === null ? '' : `, closest atoms ${fixed(closest.distanceA, 2)} Å`;
+  const rotation = rotationWords(pair, energies);
+  return [
+    head,
+    html('p', {}, size),
+    html('p', {}, `${trust}; R ${fixed(distanceA, 2)} Å, ${CONTACT_WORDS[contact]}${near}.`),
+    ...(rotation === '' ? [] : [html('p', {}, rotation)]),
+  ];
+}
+
+function plusMinus(dipoles: number | null, doubt: number | null): number | null {
+  const both = Math.hypot(dipoles ?? 0, doubt ?? 0);
+  return both > 0 ? both : null;
+}
+
+function rotationWords({ thermal }: ChosenPair['pair'], energies: Energies): string {
+  const { averageKJPerMol, motion } = thermal;
+  if (averageKJPerMol === null || motion === null) return '';
+  const words = {
+    free: 'thermal rotation would average it away',
+    hindered: 'rotation would be hindered',
+    locked: 'the orientation would be locked',
+  };
+  return `If both could turn freely: ${energyText(energies, averageKJPerMol)} on average; ${words[motion]}.`;
+}
+
+function fragmentWords({
+  chargeE,
+  chargeSource,
+  dipoleNormD,
+  dipoleErrorD,
+  dipoleSource,
+  dipoleNote,
+}: FragmentRecord): string {
+  const error = dipoleErrorD === null ? '' : ` ± ${fixed(dipoleErrorD, 2)}`;
+  const dipole =
+    dipoleNormD === null ? 'dipole unknown' : `dipole ${fixed(dipoleNormD, 2)}${error} D (${dipoleSource})`;
+  return `charge ${fixed(chargeE, 2)} e (${chargeSource}), ${dipole}${dipoleNote === null ? '' : `; ${dipoleNote}`}`;
+}
+
+const TERMS = [
+  ['chargeCharge', 'charge – charge'],
+  ['chargeDipole', 'charge – dipole'],
+  ['dipoleDipole', 'dipole – dipole'],
+  ['pointDipole', 'point dipole, sum of these'],
+  ['induction', 'induction (in neither)'],
+  ['dispersion', 'dispersion (in neither)'],
+] as const;
+
+/** What the numbers are made of. */
+function termTable({ pair }: ChosenPair, energies: Energies): HTMLTableElement {
+  const row = (name: string, value: string) =>
+    html('tr', {}, html('th', { scope: 'row' }, name), html('td', {}, value));
+  const angle = (value: number | null) => (value === null ? '–' : `${fixed(value, 0)}°`);
+  const rows = [
+    row('θ₁, θ₂, φ', [pair.theta1Deg, pair.theta2Deg, pair.phiDeg].map(angle).join(', ')),
+    row('arrangement', pair.arrangement ?? '–'),
+    ...TERMS.map(([term, name]) => row(name, energyText(energies, pair.energyKJPerMol[term]))),
+    row(`reference (${pair.basis})`, energyText(energies, pair.referenceKJPerMol)),
+    row('error of the point dipole', energyText(energies, pair.errorKJPerMol)),
+    row('point dipole holds from', pair.validBeyondA === null ? '–' : `${fixed(pair.validBeyondA, 2)} Å`),
+  ];
+  return html('table', { class: 'terms' }, html('tbody', {}, ...rows));
+}

@@ -1,0 +1,74 @@
+import type { Advice } from '../../server/src/analysis/advice';
+import type { Contact } from '../../server/src/analysis/contact';
+import type { Regime } from '../../server/src/analysis/reference';
+import { fixed } from '../../server/src/features/number-text';
+import type { PairRecord } from '../../server/src/features/records';
+import type { PanelAnswer } from '../../server/src/lsp/protocol';
+
+/** How energies are written. */
+export type Energies = Pick<PanelAnswer, 'unit' | 'unitsPerKJPerMol' | 'kTKJPerMol'>;
+
+const MARKS: Readonly<Record<Advice, string>> = { accept: '○', review: '◐', compute: '●', repair: '✕' };
+
+/** A mark beside the word, so that a column can be read without colour. */
+export function adviceMark(advice: Advice | null): string {
+  return advice === null ? '–' : MARKS[advice];
+}
+
+export const ADVICE_WORDS: Readonly<Record<Advice, string>> = {
+  accept: 'the estimate may be used',
+  review: 'look at it before you decide',
+  compute: 'worth a quantum calculation',
+  repair: 'mend the input first',
+};
+
+export const REGIME_WORDS: Readonly<Record<Regime, string>> = {
+  far: 'the point dipole holds',
+  edge: 'the point dipole is at its edge',
+  near: 'the point dipole does not hold',
+};
+
+export const CONTACT_WORDS: Readonly<Record<Contact, string>> = {
+  apart: 'apart',
+  touching: 'touching',
+  clash: 'clash',
+  bonded: 'bonded',
+};
+
+/** Decimals that show an energy of about this size to a hundredth of kT or so. */
+function decimals({ unitsPerKJPerMol, kTKJPerMol }: Energies): number {
+  const thermal = unitsPerKJPerMol * kTKJPerMol;
+  return Math.max(0, Math.min(4, 2 - Math.floor(Math.log10(thermal) + 1e-9)));
+}
+
+/** An energy without its unit. */
+export function energyNumber(energies: Energies, energyKJPerMol: number | null): string {
+  const { unitsPerKJPerMol } = energies;
+  return fixed(energyKJPerMol === null ? null : energyKJPerMol * unitsPerKJPerMol, decimals(energies));
+}
+
+/** An energy with its unit. */
+export function energyText(energies: Energies, energyKJPerMol: number | null): string {
+  return `${energyNumber(energies, energyKJPerMol)} ${energies.unit === 'cm-1' ? 'cm⁻¹' : energies.unit}`;
+}
+
+export function multipleOfKT({ kTKJPerMol }: Energies, energyKJPerMol: number): string {
+  return `${fixed(Math.abs(energyKJPerMol) / kTKJPerMol, 1)} kT`;
+}
+
+export function energyOf(pair: PairRecord): number | null {
+  return pair.referenceKJPerMol ?? pair.energyKJPerMol.pointDipole;
+}
+
+export function signWord(energyKJPerMol: number): string {
+  return energyKJPerMol < 0 ? 'attractive' : energyKJPerMol > 0 ? 'repulsive' : 'neither attractive nor repulsive';
+}
+
+/** Rows as CSV (RFC 4180), numbers with a plain minus sign. */
+export function csv(rows: readonly (readonly (string | number | null)[])[]): string {
+  const cell = (value: string | number | null) => {
+    const text = value === null ? '' : String(value);
+    return /[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text;
+  };
+  return rows.map((row) => `${row.map(cell).join(',')}\n`).join('');
+}
