@@ -56,7 +56,7 @@ async function passes(context: TestContext, script: string): Promise<void> {
 
 describe.sequential('the packaged extension in a real editor', () => {
   test('inside the extension host', { timeout: LIMIT, retry: RETRIES }, (context) => passes(context, 'host.mjs'));
-  test('as a person uses it, in light and dark', { timeout: LIMIT, retry: RETRIES }, (context) =>
+  test('as a person uses it, in every theme', { timeout: LIMIT, retry: RETRIES }, (context) =>
     passes(context, 'person.mjs'),
   );
 });

@@ -1,7 +1,17 @@
 // The rig: VS Code's own server and a headless Chromium, in a folder outside the repository, made once and used again.
 // `node tests/editor/rig.mjs` makes it and says where it is.
 import { execFile, spawn } from 'node:child_process';
-import { accessSync, constants, cpSync, existsSync, mkdirSync, readFileSync, rmSync, symlinkSync } from 'node:fs';
+import {
+  accessSync,
+  constants,
+  cpSync,
+  existsSync,
+  mkdirSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  symlinkSync,
+} from 'node:fs';
 import { mkdtemp, rename, rm, writeFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
 import { createServer } from 'node:net';
@@ -162,11 +172,17 @@ export async function freshPlace(settings = calmSettings()) {
     extensions: join(folder, 'extensions'),
     vsix: join(folder, 'polewise.vsix'),
     setSettings: (changed) => writeFile(join(folder, 'user/User/settings.json'), JSON.stringify(changed, null, 2)),
+    /** The samples as they are in the repository, and nothing beside them. */
+    restoreSamples: async () => {
+      for (const name of readdirSync(place.samples)) await rm(join(place.samples, name), { recursive: true });
+      cpSync(join(ROOT, 'samples'), place.samples, { recursive: true });
+    },
     remove: () => rm(folder, { recursive: true, force: true, maxRetries: 5, retryDelay: 200 }),
   };
   mkdirSync(join(place.user, 'User'), { recursive: true });
   mkdirSync(place.extensions);
-  cpSync(join(ROOT, 'samples'), place.samples, { recursive: true });
+  mkdirSync(place.samples);
+  await place.restoreSamples();
   await place.setSettings(settings);
   return place;
 }
@@ -223,6 +239,8 @@ export async function startServer(rig, folders) {
   const args = [
     ...serverArguments(rig, folders),
     ...['--host', '127.0.0.1', '--port', String(port), '--without-connection-token', '--telemetry-level', 'off'],
+    // A window that is closed does not come back: its extension host is to end.
+    ...['--reconnection-grace-time', '1'],
   ];
   // Its own process group: the extension host and the language server under it end with it.
   const server = spawn(process.execPath, args, {

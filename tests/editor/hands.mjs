@@ -1,0 +1,117 @@
+// What a person does and sees in the editor; the flows are written in these.
+import { ok } from 'node:assert/strict';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+
+/** Where the screenshots go. */
+export const SHOTS = process.env.POLEWISE_SHOTS || join(tmpdir(), 'polewise-shots');
+export const WAIT = 30_000;
+
+/** Text as it reads on the screen, without the spaces that must not break. */
+export const words = (text) => text.replaceAll('\u00a0', ' ').replaceAll('−', '-').replace(/\s+/g, ' ').trim();
+
+/** The hands and eyes of someone at the editor. Screenshots are named by theme, flow and order. */
+export class Person {
+  #shots = 0;
+
+  /**
+   * @param page the workbench
+   * @param place the folders of the run: `place.samples` is the one that is open
+   * @param names theme and flow
+   */
+  constructor(page, place, { theme, flow }) {
+    this.page = page;
+    this.place = place;
+    this.theme = theme;
+    this.flow = flow;
+  }
+
+  async shot(name) {
+    // Hovers fade in.
+    await this.page.waitForTimeout(400);
+    const file = `${this.theme}-${this.flow}-${String(++this.#shots).padStart(2, '0')}-${name}.png`;
+    await this.page.screenshot({ path: join(SHOTS, file) });
+  }
+
+  /** As at the start: no editor, no panel, the samples as they were. */
+  async tidyUp() {
+    await this.see('.explorer-folders-view .monaco-list-row');
+    for (const _ of [1, 2]) await this.page.keyboard.press('Escape');
+    if ((await this.page.locator('.tab').count()) > 0) {
+      await this.command('View: Close All Editors');
+      const keepNothing = this.page.locator('.monaco-dialog-box .monaco-button', { hasText: "Don't Save" });
+      const closed = this.page.locator('.tab').first().waitFor({ state: 'detached', timeout: WAIT });
+      await Promise.race([keepNothing.waitFor({ timeout: WAIT }).catch(() => {}), closed]);
+      if (await keepNothing.isVisible()) await keepNothing.click();
+      await closed;
+    }
+    if (await this.page.locator('.part.panel').isVisible()) await this.command('View: Hide Panel');
+    await this.page.mouse.move(640, 790);
+    await this.place.restoreSamples();
+  }
+
+  async see(selector, text) {
+    const all = this.page.locator(selector, text === undefined ? {} : { hasText: text });
+    await all.first().waitFor({ timeout: WAIT });
+    return all.first();
+  }
+
+  async openFile(name) {
+    const row = await this.see('.explorer-folders-view .monaco-list-row', name);
+    await row.dblclick();
+    await this.see('.tab.active', name);
+    await this.see('.monaco-editor .view-line');
+  }
+
+  async goTo(line, column) {
+    await this.page.keyboard.press('Control+g');
+    const input = await this.see('.quick-input-widget input.input');
+    await input.fill(`:${line}:${column}`);
+    await this.page.keyboard.press('Enter');
+    await this.page.locator('.quick-input-widget').waitFor({ state: 'hidden', timeout: WAIT });
+  }
+
+  /** Goes to a place and asks what it is; gives the words of the hover. */
+  async hoverAt(line, column, expected) {
+    await this.page.keyboard.press('Escape');
+    await this.goTo(line, column);
+    await this.page.keyboard.press('Control+k');
+    await this.page.keyboard.press('Control+i');
+    const row = await this.see('.monaco-hover:not(.hidden) .hover-row', expected);
+    return words(await row.textContent());
+  }
+
+  /** Scrolls the hover down to its picture, which has to be drawn and to say in words what it shows. */
+  async picture() {
+    const image = await this.see('.monaco-hover:not(.hidden) .hover-row img');
+    ok(await image.evaluate((img) => img.complete && img.naturalWidth > 0), 'the picture is drawn');
+    ok(((await image.getAttribute('alt')) ?? '') !== '', 'the picture has a text');
+    await image.hover();
+    // One turn of the wheel moves the hover by one notch, whatever its size.
+    for (let turn = 0; turn < 12; turn++) await this.page.mouse.wheel(0, 200);
+  }
+
+  /** The rows of the problems panel. */
+  async problems(expected) {
+    await this.page.keyboard.press('Control+Shift+m');
+    await this.see('.markers-panel .monaco-list-row', expected);
+    return (await this.page.locator('.markers-panel .monaco-list-row').allTextContents()).map(words);
+  }
+
+  /** Waits until nothing is found there any more. */
+  async gone(selector, text) {
+    const all = this.page.locator(selector, text === undefined ? {} : { hasText: text });
+    await all.first().waitFor({ state: 'hidden', timeout: WAIT });
+  }
+
+  /** Runs a command by its title. */
+  async command(title) {
+    await this.page.keyboard.press('F1');
+    const input = await this.see('.quick-input-widget input.input');
+    await input.fill(`>${title}`);
+    await this.see('.quick-input-widget .monaco-list-row', title);
+    // The list is filtered once more after it is shown.
+    await this.page.waitForTimeout(300);
+    await this.page.keyboard.press('Enter');
+  }
+}
