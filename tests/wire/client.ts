@@ -40,6 +40,8 @@ export interface ClientOptions {
   /** Whether the client asks for diagnostics itself (default true). */
   readonly pull?: boolean;
   readonly settings?: unknown;
+  /** What else the client says that it can do. */
+  readonly abilities?: Pick<ClientCapabilities, 'textDocument' | 'workspace'>;
   /** Texts of the files of the workspace by name. */
   readonly files?: Readonly<Record<string, string>>;
   /** The server's program (default: the built server). */
@@ -90,11 +92,11 @@ export class WireClient {
   }
 
   static async start(options: ClientOptions = {}): Promise<WireClient> {
-    const { pull = true } = options;
+    const { pull = true, abilities = {} } = options;
     const client = new WireClient(options);
     const capabilities: ClientCapabilities = {
-      workspace: { configuration: true, diagnostics: { refreshSupport: true } },
-      textDocument: pull ? { diagnostic: {} } : {},
+      workspace: { configuration: true, diagnostics: { refreshSupport: true }, ...abilities.workspace },
+      textDocument: { ...(pull ? { diagnostic: {} } : {}), ...abilities.textDocument },
     };
     client.initialized = await client.connection.sendRequest(InitializeRequest.type, {
       processId: process.pid,

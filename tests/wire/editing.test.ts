@@ -3,6 +3,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
   type CodeAction,
   CodeActionRequest,
+  CodeActionResolveRequest,
   type CompletionItem,
   CompletionRequest,
   type Diagnostic,
@@ -10,6 +11,7 @@ import {
   DocumentSymbolRequest,
   FoldingRangeRequest,
   InlayHintRequest,
+  LSPErrorCodes,
   type Range,
   type TextDocumentEdit,
 } from 'vscode-languageserver-protocol';
@@ -108,6 +110,45 @@ describe('remedies', () => {
 
   it('of a closed document are none', async () => {
     expect(await actions('file:///never/opened.xyz', whole(WRONG), [])).toEqual([]);
+  });
+});
+
+describe('remedies for an editor that asks for edits later', () => {
+  const WRONG = '5\n\nO 0 0 0.1173\nH 0 0.7572 -0.4692\nH 0 -0.7572 -0.4692\n';
+  let own: WireClient;
+  const LAZY = { textDocument: { codeAction: { dataSupport: true, resolveSupport: { properties: ['edit'] } } } };
+
+  beforeAll(async () => {
+    own = await WireClient.start({ abilities: LAZY });
+  });
+  afterAll(async () => {
+    await own.stop();
+  });
+
+  const offered = (uri: string, only?: string[]) =>
+    own.connection.sendRequest(CodeActionRequest.type, {
+      textDocument: { uri },
+      range: whole(WRONG),
+      context: { diagnostics: [], ...(only === undefined ? {} : { only }) },
+    }) as Promise<CodeAction[]>;
+  const resolved = (action: CodeAction) => own.connection.sendRequest(CodeActionResolveRequest.type, action);
+
+  it.each([['quickfix'], ['source.fixAll']])('come without them and get them when chosen: %s', async (kind) => {
+    const uri = `file:///lazy/${kind}.xyz`;
+    own.open(uri, WRONG);
+    const [action] = await offered(uri, [kind]);
+    expect(action!.edit).toBeUndefined();
+    expect(applied(WRONG, await resolved(action!))).toBe(WRONG.replace('5', '3'));
+  });
+
+  it('get none for a text that is another by now', async () => {
+    const uri = 'file:///lazy/changed.xyz';
+    own.open(uri, WRONG);
+    const [action] = await offered(uri);
+    own.change(uri, 2, [{ text: `${WRONG}\n` }]);
+    await expect(resolved(action!)).rejects.toMatchObject({ code: LSPErrorCodes.ContentModified });
+    own.close(uri);
+    await expect(resolved(action!)).rejects.toMatchObject({ code: LSPErrorCodes.ContentModified });
   });
 });
 

@@ -1,23 +1,34 @@
-import { CodeActionKind, type ServerCapabilities } from 'vscode-languageserver';
-import { codeActionsAt, FIX_ALL_KIND } from './code-actions';
+import { LSPErrorCodes, ResponseError, type ServerCapabilities } from 'vscode-languageserver';
+import { ACTION_KINDS } from '../features/actions';
+import { codeActionsAt, resolvedEdit, uriOfAction } from './code-actions';
 import { completionItemsAt } from './completion';
 import type { Session } from './session';
 import { offsetOf } from './text-store';
 
 export const EDITING_CAPABILITIES: ServerCapabilities = {
-  codeActionProvider: { codeActionKinds: [CodeActionKind.QuickFix, FIX_ALL_KIND] },
+  codeActionProvider: { codeActionKinds: [...ACTION_KINDS], resolveProvider: true },
   completionProvider: { triggerCharacters: ['=', ' ', '_'] },
 };
 
 /** Answers what a writer asks: remedies and completion. */
-export function serveEditing({ connection, workspace }: Session): void {
+export function serveEditing(session: Session): void {
+  const { connection, workspace } = session;
   connection.onCodeAction(async ({ textDocument: { uri }, range, context: { diagnostics, only } }, token) => {
     const analysed = await workspace.analysed(uri);
     if (analysed === null || token.isCancellationRequested) return [];
     const { document } = analysed;
     const start = offsetOf(document, range.start);
     const span = { start, end: Math.max(start, offsetOf(document, range.end)) };
-    return codeActionsAt(analysed, span, diagnostics, only);
+    return codeActionsAt(analysed, { span, diagnostics, only, isLazy: session.client.lazyEdits });
+  });
+
+  connection.onCodeActionResolve(async (action) => {
+    const uri = uriOfAction(action);
+    if (uri === null) return action;
+    const analysed = await workspace.analysed(uri);
+    const edit = analysed === null ? null : resolvedEdit(analysed, action);
+    if (edit !== null) return { ...action, edit };
+    throw new ResponseError(LSPErrorCodes.ContentModified, 'The text has changed since this was offered.');
   });
 
   // Completion needs the text alone: it does not wait for any analysis.

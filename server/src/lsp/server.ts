@@ -20,16 +20,10 @@ import {
   type ThemeKind,
 } from './protocol';
 import { READING_CAPABILITIES, serveReading } from './reading';
-import type { Platform } from './session';
+import { abilitiesOf, NO_ABILITIES, type Platform } from './session';
 import { type LibraryFile, libraryFileNames, readSettings, SettingsStore } from './settings';
 import { busyStatus, failedStatus, readyStatus } from './status';
 import { Workspace } from './workspace';
-
-interface ClientAbilities {
-  configuration: boolean;
-  pull: boolean;
-  refresh: boolean;
-}
 
 const THEMES: readonly ThemeKind[] = ['light', 'dark', 'high-contrast'];
 
@@ -41,7 +35,7 @@ function themeOf(params: unknown): ThemeKind | null {
 
 /** Serves one connection: documents, findings, hovers, settings, status. */
 export function startServer(connection: Connection, platform: Platform): void {
-  const client: ClientAbilities = { configuration: false, pull: false, refresh: false };
+  let client = NO_ABILITIES;
   let pushed: unknown = {};
   let theme: ThemeKind | null = null;
 
@@ -75,9 +69,7 @@ export function startServer(connection: Connection, platform: Platform): void {
 
   connection.onInitialize(({ capabilities, initializationOptions }) => {
     theme = themeOf(initializationOptions);
-    client.configuration = capabilities.workspace?.configuration === true;
-    client.pull = capabilities.textDocument?.diagnostic !== undefined;
-    client.refresh = capabilities.workspace?.diagnostics?.refreshSupport === true;
+    client = abilitiesOf(capabilities);
     return {
       capabilities: {
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
@@ -136,6 +128,9 @@ export function startServer(connection: Connection, platform: Platform): void {
     connection,
     platform,
     workspace,
+    get client() {
+      return client;
+    },
     get theme() {
       return theme;
     },

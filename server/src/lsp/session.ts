@@ -1,4 +1,4 @@
-import type { Connection } from 'vscode-languageserver';
+import type { ClientCapabilities, Connection } from 'vscode-languageserver';
 import type { Clock } from './pace';
 import type { ThemeKind } from './protocol';
 import type { Workspace } from './workspace';
@@ -11,11 +11,36 @@ export interface Platform {
   base64(text: string): string;
 }
 
+/** What the editor at the other end can do. */
+export interface ClientAbilities {
+  /** Answers what settings it has. */
+  readonly configuration: boolean;
+  /** Asks for findings, rather than being sent them. */
+  readonly pull: boolean;
+  /** Asks for findings again where it is told to. */
+  readonly refresh: boolean;
+  /** Asks for the edits of an action later. */
+  readonly lazyEdits: boolean;
+}
+
+export const NO_ABILITIES: ClientAbilities = { configuration: false, pull: false, refresh: false, lazyEdits: false };
+
+export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): ClientAbilities {
+  const { codeAction } = textDocument ?? {};
+  return {
+    configuration: workspace?.configuration === true,
+    pull: textDocument?.diagnostic !== undefined,
+    refresh: workspace?.diagnostics?.refreshSupport === true,
+    lazyEdits: codeAction?.dataSupport === true && codeAction.resolveSupport?.properties.includes('edit') === true,
+  };
+}
+
 /** What every group of requests is answered with. */
 export interface Session {
   readonly connection: Connection;
   readonly platform: Platform;
   readonly workspace: Workspace;
+  readonly client: ClientAbilities;
   /** The kind of theme that the editor shows, where it told. */
   readonly theme: ThemeKind | null;
 }
