@@ -52,6 +52,9 @@ export interface PairPlace extends PairNumbers {
 
 /** A place of a document, from 0. */
 export interface Place {
+
+/** A place in a document, as the standard protocol counts: from 0, in UTF-16 units. */
+export interface TextPlace {
   readonly line: number;
   readonly character: number;
 }
@@ -143,4 +146,51 @@ export interface FragmentLinesParams extends PanelFrameParams {
 export interface FragmentLines {
   readonly version: number;
   readonly runs: readonly { readonly firstLine: number; readonly lastLine: number }[];
+
+/** A change of documents in the shape of the standard protocol's workspace edit, which an editor takes as it is. */
+export interface DocumentEdit {
+  readonly documentChanges: readonly {
+    readonly textDocument: { readonly uri: string; readonly version: number };
+    readonly edits: readonly {
+      readonly range: { readonly start: TextPlace; readonly end: TextPlace };
+      readonly newText: string;
+    }[];
+  }[];
+}
+
+/** A change that was asked for, or the sentence that says why there is none. */
+export interface EditAnswer {
+  readonly edit: DocumentEdit | null;
+  readonly reason: string | null;
+}
+
+/** A line of a document, from 0; what is asked for concerns the frame that holds it. */
+export interface LineParams {
+  readonly uri: string;
+  readonly line: number;
+}
+
+/** Asks for the edit that annotates a frame with all keys it lacks; answered with {@link EditAnswer}. */
+export const INSERT_HEADER_REQUEST = 'polewise/insertHeader';
+
+/** Asks for the edit that writes down the dipoles which the frame does not give itself; answered with {@link EditAnswer}. */
+export const ADD_DIPOLES_REQUEST = 'polewise/addDipoles';
+
+/** Asks for the edit that sets temperature or medium for a frame (XYZ) or file (PDB); answered with {@link EditAnswer}. */
+export const SET_FILE_SETTING_REQUEST = 'polewise/setFileSetting';
+
+export interface FileSettingParams extends LineParams {
+  readonly key: 'temperature' | 'relative_permittivity';
+  /** As it is to stand in the file: `310`, `25 degC`, `4.0`, `water`. */
+  readonly value: string;
+}
+
+/** Command of the editor that writes pairs as dimer files; its argument is a {@link DimerPairs}. */
+export const WRITE_DIMERS_COMMAND = 'polewise.writeDimers';
+
+/** Pairs of one frame; frame and fragments counted from 1. */
+export interface DimerPairs {
+  readonly uri: string;
+  readonly frame: number;
+  readonly pairs: readonly (readonly [first: number, second: number])[];
 }
