@@ -50,15 +50,6 @@ export interface PairPlace extends PairNumbers {
   readonly frame: number;
 }
 
-/** A place of a document, from 0. */
-export interface Place {
-
-/** A place in a document, as the standard protocol counts: from 0, in UTF-16 units. */
-export interface TextPlace {
-  readonly line: number;
-  readonly character: number;
-}
-
 /** What every answer to the panel carries: of which version of the text it speaks, and how energies are to be written. */
 export interface PanelAnswer {
   readonly version: number;
@@ -72,7 +63,7 @@ export const PANEL_PLACE_REQUEST = 'polewise/panelPlace';
 
 export interface PanelPlaceParams {
   readonly uri: string;
-  readonly position: Place;
+  readonly position: TextPlace;
   /** A pair that was chosen; shown as long as the cursor is on one of its fragments, or on none. */
   readonly pair: ({ readonly frame: number } & PairNumbers) | null;
 }
@@ -146,6 +137,13 @@ export interface FragmentLinesParams extends PanelFrameParams {
 export interface FragmentLines {
   readonly version: number;
   readonly runs: readonly { readonly firstLine: number; readonly lastLine: number }[];
+}
+
+/** A place in a document, as the standard protocol counts: from 0, in UTF-16 units. */
+export interface TextPlace {
+  readonly line: number;
+  readonly character: number;
+}
 
 /** A change of documents in the shape of the standard protocol's workspace edit, which an editor takes as it is. */
 export interface DocumentEdit {
