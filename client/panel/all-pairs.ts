@@ -5,6 +5,7 @@ import { button, html } from './dom';
 import type { Host } from './host';
 import { pairsCsv } from './pair-csv';
 import { PairTable } from './pair-table';
+import { tableWords } from './words';
 
 const ADVICE: readonly Advice[] = ['compute', 'review', 'accept', 'repair'];
 /** Words and codes are read from A to Z; sizes from the largest. */
@@ -80,7 +81,8 @@ export class AllPairsView {
 
   #show(first: PanelRows, round: number): void {
     const { matching, pairs, reason } = first;
-    this.#note.textContent = reason ?? (matching === pairs ? `${pairs} pairs` : `${matching} of ${pairs} pairs`);
+    this.#note.textContent =
+      reason ?? `${matching === pairs ? pairs : `${matching} of ${pairs}`} pairs. ${tableWords(first)}`;
     this.#table.element.hidden = reason !== null;
     const rows = (from: number, count: number): readonly PairRow[] | Promise<readonly PairRow[]> =>
       from === 0

@@ -59,7 +59,7 @@ export function axes(frame: Frame, x: Scale, y: Scale, xName: string, yName: str
   group.append(
     svg('path', { d: `M${left} ${top}V${bottom}H${right}`, fill: 'none' }),
     svg('text', { x: right, y: bottom + 30, 'text-anchor': 'end' }, xName),
-    svg('text', { x: left - 44, y: top - 8, 'text-anchor': 'start' }, yName),
+    svg('text', { x: 2, y: 12, 'text-anchor': 'start' }, yName),
   );
   return group;
 }

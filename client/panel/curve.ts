@@ -3,11 +3,11 @@ import type { ChosenPair } from '../../server/src/features/panel-place';
 import type { CurvePoint, SeparationCurve } from '../../server/src/features/separation-curve';
 import { axes, type Frame, pathThrough, type Scale, scale } from './axes';
 import { html, svg } from './dom';
-import { csv, type Energies, energyText } from './words';
+import { csv, type Energies, energyText, unitText } from './words';
 
-const WIDTH = 540;
+const WIDTH = 470;
 const HEIGHT = 280;
-const FRAME: Frame = { left: 58, right: 528, top: 44, bottom: 240 };
+const FRAME: Frame = { left: 46, right: 460, top: 42, bottom: 238 };
 /** Room above and below what has to be seen, and of the thermal band. */
 const HEADROOM = 1.15;
 const LEAST_KT = 1.6;
@@ -54,7 +54,7 @@ export function drawCurve({ curve, titles }: ChosenPair, energies: Energies): SV
     clip,
     inside,
     ...stretchNames(points, x),
-    axes(FRAME, x, inUnits(y, energies), 'separation of the centres / Å', `energy / ${energies.unit}`),
+    axes(FRAME, x, inUnits(y, energies), 'separation of the centres / Å', `energy / ${unitText(energies)}`),
     svg('text', { class: 'quiet', x: right - 4, y: y(kT) - 4, 'text-anchor': 'end' }, '±kT'),
     upright(x(presentA), 'present', `now ${fixed(presentA, 2)} Å`, x),
   );

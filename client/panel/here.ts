@@ -13,11 +13,14 @@ import {
   adviceMark,
   CONTACT_WORDS,
   type Energies,
+  energyNumber,
   energyOf,
   energyText,
   multipleOfKT,
   REGIME_WORDS,
   signWord,
+  tableWords,
+  unitText,
 } from './words';
 
 /** What the cursor is on: the pair in front, then the partners. */
@@ -27,6 +30,7 @@ export class HereView {
   readonly #pair = html('section', { 'aria-label': 'Chosen pair' });
   readonly #partnersSection = html('section', { 'aria-label': 'Partners' });
   readonly #partnersTitle = html('h2', {});
+  readonly #partnersUnit = html('p', { class: 'quiet' });
   readonly #partners: PairTable;
   #place: PlaceData | null = null;
 
@@ -42,7 +46,7 @@ export class HereView {
       host.tell({ kind: 'copy', text: pairsCsv(this.#place?.partners ?? []), what: 'the partners' }),
     );
     const actions = html('div', { class: 'actions' }, copy);
-    this.#partnersSection.append(this.#partnersTitle, this.#partners.element, actions);
+    this.#partnersSection.append(this.#partnersTitle, this.#partnersUnit, this.#partners.element, actions);
     this.element.append(this.#pair, this.#partnersSection);
   }
 
@@ -50,10 +54,10 @@ export class HereView {
     this.#place = place;
     const { chosen, here, partners, partnerCount } = place;
     this.#pair.replaceChildren(...(chosen === null ? this.#nothing(place) : this.#chosen(place, chosen, energies)));
-    const some =
-      partners.length < partnerCount ? ` (the first ${partners.length} of ${partnerCount})` : ` (${partnerCount})`;
+    const some = partners.length < partnerCount ? `the first ${partners.length} of ${partnerCount}` : `${partnerCount}`;
     this.#partnersTitle.textContent =
-      here === null ? `Strongest pairs of this frame${some}` : `Partners of ${here.title}${some}`;
+      here === null ? `Strongest pairs of this frame: ${some}` : `Partners of ${here.title}: ${some}`;
+    this.#partnersUnit.textContent = tableWords(energies);
     this.#partnersSection.hidden = partners.length === 0;
     const source = {
       count: partners.length,
@@ -71,7 +75,11 @@ export class HereView {
     ];
   }
 
-  #chosen({ frame, centre, isAsked }: PlaceData, chosen: ChosenPair, energies: Energies): HTMLElement[] {
+  #chosen(
+    { frame, centre, isAsked, relativePermittivity }: PlaceData,
+    chosen: ChosenPair,
+    energies: Energies,
+  ): HTMLElement[] {
     const { titles, pair, picture, first, second } = chosen;
     const numbers: PanelPair = { frame, first: pair.first, second: pair.second };
     const image = html('img', {
@@ -86,17 +94,12 @@ export class HereView {
     );
     if (isAsked)
       actions.append(button('Follow the cursor again', () => this.#host.tell({ kind: 'choose', pair: null })));
-    actions.append(
-      button('Save drawing as SVG…', () =>
-        this.#host.tell({ kind: 'save', text: `${picture.svg}\n`, name: `pair-${pair.first}-${pair.second}` }),
-      ),
-    );
     return [
       html('h2', {}, `${titles[0]} – ${titles[1]}`),
-      ...verdict(chosen, energies),
+      ...verdict(chosen, relativePermittivity, energies),
+      actions,
       image,
       ...this.#curve(chosen, energies),
-      actions,
       html(
         'details',
         {},
@@ -119,9 +122,15 @@ export class HereView {
     }
     const picture = drawCurve(chosen, energies);
     const name = `curve-${pair.first}-${pair.second}`;
+    const drawing = {
+      kind: 'save',
+      text: `${chosen.picture.svg}\n`,
+      name: `pair-${pair.first}-${pair.second}`,
+    } as const;
     const figure = html('figure', {}, picture, html('figcaption', {}, curveLegend()));
     const actions = html('div', { class: 'actions' });
     actions.append(
+      button('Save drawing as SVG…', () => this.#host.tell(drawing)),
       button('Save curve as SVG…', () => this.#host.tell({ kind: 'save', text: standaloneSvg(picture), name })),
       button('Copy curve as CSV', () => this.#host.tell({ kind: 'copy', text: curveCsv(curve), what: 'the curve' })),
     );
@@ -131,7 +140,11 @@ export class HereView {
 }
 
 /** What to know at a glance: the advice, how strong, and whether to trust it. */
-function verdict({ pair, strengthKJPerMol }: ChosenPair, energies: Energies): HTMLElement[] {
+function verdict(
+  { pair, strengthKJPerMol }: ChosenPair,
+  relativePermittivity: number,
+  energies: Energies,
+): HTMLElement[] {
   const { advice, regime, contact, distanceA, closest } = pair;
   const energy = energyOf(pair);
   const head = html('p', { class: `verdict ${advice ?? 'none'}` });
@@ -139,13 +152,9 @@ function verdict({ pair, strengthKJPerMol }: ChosenPair, energies: Energies): HT
     html('strong', {}, `${adviceMark(advice)} ${advice ?? 'one molecule'}`),
     ` – ${advice === null ? 'the two are parts of one molecule' : ADVICE_WORDS[advice]}`,
   );
+  const strength = { strengthKJPerMol, relativePermittivity };
   const error = plusMinus(pair.dipoleUncertaintyKJPerMol, pair.doubtKJPerMol);
-  const size =
-    energy === null
-      ? 'The energy is not known.'
-      : `${signWord(energy)[0]!.toUpperCase()}${signWord(energy).slice(1)}, ${energyText(energies, energy)}${
-          error === null ? '' : ` ± ${energyText(energies, error)}`
-        }; it matters as ${multipleOfKT(energies, strengthKJPerMol)}.`;
+  const size = energy === null ? 'The energy is not known.' : sizeWords(pair, energy, error, strength, energies);
   const trust = regime === null ? 'Nothing to judge the point dipole by' : `${regime}: ${REGIME_WORDS[regime]}`;
   const near = closest.distanceA === null ? '' : `, closest atoms ${fixed(closest.distanceA, 2)} Å`;
   const rotation = rotationWords(pair, energies);
@@ -155,6 +164,35 @@ function verdict({ pair, strengthKJPerMol }: ChosenPair, energies: Energies): HT
     html('p', {}, `${trust}; R ${fixed(distanceA, 2)} Å, ${CONTACT_WORDS[contact]}${near}.`),
     ...(rotation === '' ? [] : [html('p', {}, rotation)]),
   ];
+}
+
+/** The energy beside kT; where the point estimate is the larger one, it is what counts. */
+function sizeWords(
+  pair: ChosenPair['pair'],
+  energy: number,
+  error: number | null,
+  { strengthKJPerMol, relativePermittivity }: { strengthKJPerMol: number; relativePermittivity: number },
+  energies: Energies,
+): string {
+  const sign = signWord(energy);
+  const size = `${sign[0]!.toUpperCase()}${sign.slice(1)}, ${energyNumber(energies, energy)}${
+    error === null ? '' : ` ± ${energyNumber(energies, error)}`
+  } ${unitText(energies)}`;
+  const { pointDipole } = pair.energyKJPerMol;
+  const isUnscreened = pair.contact === 'touching' && relativePermittivity > 1;
+  const whole = strengthKJPerMol / (isUnscreened ? relativePermittivity : 1);
+  const strongest =
+    pair.referenceKJPerMol === null
+      ? `${size} by the point estimate`
+      : pointDipole !== null && whole > 1.02 * Math.abs(energy)
+        ? `${size}; the point dipole says ${energyText(energies, pointDipole)}, and the stronger of both counts`
+        : size;
+  const screening = isUnscreened ? ' without the screening of the medium, since the two touch' : '';
+  return `${strongest}: ${timesKT(energies, strengthKJPerMol)}${screening}.`;
+}
+
+function timesKT(energies: Energies, energyKJPerMol: number): string {
+  return multipleOfKT(energies, energyKJPerMol).replace(' kT', ' times kT');
 }
 
 function plusMinus(dipoles: number | null, doubt: number | null): number | null {

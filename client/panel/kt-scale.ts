@@ -28,7 +28,7 @@ export function ktLegend(y: number): SVGGElement {
     const top = y + row * 20;
     group.append(svg('text', { x: 0, y: top + 10 }, name));
     for (let k = 1; k < CLASSES; k++) {
-      const x = 74 + (k - 1) * 112;
+      const x = 70 + (k - 1) * 100;
       group.append(
         svg('path', { class: `${name} class-${k}`, d: cellPath(row === 0, x, top, side) }),
         svg('text', { x: x + side + 5, y: top + 10 }, WORDS[k]!),

@@ -5,8 +5,8 @@ import { CLASSES, cellPath, classOf, ktLegend } from './kt-scale';
 import { standaloneSvg } from './save-svg';
 import { adviceMark, csv, energyText, multipleOfKT, signWord } from './words';
 
-const WIDTH = 540;
-const LEGEND_PX = 52;
+const WIDTH = 470;
+const LEGEND_PX = 62;
 const NAMES_PX = 96;
 /** Names are written where rows are at least this high. */
 const READABLE_PX = 11;
@@ -79,7 +79,7 @@ export class MatrixView {
     const whole = (WIDTH - 2) / count;
     const withNames = (WIDTH - NAMES_PX) / count;
     const isNamed = withNames >= READABLE_PX;
-    return { side: Math.min(28, isNamed ? withNames : whole), left: isNamed ? NAMES_PX : 1, top: isNamed ? 20 : 1 };
+    return { side: Math.min(36, isNamed ? withNames : whole), left: isNamed ? NAMES_PX : 1, top: isNamed ? 20 : 1 };
   }
 
   #draw({ titles, first, second, energyKJPerMol, advice, kTKJPerMol }: PanelMatrix): SVGSVGElement {
@@ -138,7 +138,7 @@ export class MatrixView {
     const group = ktLegend(y);
     if (hasMarks) {
       const words = 'below the diagonal: ● compute  ◐ review  ○ accept  ✕ repair  – one molecule';
-      group.append(svg('text', { x: 0, y: y + 48, class: 'quiet' }, words));
+      group.append(svg('text', { x: 0, y: y + 55, class: 'quiet' }, words));
     }
     return group;
   }

@@ -6,11 +6,11 @@ import { button, html, svg } from './dom';
 import type { Host } from './host';
 import type { PanelPair } from './messages';
 import { standaloneSvg } from './save-svg';
-import { csv, type Energies, energyText, multipleOfKT } from './words';
+import { csv, type Energies, energyText, multipleOfKT, unitText } from './words';
 
-const WIDTH = 540;
+const WIDTH = 470;
 const HEIGHT = 260;
-const FRAME: Frame = { left: 58, right: 528, top: 24, bottom: 220 };
+const FRAME: Frame = { left: 46, right: 460, top: 40, bottom: 220 };
 /** Marks are drawn one by one up to so many frames. */
 const MOST_MARKS = 120;
 const MOST_EVENTS = 50;
@@ -108,7 +108,7 @@ function drawSeries(series: PanelSeries): SVGSVGElement {
       d: pathThrough(energies.map((energy, k) => (energy === null ? null : [x(k + 1), y(energy)]))),
     }),
     ...(frames.length <= MOST_MARKS ? marks(frames, x, y) : []),
-    axes(FRAME, x, yInUnits(y, series), 'frame', `energy / ${series.unit}`, true),
+    axes(FRAME, x, yInUnits(y, series), 'frame', `energy / ${unitText(series)}`, true),
     svg(
       'g',
       { class: 'present' },

@@ -52,18 +52,18 @@ const OTHER_COLUMNS: readonly Column[] = [
       `${energyFrom === 'point' ? '~' : ''}${energyNumber(energies, energyKJPerMol)}`,
   },
   {
-    key: 'point',
-    title: 'point',
-    meaning: 'point-dipole estimate',
-    isNumber: true,
-    text: ({ pointKJPerMol }, energies) => energyNumber(energies, pointKJPerMol),
-  },
-  {
     key: 'strength',
     title: '×kT',
     meaning: 'what the pair matters beside kT',
     isNumber: true,
     text: ({ strengthKJPerMol }, energies) => multipleOfKT(energies, strengthKJPerMol).replace(' kT', ''),
+  },
+  {
+    key: 'point',
+    title: 'point',
+    meaning: 'point-dipole estimate',
+    isNumber: true,
+    text: ({ pointKJPerMol }, energies) => energyNumber(energies, pointKJPerMol),
   },
   {
     key: 'regime',

@@ -49,7 +49,16 @@ export function energyNumber(energies: Energies, energyKJPerMol: number | null):
 
 /** An energy with its unit. */
 export function energyText(energies: Energies, energyKJPerMol: number | null): string {
-  return `${energyNumber(energies, energyKJPerMol)} ${energies.unit === 'cm-1' ? 'cm⁻¹' : energies.unit}`;
+  return `${energyNumber(energies, energyKJPerMol)} ${unitText(energies)}`;
+}
+
+export function unitText({ unit }: Energies): string {
+  return unit === 'cm-1' ? 'cm⁻¹' : unit;
+}
+
+/** What the columns of a table of pairs mean, as far as their heads leave open. */
+export function tableWords(energies: Energies): string {
+  return `E and point in ${unitText(energies)}; ~ is a point estimate without a reference.`;
 }
 
 export function multipleOfKT({ kTKJPerMol }: Energies, energyKJPerMol: number): string {

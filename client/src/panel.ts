@@ -4,6 +4,7 @@ import {
   type ExtensionContext,
   env,
   Position,
+  Range,
   Selection,
   type TextDocument,
   type TextEditor,
@@ -71,6 +72,7 @@ export class PairPanel {
     const editor = window.activeTextEditor;
     if (target.uri !== undefined) this.#turnTo(target.uri);
     else if (editor !== undefined && isOurs(editor.document)) this.#turnTo(editor.document.uri.toString());
+    this.#position = this.#editor()?.selection.active ?? this.#position;
     const { frame, first, second } = target;
     if (frame !== undefined && first !== undefined && second !== undefined) {
       this.#pair = { frame, first, second };
@@ -111,8 +113,10 @@ export class PairPanel {
     });
     panel.onDidDispose(() => {
       if (this.#panel !== panel) return;
-      this.#panel = null;
       clearTimeout(this.#timer);
+      this.#panel = null;
+      this.#uri = null;
+      this.#pair = null;
     });
     panel.webview.html = panelHtml(panel.webview, this.#context.extensionUri);
   }
@@ -227,7 +231,8 @@ export class PairPanel {
       return new Selection(lastLine, document.lineAt(lastLine).text.length, firstLine, 0);
     });
     editor.selections = selections;
-    editor.revealRange(selections[0]!);
+    const start = selections[0]!.active;
+    editor.revealRange(new Range(start, start));
     this.#position = selections[0]!.active;
   }
 

@@ -1,71 +1,189 @@
-// The panel: what it leads with, how it follows, and that its parts answer.
-import { ok, strictEqual } from 'node:assert/strict';
+// The panel: what it leads with, how it follows, what is chosen in it, and that everyone can use it.
+import { deepStrictEqual, match, ok, strictEqual } from 'node:assert/strict';
+import { readFileSync, rmSync } from 'node:fs';
+import { createRequire } from 'node:module';
+import { join } from 'node:path';
 import { WAIT, words } from '../hands.mjs';
 
+const OPEN = 'Polewise: Open the Panel of Pairs';
+const AXE = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
+
 /** The page inside the panel. */
-export function inPanel(person) {
-  return person.page.frameLocator('iframe.webview.ready').frameLocator('iframe#active-frame');
+function inPanel({ page }) {
+  return page.frameLocator('iframe.webview.ready').frameLocator('iframe#active-frame');
 }
 
-async function readPanel(person, selector, text) {
+/** The words of the first such part of the panel, once it holds some text. */
+async function read(person, selector, text) {
   const found = inPanel(person).locator(selector, text === undefined ? {} : { hasText: text });
   await found.first().waitFor({ timeout: WAIT });
   return words(await found.first().textContent());
+}
+
+async function view(person, name) {
+  await inPanel(person).getByRole('tab', { name }).click();
+}
+
+/** Looks for what keeps people with a screen reader, a keyboard or weak eyes out. */
+async function isAccessible(person) {
+  const frame = person.page.frames().find((other) => other.name() === 'active-frame' || /fake\.html/.test(other.url()));
+  ok(frame, 'the panel has a frame');
+  await frame.evaluate(AXE);
+  const { violations, passes } = await frame.evaluate(() =>
+    globalThis.axe.run(globalThis.document, { runOnly: ['wcag2a', 'wcag2aa', 'wcag21aa', 'best-practice'] }),
+  );
+  const found = violations.flatMap(({ id, nodes }) => nodes.map(({ html }) => `${id}: ${html}`));
+  deepStrictEqual(found, []);
+  ok(passes.length > 10, 'the check looked at something');
 }
 
 async function cluster(person) {
   const { page } = person;
   await person.openFile('water-cluster.xyz');
   await person.goTo(4, 3);
-  await person.command('Polewise: Open the Panel of Pairs');
-  const title = await readPanel(person, 'h2', 'H2O');
-  ok(title.includes('H2O (1)'), title);
-  await readPanel(person, '.curve.reference').catch(() => {});
+  await person.command(OPEN);
+  const title = await read(person, 'h2', 'H2O (1)');
+  match(title, /^H2O \(1\) – /);
+  match(await read(person, '.verdict'), /compute/);
   await person.shot('here');
+  await isAccessible(person);
+  const picture = inPanel(person).locator('img.pair-picture');
+  ok(await picture.evaluate((img) => img.complete && img.naturalWidth > 0), 'the drawing is there');
 
   // It follows the cursor.
-  await page.locator('.monaco-editor .view-line').nth(9).click();
+  await page.keyboard.press('Control+1');
   await person.goTo(9, 3);
-  await readPanel(person, 'h2', 'Partners of H2O (3)');
-  await person.shot('followed');
+  await read(person, 'h2', 'Partners of H2O (3)');
 
-  // Choosing a partner selects the atoms of both in the text.
-  const panel = inPanel(person);
-  await panel.locator('.here .rows [role=row]').nth(1).click();
-  await page.locator('.monaco-editor .selected-text').first().waitFor({ timeout: WAIT });
+  // Choosing a partner selects the atoms of both in the text, and shows that pair.
+  await inPanel(person).locator('.here .rows [role=row]').nth(1).click();
+  await read(person, 'h2', 'H2O (3) – H2O (5)');
+  await person.see('.monaco-editor .selected-text');
+  strictEqual(await page.locator('.monaco-editor .cursors-layer .cursor').count(), 2, 'two fragments, two cursors');
   await person.shot('chosen');
 
-  await panel.getByRole('tab', { name: 'All pairs' }).click();
-  await readPanel(person, '.all-pairs .rows [role=row]', 'H2O');
+  await view(person, 'All pairs');
+  await read(person, '.all-pairs .rows [role=row]', 'H2O');
   await person.shot('pairs');
-  await panel.getByRole('tab', { name: 'Fragment by fragment' }).click();
-  await panel.locator('.matrix svg').waitFor({ timeout: WAIT });
+  await isAccessible(person);
+  await inPanel(person)
+    .getByRole('button', { name: /separation of the centres/ })
+    .click();
+  const nearest = await read(person, '.all-pairs .rows [role=row]', '2.69');
+  match(nearest, /H2O \(4\) – H2O \(5\)/);
+  await inPanel(person).getByLabel('Advice').selectOption('review');
+  await read(person, '.all-pairs [role=status]', /^\d of 21 pairs/);
+  await person.shot('pairs-filtered');
+
+  await view(person, 'Fragment by fragment');
+  await inPanel(person).locator('.matrix svg').waitFor({ timeout: WAIT });
   await person.shot('matrix');
+  await isAccessible(person);
+}
+
+/** Everything by keyboard alone. */
+async function keyboard(person) {
+  const { page } = person;
+  await person.openFile('water-cluster.xyz');
+  await person.goTo(4, 3);
+  await person.command(OPEN);
+  await read(person, 'h2', 'Partners of H2O (1)');
+  // Into the panel, to its tabs, and on to the second.
+  await page.keyboard.press('Control+2');
+  const focused = () => inPanel(person).locator(':focus').first();
+  for (let press = 0; press < 4; press++) {
+    await page.keyboard.press('Tab');
+    if ((await inPanel(person).locator('[role=tab]:focus').count()) > 0) break;
+  }
+  await page.keyboard.press('ArrowRight');
+  strictEqual(words(await focused().textContent()), 'All pairs');
+  await read(person, '.all-pairs .rows [role=row]', 'H2O');
+  for (let press = 0; press < 16; press++) {
+    await page.keyboard.press('Tab');
+    if ((await inPanel(person).locator('[role=grid]:focus').count()) > 0) break;
+  }
+  await page.keyboard.press('ArrowDown');
+  await page.keyboard.press('ArrowDown');
+  const current = words(
+    await inPanel(person).locator('.all-pairs .rows .current [role=gridcell]').first().textContent(),
+  );
+  await person.shot('grid');
+  await page.keyboard.press('Enter');
+  await person.see('.monaco-editor .selected-text');
+  await page.keyboard.press('Shift+Tab');
+  await view(person, 'At the cursor');
+  const [first, second] = current.split(' – ');
+  const shown = await read(person, 'h2', first);
+  ok(shown.includes(second), `${shown} is ${current}`);
 }
 
 async function frames(person) {
   await person.openFile('polar-dimer-scan.xyz');
   await person.goTo(4, 3);
-  await person.command('Polewise: Open the Panel of Pairs');
-  await readPanel(person, 'h1', 'frame 1 of');
-  const panel = inPanel(person);
+  await person.command(OPEN);
+  await read(person, 'h1', 'frame 1 of 12');
   await person.shot('here');
-  await panel.getByRole('tab', { name: 'Over frames' }).click();
-  await panel.locator('.over-frames svg').waitFor({ timeout: WAIT });
+  await view(person, 'Over frames');
+  await inPanel(person).locator('.over-frames svg').waitFor({ timeout: WAIT });
   await person.shot('frames');
-  strictEqual(await panel.locator('.over-frames h2').count(), 2);
+  await isAccessible(person);
+  // What happens leads to the frame where it does.
+  await inPanel(person)
+    .getByRole('button', { name: /^Frames 5/ })
+    .click();
+  await read(person, 'h1', 'frame 6 of 12');
 }
 
 async function ligand(person) {
   await person.openFile('binding-site.pdb');
   await person.goTo(136, 35);
-  await person.command('Polewise: Open the Panel of Pairs');
-  await readPanel(person, 'h2', 'LIG:401');
+  await person.command(OPEN);
+  await read(person, 'h2', 'A:LIG:401 –');
   await person.shot('here');
+  await view(person, 'Fragment by fragment');
+  await inPanel(person).locator('.matrix svg').waitFor({ timeout: WAIT });
+  await person.shot('matrix');
+}
+
+/** It rests while hidden, comes back after a reload, and shows nothing of a file that is gone. */
+async function lasting(person) {
+  const { page, place } = person;
+  await person.openFile('water-cluster.xyz');
+  await person.goTo(4, 3);
+  await person.command(OPEN);
+  await read(person, 'h2', 'Partners of H2O (1)');
+  await view(person, 'All pairs');
+  await read(person, '.all-pairs .rows [role=row]', 'H2O');
+
+  await page.reload();
+  await person.see('.tab', 'Pairs of water-cluster.xyz');
+  await read(person, '.all-pairs .rows [role=row]', 'H2O');
+  await person.shot('reloaded');
+  await view(person, 'At the cursor');
+  await page.keyboard.press('Control+1');
+  await person.goTo(9, 3);
+  await read(person, 'h2', 'Partners of H2O (3)');
+
+  // Another editor over it: what happens meanwhile is shown when it is seen again.
+  await page.keyboard.press('Control+2');
+  await person.command('Help: Welcome');
+  await page.keyboard.press('Control+1');
+  await person.goTo(12, 3);
+  await page.locator('.tab', { hasText: 'Pairs of water-cluster.xyz' }).click();
+  await read(person, 'h2', 'Partners of H2O (4)');
+
+  rmSync(join(place.samples, 'water-cluster.xyz'));
+  await page.keyboard.press('Control+1');
+  await person.command('View: Close Editor');
+  await read(person, '.state', 'water-cluster.xyz is not open');
+  strictEqual(await inPanel(person).locator('.tabs').isVisible(), false, 'nothing stale is left');
+  await person.shot('deleted');
 }
 
 export const PANEL = [
   { name: 'panel-cluster', run: cluster },
+  { name: 'panel-keyboard', run: keyboard },
   { name: 'panel-frames', run: frames },
   { name: 'panel-ligand', run: ligand },
+  { name: 'panel-lasting', run: lasting },
 ];
