@@ -106,7 +106,7 @@ class Panel {
     const { frame, chosen } = place;
     if (id === 'here') this.#here.show(place, this.#last);
     if (id === 'pairs') this.#pairs.show(frame);
-    if (id === 'matrix') this.#matrix.show(frame);
+    if (id === 'matrix') this.#matrix.show(frame, chosen?.pair ?? null);
     if (id === 'frames') {
       this.#frames.show(chosen === null ? null : { frame, first: chosen.pair.first, second: chosen.pair.second });
     }

@@ -52,8 +52,10 @@ export class MatrixView {
     });
   }
 
-  show(frame: number): void {
+  /** Shows a frame, beginning with the pair (from 1) that is shown elsewhere. */
+  show(frame: number, pair: { readonly first: number; readonly second: number } | null): void {
     const round = ++this.#round;
+    if (pair !== null) this.#cell = [Math.min(pair.first, pair.second) - 1, Math.max(pair.first, pair.second) - 1];
     void this.#host.ask<PanelMatrix>('polewise/panelMatrix', { frame }).then((answer) => {
       if (answer !== null && round === this.#round) this.#show(answer);
     });
