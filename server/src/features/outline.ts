@@ -54,7 +54,7 @@ function fragmentsOf(file: CoordinateTree, { model, moments }: FrameAnalysis): O
 }
 
 /** From the start of a line to the end of the one before `endLine`, without its line end. */
-function linesSpan({ lines }: CoordinateTree, firstLine: number, endLine: number): Span {
+export function linesSpan({ lines }: CoordinateTree, firstLine: number, endLine: number): Span {
   const start = lines.starts[firstLine]!;
   const last = Math.max(firstLine, Math.min(endLine, lines.count) - 1);
   return { start, end: Math.max(start, lines.end(last)) };

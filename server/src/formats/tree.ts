@@ -56,8 +56,8 @@ export interface Residue {
   readonly atoms: readonly number[];
 }
 
-/** The parts of an atom line that a finding can point at; `name` is what names its fragment: the residue, or the element. */
-export type AtomField = 'line' | 'name' | 'element' | 'x' | 'y' | 'z' | 'charge';
+/** The parts of an atom line that can be pointed at; `name` is what names its fragment: the residue, or the element; `group` the fragment column. */
+export type AtomField = 'line' | 'name' | 'element' | 'x' | 'y' | 'z' | 'charge' | 'group';
 
 /** The numbers of one atom line, and all else of it. */
 export interface AtomReading {

@@ -10,6 +10,7 @@ import {
 import type { Language } from '../formats/tree';
 import { diagnosticsOf } from './diagnostics';
 import { EDITING_CAPABILITIES, serveEditing } from './editing';
+import { NAVIGATION_CAPABILITIES, serveNavigation } from './navigation';
 import { servePanel } from './panel';
 import {
   FILES_CHANGED_NOTIFICATION,
@@ -75,6 +76,7 @@ export function startServer(connection: Connection, platform: Platform): void {
         textDocumentSync: { openClose: true, change: TextDocumentSyncKind.Incremental },
         ...READING_CAPABILITIES,
         ...EDITING_CAPABILITIES,
+        ...NAVIGATION_CAPABILITIES,
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -138,6 +140,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   serveReading(session);
   serveEditing(session);
   servePanel(session);
+  serveNavigation(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);

@@ -21,9 +21,17 @@ export interface ClientAbilities {
   readonly refresh: boolean;
   /** Asks for the edits of an action later. */
   readonly lazyEdits: boolean;
+  /** Takes links that tell what they lead from. */
+  readonly links: boolean;
 }
 
-export const NO_ABILITIES: ClientAbilities = { configuration: false, pull: false, refresh: false, lazyEdits: false };
+export const NO_ABILITIES: ClientAbilities = {
+  configuration: false,
+  pull: false,
+  refresh: false,
+  lazyEdits: false,
+  links: false,
+};
 
 export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): ClientAbilities {
   const { codeAction } = textDocument ?? {};
@@ -32,6 +40,7 @@ export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): Cl
     pull: textDocument?.diagnostic !== undefined,
     refresh: workspace?.diagnostics?.refreshSupport === true,
     lazyEdits: codeAction?.dataSupport === true && codeAction.resolveSupport?.properties.includes('edit') === true,
+    links: textDocument?.definition?.linkSupport === true,
   };
 }
 

@@ -20,7 +20,7 @@ const FRAGMENTS_A_STEP = 1024;
 const MOST_AXIS_NAMES = 200;
 
 /** Keys of the first frame that hold for a later one which does not give them itself. */
-const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
+export const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
 
 /**
  * Binds the comment-line keys of an XYZ frame to its fragments. `first` is the first frame of the file where its names and kinds

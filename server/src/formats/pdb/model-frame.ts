@@ -120,6 +120,7 @@ function fieldOf(columns: FixedColumns, line: number, field: AtomField): Span {
     case 'charge':
       return columns.span(line, ATOM_COLUMNS.formalCharge);
     case 'name':
+    case 'group':
       return columns.span(line, [ATOM_COLUMNS.residueName[0], ATOM_COLUMNS.insertion[1]]);
     default:
       return columns.span(line, ATOM_COLUMNS[field]);

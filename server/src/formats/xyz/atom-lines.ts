@@ -217,6 +217,7 @@ export function fieldOfAtom(text: Snapshot, lines: LineIndex, line: number, plan
     y: ColumnOp.y,
     z: ColumnOp.z,
     charge: ColumnOp.charge,
+    group: ColumnOp.group,
   }[field];
   let at = first;
   for (const op of plan.ops) {
