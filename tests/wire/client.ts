@@ -55,6 +55,8 @@ export class WireClient {
   readonly connection: ProtocolConnection;
   readonly published: PublishDiagnosticsParams[] = [];
   readonly statuses: Status[] = [];
+  /** What the server asked to be asked for again. */
+  readonly refreshed: string[] = [];
   settings: unknown;
   files: Record<string, string>;
   initialized: InitializeResult | undefined;
@@ -79,7 +81,13 @@ export class WireClient {
     );
     this.connection.onRequest(ConfigurationRequest.type, ({ items }) => items.map(() => this.settings));
     this.connection.onRequest(RegistrationRequest.type, () => undefined);
-    this.connection.onRequest('workspace/diagnostic/refresh', () => null);
+    for (const what of ['diagnostic', 'codeLens', 'inlayHint']) {
+      this.connection.onRequest(`workspace/${what}/refresh`, () => {
+        this.refreshed.push(what);
+        this.#look();
+        return null;
+      });
+    }
     this.connection.onNotification(PublishDiagnosticsNotification.type, (params) => {
       this.published.push(params);
       this.#look();

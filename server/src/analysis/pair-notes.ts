@@ -2,25 +2,26 @@ import { NOTICEABLE_KT } from './advice';
 import type { Pair } from './pair';
 import type { System } from './system';
 
-/** Why a pair is spoken of in the findings; 0 for one that is not. */
-export const NoteKind = { none: 0, clash: 1, near: 2, edge: 3 } as const;
+/** Why a pair is noted; 0 for one that is not. Pairs to compute that are neither near nor at the edge (they touch) bring no finding. */
+export const NoteKind = { none: 0, clash: 1, near: 2, edge: 3, compute: 4 } as const;
 export type NoteKind = (typeof NoteKind)[keyof typeof NoteKind];
 
 /** What is to be said of an evaluated pair. */
-export function noteOf({ kTKJPerMol }: System, { contact, regime, strengthKJPerMol }: Pair): NoteKind {
+export function noteOf({ kTKJPerMol }: System, { contact, regime, strengthKJPerMol, advice }: Pair): NoteKind {
   if (contact === 'clash') return NoteKind.clash;
   if (contact === 'bonded') return NoteKind.none;
   if (regime === 'near' && strengthKJPerMol > NOTICEABLE_KT * kTKJPerMol) return NoteKind.near;
-  return regime === 'edge' ? NoteKind.edge : NoteKind.none;
+  if (regime === 'edge') return NoteKind.edge;
+  return advice === 'compute' ? NoteKind.compute : NoteKind.none;
 }
 
 const FIRST_ROOM = 64;
 
-/** Pairs to be spoken of, as columns, in order of first and second fragment: millions of others need not be kept. */
+/** Pairs of note, as columns, in order of first and second fragment: millions of others need not be kept. */
 export class PairNotes {
   count = 0;
   /** How many there are of each kind. */
-  readonly #counts = new Int32Array(4);
+  readonly #counts = new Int32Array(5);
   first: Int32Array;
   second: Int32Array;
   kind: Uint8Array;

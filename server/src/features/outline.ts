@@ -15,7 +15,7 @@ export interface OutlineEntry {
 }
 
 /** A frame of more fragments is listed without them. */
-const MOST_FRAGMENTS = 5000;
+export const MOST_OUTLINED_FRAGMENTS = 5000;
 
 /** The frames of a file, and of the one whose analysis is at hand the fragments. */
 export function outlineOf(file: CoordinateTree, analysed: FrameAnalysis | null): OutlineEntry[] {
@@ -35,7 +35,7 @@ export function outlineOf(file: CoordinateTree, analysed: FrameAnalysis | null):
 
 function fragmentsOf(file: CoordinateTree, { model, moments }: FrameAnalysis): OutlineEntry[] {
   const { fragments, tree, names, labels, formulas } = model;
-  if (fragments.count > MOST_FRAGMENTS) return [];
+  if (fragments.count > MOST_OUTLINED_FRAGMENTS) return [];
   return Array.from({ length: fragments.count }, (_, f) => {
     const atoms = atomsOf(fragments, f);
     const first = tree.atoms.line[atoms[0]!]!;

@@ -155,6 +155,16 @@ export class FrameStore {
     return known;
   }
 
+  /** A frame with its pairs looked through, from 0; what is known of them is not looked for again. */
+  async surveyed(index: number, pace: Pace): Promise<StandingFrame> {
+    const frame = await this.frame(index, pace);
+    const known = this.standing(index);
+    if (known !== null) return known;
+    const survey = await pace.finish(surveySteps(frame.system, frame.partners));
+    if (this.#frames.get(index) === frame) this.#surveys.set(index, survey);
+    return { frame, survey, atomGrid: null };
+  }
+
   keepSurvey(index: number, survey: PairSurvey): void {
     this.#surveys.set(index, survey);
   }

@@ -130,6 +130,7 @@ export function serveNavigation(session: Session): void {
       const offset = offsetOf(document, position);
       const index = limited ? -1 : frameIndexAt(tree, offset);
       const frame = index < 0 ? null : await workspace.frame(analysed, index);
+      if (index >= 0 && frame === null) return null;
       const spans = selectionSpans(tree, frame?.model ?? null, offset);
       answers.push(chainOf(document, spans, position));
     }

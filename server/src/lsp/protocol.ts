@@ -41,6 +41,9 @@ export interface ReadFilesParams {
   readonly names: readonly string[];
 }
 
+/** Command of the editor that opens the panel; its argument is a {@link PairPlace} or the first part of one. */
+export const OPEN_PANEL_COMMAND = 'polewise.openPanel';
+
 /** Tells that such a file has changed. */
 export const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
 

@@ -1,6 +1,7 @@
 import { type Hover, type InlayHint, MarkupKind, type ServerCapabilities } from 'vscode-languageserver';
 import { outlineOf } from '../features/outline';
 import { rangeOf } from './diagnostics';
+import { isOff } from './limits';
 import { foldingOf, symbolsOf } from './outline';
 import { renderHover } from './render-hover';
 import type { Session } from './session';
@@ -37,7 +38,9 @@ export function serveReading(session: Session): void {
   connection.onDocumentSymbol(async ({ textDocument: { uri } }, token) => {
     const analysed = await workspace.analysed(uri);
     if (analysed === null || token.isCancellationRequested) return [];
-    const only = analysed.tree.frames.length === 1 && !analysed.limited ? await workspace.frame(analysed, 0) : null;
+    if (analysed.settings.limits.outline === 0) return [];
+    const hasFragments = analysed.tree.frames.length === 1 && !isOff('outline', analysed);
+    const only = hasFragments ? await workspace.frame(analysed, 0) : null;
     return symbolsOf(analysed.document.lines, outlineOf(analysed.tree, only));
   });
 
@@ -48,7 +51,7 @@ export function serveReading(session: Session): void {
 
   connection.languages.inlayHint.on(async ({ textDocument: { uri }, range }, token): Promise<InlayHint[]> => {
     const analysed = await workspace.analysed(uri);
-    if (analysed === null || analysed.limited || token.isCancellationRequested) return [];
+    if (analysed === null || isOff('hints', analysed) || token.isCancellationRequested) return [];
     const { lines } = analysed.document;
     const hints = await workspace.hints(analysed, range.start.line, range.end.line + 1);
     return hints.map(({ offset, text, tooltip }) => ({

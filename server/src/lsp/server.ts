@@ -1,4 +1,5 @@
 import {
+  CodeLensRefreshRequest,
   type Connection,
   DidChangeConfigurationNotification,
   DocumentDiagnosticReportKind,
@@ -10,6 +11,7 @@ import {
 import type { Language } from '../formats/tree';
 import { diagnosticsOf } from './diagnostics';
 import { EDITING_CAPABILITIES, serveEditing } from './editing';
+import { LENS_CAPABILITIES, serveLens } from './lens';
 import { NAVIGATION_CAPABILITIES, serveNavigation } from './navigation';
 import { servePanel } from './panel';
 import {
@@ -77,6 +79,7 @@ export function startServer(connection: Connection, platform: Platform): void {
         ...READING_CAPABILITIES,
         ...EDITING_CAPABILITIES,
         ...NAVIGATION_CAPABILITIES,
+        ...LENS_CAPABILITIES,
         ...(client.pull
           ? {
               diagnosticProvider: { identifier: 'polewise', interFileDependencies: false, workspaceDiagnostics: false },
@@ -91,17 +94,22 @@ export function startServer(connection: Connection, platform: Platform): void {
     if (client.configuration) void connection.client.register(DidChangeConfigurationNotification.type, undefined);
   });
 
-  connection.onDidChangeConfiguration((change) => {
-    pushed = (change.settings as { polewise?: unknown } | null)?.polewise ?? {};
+  /** Settings are read and everything is analysed anew; the editor is to ask again for what it shows. */
+  const refreshAll = () => {
     settings.clear();
     workspace.refresh();
     if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
+    if (client.refreshLenses) void connection.sendRequest(CodeLensRefreshRequest.type);
+    if (client.refreshHints) void connection.languages.inlayHint.refresh();
+  };
+
+  connection.onDidChangeConfiguration((change) => {
+    pushed = (change.settings as { polewise?: unknown } | null)?.polewise ?? {};
+    refreshAll();
   });
 
   connection.onNotification(FILES_CHANGED_NOTIFICATION, () => {
-    settings.clear();
-    workspace.refresh();
-    if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
+    refreshAll();
   });
 
   connection.onDidOpenTextDocument(({ textDocument: { uri, languageId, version, text } }) => {
@@ -141,6 +149,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   serveEditing(session);
   servePanel(session);
   serveNavigation(session);
+  serveLens(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);

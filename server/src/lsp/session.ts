@@ -21,6 +21,9 @@ export interface ClientAbilities {
   readonly refresh: boolean;
   /** Asks for the edits of an action later. */
   readonly lazyEdits: boolean;
+  /** Asks for lenses and hints again where it is told to. */
+  readonly refreshLenses: boolean;
+  readonly refreshHints: boolean;
   /** Takes links that tell what they lead from. */
   readonly links: boolean;
 }
@@ -31,6 +34,8 @@ export const NO_ABILITIES: ClientAbilities = {
   refresh: false,
   lazyEdits: false,
   links: false,
+  refreshLenses: false,
+  refreshHints: false,
 };
 
 export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): ClientAbilities {
@@ -40,6 +45,8 @@ export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): Cl
     pull: textDocument?.diagnostic !== undefined,
     refresh: workspace?.diagnostics?.refreshSupport === true,
     lazyEdits: codeAction?.dataSupport === true && codeAction.resolveSupport?.properties.includes('edit') === true,
+    refreshLenses: workspace?.codeLens?.refreshSupport === true,
+    refreshHints: workspace?.inlayHint?.refreshSupport === true,
     links: textDocument?.definition?.linkSupport === true,
   };
 }

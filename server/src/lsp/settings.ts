@@ -15,6 +15,13 @@ import { findMedium } from '../physics/media';
 import { readQuantity } from '../physics/quantity';
 import { ENERGY_UNITS, type EnergyUnit } from '../physics/units';
 
+/** Atoms above which a part is off, by part; 0 for never shown. */
+export interface Limits {
+  readonly hints: number;
+  readonly lens: number;
+  readonly outline: number;
+}
+
 /** The editor's settings for one document, checked and clamped. */
 export interface ServerSettings {
   readonly request: AnalysisRequest;
@@ -22,6 +29,8 @@ export interface ServerSettings {
   readonly severities: ReadonlyMap<string, Severity | 'off'>;
   readonly maxFindings: number;
   readonly hints: HintKinds;
+  readonly lens: boolean;
+  readonly limits: Limits;
   readonly analysisLimit: number;
   /** The table of all pairs is off in a frame that has more. */
   readonly panelPairLimit: number;
@@ -32,6 +41,8 @@ export interface ServerSettings {
 const DEFAULT_MAX_FINDINGS = 200;
 const DEFAULT_ANALYSIS_LIMIT = 200000;
 const DEFAULT_PANEL_PAIR_LIMIT = 300_000;
+const DEFAULT_LIMITS: Limits = { hints: 200000, lens: 200000, outline: 100000 };
+const MOST_ATOMS = 1e7;
 const MOST_LIBRARY_FILES = 20;
 
 /** Checks settings as the editor sends them: a wrong one gives its default and a complaint, one out of range is clamped. */
@@ -56,9 +67,15 @@ export function readSettings(raw: unknown, libraryFiles: readonly LibraryFile[] 
     energyUnit: reader.choice<EnergyUnit>('energyUnit', ENERGY_UNITS, DEFAULT_ENERGY_UNIT),
     severities: reader.severities(),
     hints: { fragments: reader.flag('hints.fragments', true), contacts: reader.flag('hints.contacts', true) },
+    lens: reader.flag('lens.frames', true),
+    limits: {
+      hints: reader.number('limits.hints', 0, MOST_ATOMS, DEFAULT_LIMITS.hints),
+      lens: reader.number('limits.lens', 0, MOST_ATOMS, DEFAULT_LIMITS.lens),
+      outline: reader.number('limits.outline', 0, MOST_ATOMS, DEFAULT_LIMITS.outline),
+    },
     maxFindings: reader.number('maxFindings', 1, 5000, DEFAULT_MAX_FINDINGS),
-    analysisLimit: reader.number('analysisLimit', 0, 1e7, DEFAULT_ANALYSIS_LIMIT),
     panelPairLimit: reader.number('limits.panelPairs', 0, 1e6, DEFAULT_PANEL_PAIR_LIMIT),
+    analysisLimit: reader.number('analysisLimit', 0, MOST_ATOMS, DEFAULT_ANALYSIS_LIMIT),
     complaints: reader.complaints,
   };
 }

@@ -1,4 +1,5 @@
 import type { Analysed } from './analyser';
+import { partsOff } from './limits';
 import type { StatusParams } from './protocol';
 
 const plural = (count: number, what: string) => `${count} ${what}${count === 1 ? '' : 's'}`;
@@ -17,16 +18,25 @@ export function failedStatus(uri: string, reason: string): StatusParams {
   return { uri, state: 'failed', text: 'failed', detail: `The analysis stopped: ${reason}` };
 }
 
-export function readyStatus({ document, settings, tree, findings, fragments, pairs, limited }: Analysed): StatusParams {
+export function readyStatus(analysed: Analysed): StatusParams {
+  const { document, settings, tree, findings, fragments, pairs, limited } = analysed;
   const frames = plural(tree.frames.length, 'frame');
   const complaints = settings.complaints.length === 0 ? '' : ` Settings: ${settings.complaints.join('; ')}.`;
   if (tree.frames.length === 0) {
     return { uri: document.uri, state: 'idle', text: 'no coordinates', detail: `No frame could be read.${complaints}` };
   }
+  const off = partsOff(analysed);
+  const alsoOff =
+    off.length === 0 ? '' : ` Off for a text of this size: ${off.map(({ reason }) => reason).join(', ')}.`;
+  const partsLess = off.filter(({ isBySetting }) => isBySetting).map(({ part }) => part);
   if (limited) {
-    const detail = `More atoms than polewise.analysisLimit (${settings.analysisLimit}): the text is checked, pairs are computed on hover alone.${complaints}`;
-    return { uri: document.uri, state: 'limited', text: `${frames}, pairs off`, detail };
+    const detail = `More atoms than polewise.analysisLimit (${settings.analysisLimit}): the text is checked, pairs are computed on hover alone.${alsoOff}${complaints}`;
+    const parts = ['pairs', ...partsLess].join(', ');
+    return { uri: document.uri, state: 'limited', text: `${frames}, ${parts} off`, detail };
   }
-  const text = `${frames}, ${plural(fragments, 'fragment')}, ${plural(pairs, 'pair')}`;
-  return { uri: document.uri, state: 'idle', text, detail: `${worstInWords(findings)}${complaints}` };
+  const counts = `${frames}, ${plural(fragments, 'fragment')}, ${plural(pairs, 'pair')}`;
+  const detail = `${worstInWords(findings)}${alsoOff}${complaints}`;
+  if (partsLess.length === 0) return { uri: document.uri, state: 'idle', text: counts, detail };
+  const text = `${counts}; ${partsLess.join(', ')} off`;
+  return { uri: document.uri, state: 'limited', text, detail };
 }

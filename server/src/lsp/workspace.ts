@@ -109,10 +109,15 @@ export class Workspace {
   }
 
   /** A frame of an analysis, as long as that is the newest; `null` where it is not any more. */
-  async frame(analysed: Analysed, index: number): Promise<FrameAnalysis | null> {
+  frame(analysed: Analysed, index: number): Promise<FrameAnalysis | null> {
+    return this.paced(analysed, (pace) => analysed.frames.frame(index, pace));
+  }
+
+  /** Does work on an analysis in slices, as long as that is the newest; `null` where it is not any more. */
+  async paced<T>(analysed: Analysed, work: (pace: Pace) => Promise<T>): Promise<T | null> {
     const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
     try {
-      return await analysed.frames.frame(index, pace);
+      return this.#isNewest(analysed) ? await work(pace) : null;
     } catch (error) {
       if (error instanceof Outdated) return null;
       throw error;
