@@ -225,7 +225,8 @@ describe('completion', () => {
     expect((await labels('REMARK  99 fragment=*:HOH:* dip', 0, 'pdb')).map(({ label }) => label)).toContain(
       'dipole_size',
     );
-    expect(await labels('3\nwater\nO', 2)).toEqual([]);
+    expect(await labels('3\nwater\nO 0.1', 2)).toEqual([]);
+    expect(await labels('3\nwater\nO 0 0 0', 0)).toEqual([]);
     expect(await labels('ATOM  ', 0, 'pdb')).toEqual([]);
   });
 });

@@ -1,54 +1,66 @@
-import { FINDING_CODES } from '../base/catalogue';
+import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { FILE_KEYS, FRAME_KEYS, SELECTED_KEYS } from '../formats/annotation/keys';
 import type { Language } from '../formats/tree';
-import { MEDIA } from '../physics/media';
-import { DIPOLE_UNITS } from '../physics/units';
-import { KEY_DOCS } from './key-docs';
+import { elementCompletions } from './complete-element';
+import { headerSnippet, remarkSnippet } from './complete-snippet';
+import { valueCompletions } from './complete-value';
+import { KEY_DOCS, KEY_FACTS } from './key-docs';
 
 /** A word that may stand at a place. */
 export interface Completion {
   readonly label: string;
-  readonly kind: 'key' | 'value';
+  readonly kind: 'key' | 'value' | 'element' | 'fragment' | 'atom' | 'snippet';
   readonly detail: string;
+  /** More of it, as Markdown; '' for nothing. */
+  readonly documentation: string;
   /** What is put in place of the word that is there: a key comes with its equals sign. */
   readonly insert: string;
+  /** The same with places to be filled in one after another, for editors that have such; `null` where there are none. */
+  readonly template: string | null;
   /** How many units before the place the word begins that is replaced. */
   readonly replaced: number;
 }
 
-const PERIODIC = ['true', 'false'];
-
-/** The values that some keys take. */
-const VALUES: Readonly<Record<string, () => readonly string[]>> = {
-  dipole_unit: () => [...DIPOLE_UNITS.keys()],
-  relative_permittivity: () => MEDIA.flatMap(({ name, otherNames }) => [name, ...otherNames]),
-  silence: () => FINDING_CODES,
-  periodic: () => PERIODIC,
-  charge_column: () => ['occupancy', 'bfactor'],
-};
+/** Where something is to be completed. */
+export interface CompletionPlace {
+  readonly language: Language;
+  /** The line up to the place, and the rest of it. */
+  readonly before: string;
+  readonly after: string;
+  /** What an XYZ line is by its place: the comment line behind a count, a line for an atom, or one that cannot be told. */
+  readonly line: 'comment' | 'atom' | 'other';
+  /** Whether it was asked for, or begun with a letter, rather than set off by a sign. */
+  readonly isAsked: boolean;
+  /** The frame at the place as it was last understood; `null` where it is not at hand. */
+  readonly frame: FrameAnalysis | null;
+  /** Atomic numbers of the elements that the file begins with. */
+  readonly elements: () => readonly number[];
+}
 
 const REMARK = /^REMARK {1,3}(?:[6-9]|[1-9]\d) /;
 
-/**
- * The keys and values that may follow the beginning of a line: of a comment line in XYZ, of a REMARK in PDB. `isAnnotation` tells whether keys
- * may stand on the line at all.
- */
-export function completionsAfter(before: string, language: Language, isAnnotation: boolean): Completion[] {
-  if (!(language === 'pdb' ? REMARK.test(before) : isAnnotation)) return [];
-  const value = /(\w+)=(?:"[^"]*?|)([^\s"=,]*)$/.exec(before);
-  if (value !== null) {
-    const [, key = '', word = ''] = value;
-    return (VALUES[key]?.() ?? []).map((label) => ({
-      label,
-      kind: 'value',
-      detail: `${key}`,
-      insert: label,
-      replaced: word.length,
-    }));
+/** The words that may stand at a place; needs nothing but the text, and says more where the frame is at hand. */
+export function completionsAt(place: CompletionPlace): Completion[] {
+  const { language, before, after, line, isAsked } = place;
+  if (language === 'pdb') {
+    if (REMARK.test(before)) return annotationCompletions(place);
+    const isBeginning = after.trim() === '' && 'REMARK'.startsWith(before) && (isAsked || before !== '');
+    return isBeginning ? [remarkSnippet(place)] : [];
   }
+  if (line === 'atom') return isAsked ? elementCompletions(before, after, place.elements()) : [];
+  if (line !== 'comment') return [];
+  const isEmpty = before.trim() === '' && after.trim() === '';
+  return [...(isEmpty ? [headerSnippet(place.frame)] : []), ...annotationCompletions(place)];
+}
+
+function annotationCompletions(place: CompletionPlace): Completion[] {
+  return valueCompletions(place) ?? keyCompletions(place);
+}
+
+function keyCompletions({ before, after, language }: CompletionPlace): Completion[] {
   const word = /(?:^|\s)(\w*)$/.exec(before)?.[1];
   if (word === undefined) return [];
-  const given = new Set([...before.matchAll(/(\w+)=/g)].map(([, key]) => key));
+  const given = new Set([...`${before}\n${after}`.matchAll(/\b(\w+)=/g)].map(([, key]) => key));
   const keys = language === 'xyz' ? FRAME_KEYS : [...new Set<string>([...SELECTED_KEYS, ...FILE_KEYS])];
   return keys
     .filter((key) => !given.has(key))
@@ -56,7 +68,20 @@ export function completionsAfter(before: string, language: Language, isAnnotatio
       label,
       kind: 'key',
       detail: KEY_DOCS[label] ?? '',
+      documentation: keyDocumentation(label, language),
       insert: `${label}=`,
+      template: null,
       replaced: word.length,
     }));
+}
+
+/** What a key means, its values and an example, as Markdown. */
+export function keyDocumentation(key: string, language: Language): string {
+  const facts = KEY_FACTS[key];
+  const example = facts?.[language];
+  return [
+    KEY_DOCS[key] ?? '',
+    ...(facts === undefined ? [] : [`Values: ${facts.values}.`]),
+    ...(example === undefined ? [] : [`\`${example}\``]),
+  ].join('\n\n');
 }

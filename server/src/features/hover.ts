@@ -155,7 +155,8 @@ function dipoleAt(frame: FrameAnalysis, { key, text }: KeyHover, offset: number)
 
 function keyAt(entries: readonly Entry[], offset: number): KeyHover | null {
   const entry = entries.find(({ keySpan, value }) => offset >= keySpan.start && offset <= value.end);
-  const text = entry === undefined ? undefined : KEY_DOCS[entry.key];
+  // A key may be called like what every object has.
+  const text = entry === undefined || !Object.hasOwn(KEY_DOCS, entry.key) ? undefined : KEY_DOCS[entry.key];
   if (entry === undefined || text === undefined) return null;
   return { kind: 'key', span: { start: entry.keySpan.start, end: entry.value.end }, key: entry.key, text };
 }

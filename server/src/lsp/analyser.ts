@@ -155,6 +155,11 @@ export class FrameStore {
     return known;
   }
 
+  /** A frame as far as it is kept. */
+  known(index: number): FrameAnalysis | null {
+    return this.#frames.get(index) ?? null;
+  }
+
   /** A frame with its pairs looked through, from 0; what is known of them is not looked for again. */
   async surveyed(index: number, pace: Pace): Promise<StandingFrame> {
     const frame = await this.frame(index, pace);

@@ -1,4 +1,4 @@
-import { LSPErrorCodes, ResponseError, type ServerCapabilities } from 'vscode-languageserver';
+import { CompletionTriggerKind, LSPErrorCodes, ResponseError, type ServerCapabilities } from 'vscode-languageserver';
 import { ACTION_KINDS } from '../features/actions';
 import { codeActionsAt, resolvedEdit, uriOfAction } from './code-actions';
 import { completionItemsAt } from './completion';
@@ -7,7 +7,7 @@ import { offsetOf } from './text-store';
 
 export const EDITING_CAPABILITIES: ServerCapabilities = {
   codeActionProvider: { codeActionKinds: [...ACTION_KINDS], resolveProvider: true },
-  completionProvider: { triggerCharacters: ['=', ' ', '_'] },
+  completionProvider: { triggerCharacters: ['=', ' ', '_', '"', ':', '>', ','] },
 };
 
 /** Answers what a writer asks: remedies and completion. */
@@ -31,9 +31,12 @@ export function serveEditing(session: Session): void {
     throw new ResponseError(LSPErrorCodes.ContentModified, 'The text has changed since this was offered.');
   });
 
-  // Completion needs the text alone: it does not wait for any analysis.
-  connection.onCompletion(({ textDocument: { uri }, position }) => {
+  // Completion does not wait for any analysis.
+  connection.onCompletion(({ textDocument: { uri }, position, context }) => {
     const document = workspace.document(uri);
-    return document === undefined ? [] : completionItemsAt(document, position);
+    if (document === undefined) return [];
+    const last = workspace.lastAnalysed(uri);
+    const isAsked = context?.triggerKind !== CompletionTriggerKind.TriggerCharacter;
+    return completionItemsAt(document, position, { last, isAsked, snippets: session.client.snippets });
   });
 }

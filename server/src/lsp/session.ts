@@ -24,6 +24,8 @@ export interface ClientAbilities {
   /** Asks for lenses and hints again where it is told to. */
   readonly refreshLenses: boolean;
   readonly refreshHints: boolean;
+  /** Takes completions with places to fill in. */
+  readonly snippets: boolean;
   /** Takes links that tell what they lead from. */
   readonly links: boolean;
 }
@@ -34,6 +36,7 @@ export const NO_ABILITIES: ClientAbilities = {
   refresh: false,
   lazyEdits: false,
   links: false,
+  snippets: false,
   refreshLenses: false,
   refreshHints: false,
 };
@@ -47,6 +50,7 @@ export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): Cl
     lazyEdits: codeAction?.dataSupport === true && codeAction.resolveSupport?.properties.includes('edit') === true,
     refreshLenses: workspace?.codeLens?.refreshSupport === true,
     refreshHints: workspace?.inlayHint?.refreshSupport === true,
+    snippets: textDocument?.completion?.completionItem?.snippetSupport === true,
     links: textDocument?.definition?.linkSupport === true,
   };
 }

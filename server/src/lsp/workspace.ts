@@ -108,6 +108,11 @@ export class Workspace {
     return entry.running;
   }
 
+  /** The last analysis that was finished, of whatever version; names and fragments can be read from it, places in the text not. */
+  lastAnalysed(uri: string): Analysed | null {
+    return this.#entries.get(uri)?.earlier ?? null;
+  }
+
   /** A frame of an analysis, as long as that is the newest; `null` where it is not any more. */
   frame(analysed: Analysed, index: number): Promise<FrameAnalysis | null> {
     return this.paced(analysed, (pace) => analysed.frames.frame(index, pace));
