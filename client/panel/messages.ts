@@ -1,10 +1,10 @@
-import type { PairPlace, PanelPlace } from '../../server/src/lsp/protocol';
+import type { DocumentPair, PanelPlace } from '../../server/src/lsp/protocol';
 
 /** What the panel may ask the server, by the names of the requests; the host adds the document. */
 export type PanelMethod = 'polewise/panelRows' | 'polewise/panelMatrix' | 'polewise/panelSeries';
 
 /** A pair of a frame, both from 1. */
-export type PanelPair = Omit<PairPlace, 'uri'>;
+export type PanelPair = Omit<DocumentPair, 'uri'>;
 
 /** What the panel tells its host. */
 export type ToHost =

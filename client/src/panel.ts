@@ -16,10 +16,10 @@ import {
 } from 'vscode';
 import type { BaseLanguageClient } from 'vscode-languageclient';
 import {
+  type DocumentPair,
   FRAGMENT_LINES_REQUEST,
   type FragmentLines,
   PANEL_PLACE_REQUEST,
-  type PairPlace,
   type PanelPlace,
   type PanelPlaceParams,
   type StatusParams,
@@ -54,7 +54,7 @@ export class PairPanel {
     this.#context = context;
     this.#client = client;
     context.subscriptions.push(
-      commands.registerCommand('polewise.openPanel', (target?: Partial<PairPlace>) => this.open(target)),
+      commands.registerCommand('polewise.openPanel', (target?: Partial<DocumentPair>) => this.open(target)),
       window.registerWebviewPanelSerializer(PANEL_TYPE, {
         deserializeWebviewPanel: async (panel, state: Partial<KeptState> | undefined) => this.#restore(panel, state),
       }),
@@ -68,7 +68,7 @@ export class PairPanel {
   }
 
   /** Opens the panel beside the editor, on the document and pair given or on what the active editor shows. */
-  open(target: Partial<PairPlace> = {}): void {
+  open(target: Partial<DocumentPair> = {}): void {
     const editor = window.activeTextEditor;
     if (target.uri !== undefined) this.#turnTo(target.uri);
     else if (editor !== undefined && isOurs(editor.document)) this.#turnTo(editor.document.uri.toString());

@@ -3,7 +3,7 @@ import { basename, join } from 'node:path';
 import type { Advice } from '../analysis/advice';
 import type { AnalysisRequest } from '../analysis/settings';
 import type { Part } from '../analysis/system';
-import { dimerFile } from '../features/dimer-file';
+import { dimerStem, dimerTitle, planDimer } from '../features/dimers';
 import { UsageError } from './input';
 import { Pacer } from './output';
 import { openForReport, type PairsOptions } from './pairs-command';
@@ -29,12 +29,7 @@ export async function dimersCommand(
 ): Promise<number> {
   const pacer = new Pacer();
   const opened = await openForReport(name, request, options, companion);
-  const stem =
-    name === '-'
-      ? 'stdin'
-      : basename(name)
-          .replace(/\.gz$/i, '')
-          .replace(/\.[^.]+$/, '');
+  const source = { name: basename(name), stem: name === '-' ? 'stdin' : dimerStem(basename(name)) };
   const planned: Planned[] = [];
   const refused: string[] = [];
   for (let place = 0; place < opened.frameNumbers.length; place++) {
@@ -43,18 +38,9 @@ export async function dimersCommand(
       await pacer.pause(() => `${name}: frame ${frame.index + 1}`);
       if (pair.advice === null || !options.advice.includes(pair.advice)) continue;
       if (pair.strengthKJPerMol < options.minEnergyKJPerMol) continue;
-      const title = `${frame.index + 1}-${pair.first + 1}-${pair.second + 1}`;
-      const cut = [pair.first, pair.second].filter((f) => frame.system.chains.isCut(f));
-      if (cut.length > 0) {
-        const names = cut.map((f) => nameOf(f).label ?? nameOf(f).name).join(' and ');
-        const are = cut.length === 1 ? 'is a piece' : 'are pieces';
-        refused.push(`pair ${title} is not written: ${names} ${are} cut from a chain, with open bonds`);
-        continue;
-      }
-      planned.push({
-        path: join(options.out, `${stem}-${title}.xyz`),
-        text: dimerFile(frame, companion, pair, nameOf, basename(name)),
-      });
+      const dimer = planDimer(frame, companion, pair, nameOf, source);
+      if (dimer.ok) planned.push({ path: join(options.out, dimer.dimer.name), text: dimer.dimer.text });
+      else refused.push(`pair ${dimerTitle(frame, pair)} is not written: ${dimer.reason}`);
     }
   }
   pacer.done();

@@ -1,8 +1,8 @@
+import { type Field, quoted } from '../features/pair-table';
 import type { SeriesFrame } from '../features/series';
 import type { SeriesEvent } from '../features/series-events';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
 import type { Output } from './output';
-import { type Field, quoted } from './report-csv';
 import { CAUTIONS, fixed, NOTHING, plural, shownEnergy } from './report-text';
 import type { SeriesForReport } from './series-command';
 import { type Column, textTable } from './table';

@@ -4,6 +4,8 @@
  */
 
 import type { Advice } from '../analysis/advice';
+import type { Dimer, DimerHarvest, PairPlace } from '../features/dimers';
+import type { PairChoice } from '../features/pair-choices';
 import type { PairRow, RowQuery } from '../features/pair-list';
 import type { PictureTheme } from '../features/pair-picture-parts';
 import type { PairNumbers, PlaceData } from '../features/panel-place';
@@ -33,6 +35,86 @@ export interface ThemeParams {
 
 export const THEME_NOTIFICATION = 'polewise/theme';
 
+/** What a question is answered with: the result, or a sentence that says why there is none. */
+export type Answer<T> =
+  | { readonly result: T; readonly reason: null }
+  /** `isOutdated`: the document changed while it was being answered; asking again may help. */
+  | { readonly result: null; readonly reason: string; readonly isOutdated: boolean };
+
+/** Which frame a line of a document ({@link LineParams}) belongs to, answered with {@link FrameAtResult}. */
+export const FRAME_AT_REQUEST = 'polewise/frameAt';
+
+export interface FrameAtResult {
+  /** From 1. */
+  readonly frame: number;
+  readonly frames: number;
+  readonly version: number;
+}
+
+/** The pairs of a frame to choose from, strongest first. */
+export const PAIR_CHOICES_REQUEST = 'polewise/pairChoices';
+
+export interface PairChoicesParams {
+  readonly uri: string;
+  readonly frame: number;
+}
+
+export interface PairChoicesResult {
+  readonly counts: Readonly<Record<Advice, number>>;
+  /** Energies in the unit that the settings ask for. */
+  readonly pairs: readonly (Omit<PairChoice, 'energyKJPerMol'> & { readonly energy: number | null })[];
+  readonly energyUnit: string;
+  readonly version: number;
+}
+
+/** The texts of dimer files, as the command line writes them. */
+export const DIMERS_REQUEST = 'polewise/dimers';
+
+export interface DimersParams {
+  readonly uri: string;
+  /** From 1; null for every frame. */
+  readonly frame: number | null;
+  /** Pairs of fragments, from 1; null for all pairs of the list. */
+  readonly pairs: readonly (readonly [number, number])[] | null;
+  /** Of those only the ones with this advice; null for any. */
+  readonly advice: readonly Advice[] | null;
+}
+
+export interface DimersResult {
+  readonly files: readonly (Dimer & PairPlace)[];
+  readonly refused: DimerHarvest['refused'];
+  readonly version: number;
+}
+
+/** The pair table, as the command line writes it. */
+export const PAIR_TABLE_REQUEST = 'polewise/pairTable';
+
+export interface PairTableParams {
+  readonly uri: string;
+  /** From 1; null for every frame. */
+  readonly frame: number | null;
+  readonly format: 'csv';
+}
+
+export interface PairTableResult {
+  readonly text: string;
+  /** A name for a file that holds it. */
+  readonly name: string;
+  readonly pairs: number;
+  readonly version: number;
+}
+
+/** The named media. */
+export const MEDIA_REQUEST = 'polewise/media';
+
+export interface MediumEntry {
+  readonly name: string;
+  readonly otherNames: readonly string[];
+  readonly relativePermittivity: number;
+  /** Of the tabulated value; null for vacuum. */
+  readonly temperatureK: number | null;
+}
+
 /** Asks the editor for the texts of files by their names in the workspace of a document: a list of texts, null for what cannot be read. */
 export const READ_FILES_REQUEST = 'polewise/readFiles';
 
@@ -41,14 +123,14 @@ export interface ReadFilesParams {
   readonly names: readonly string[];
 }
 
-/** Command of the editor that opens the panel; its argument is a {@link PairPlace} or the first part of one. */
+/** Command of the editor that opens the panel; its argument is a {@link DocumentPair} or the first part of one. */
 export const OPEN_PANEL_COMMAND = 'polewise.openPanel';
 
 /** Tells that such a file has changed. */
 export const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
 
 /** A pair of a document; frame and fragments from 1. */
-export interface PairPlace extends PairNumbers {
+export interface DocumentPair extends PairNumbers {
   readonly uri: string;
   readonly frame: number;
 }
@@ -120,7 +202,7 @@ export interface PanelMatrix extends PanelAnswer {
 /** Asks for a pair over the frames of its document. */
 export const PANEL_SERIES_REQUEST = 'polewise/panelSeries';
 
-export type PanelSeriesParams = PairPlace;
+export type PanelSeriesParams = DocumentPair;
 
 export interface PanelSeries extends PanelAnswer {
   readonly frame: number;

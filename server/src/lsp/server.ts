@@ -9,6 +9,7 @@ import {
   TextDocumentSyncKind,
 } from 'vscode-languageserver';
 import type { Language } from '../formats/tree';
+import { serveActing } from './acting';
 import { diagnosticsOf } from './diagnostics';
 import { EDITING_CAPABILITIES, serveEditing } from './editing';
 import { LENS_CAPABILITIES, serveLens } from './lens';
@@ -150,6 +151,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   servePanel(session);
   serveNavigation(session);
   serveLens(session);
+  serveActing(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);
