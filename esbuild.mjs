@@ -15,6 +15,7 @@ const shared = {
   legalComments: 'none',
   logLevel: 'warning',
   metafile: true,
+  loader: { '.xyz': 'text' },
   define: { POLEWISE_VERSION: JSON.stringify(version) },
 };
 
@@ -32,6 +33,14 @@ const lazyUnits = {
   },
 };
 const withLazyUnits = { plugins: [lazyUnits], external: ['./units.cjs'] };
+
+/** Keeps what the commands run in a bundle of its own on the desktop, loaded at the first command. */
+const lazyCommands = {
+  name: 'lazy-commands',
+  setup({ onResolve }) {
+    onResolve({ filter: /^\.\/acting$/ }, () => ({ path: './commands.cjs', external: true }));
+  },
+};
 
 /** What goes into the .vsix is made small; names are kept so that a stack trace stays readable. */
 const packaged = { ...shared, minify: true, keepNames: true };
@@ -55,6 +64,15 @@ const results = await Promise.all([
     ...packaged,
     entryPoints: ['client/src/extension.ts'],
     outfile: 'client/dist/extension.cjs',
+    external: ['vscode'],
+    plugins: [lazyCommands],
+    // A module of the extension must be required: only then does it find the editor's own.
+    supported: { 'dynamic-import': false },
+  }),
+  build({
+    ...packaged,
+    entryPoints: ['client/src/acting/index.ts'],
+    outfile: 'client/dist/commands.cjs',
     external: ['vscode'],
   }),
   build({

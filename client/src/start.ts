@@ -7,6 +7,7 @@ import {
   type StatusParams,
   THEME_NOTIFICATION,
 } from '../../server/src/lsp/protocol';
+import { registerCommands } from './commands';
 import { readWorkspaceFiles, watchLibraryFiles } from './library-files';
 import { PairPanel } from './panel';
 import { type ServerState, StatusView } from './status';
@@ -35,6 +36,7 @@ export async function start(context: ExtensionContext, makeClient: MakeClient): 
   const panel = new PairPanel(context, client);
   context.subscriptions.push(
     status,
+    ...registerCommands(client),
     client.onDidChangeState(({ newState }) => status.serverIs(SERVER_STATES[newState])),
     client.onNotification(STATUS_NOTIFICATION, (params: StatusParams) => {
       status.update(params);

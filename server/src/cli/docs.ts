@@ -1,9 +1,11 @@
 import { CATALOGUE, FINDING_CODES, SEVERITIES } from '../base/catalogue';
+import { COMMAND_DOCS } from '../features/command-docs';
 import { MEDIA } from '../physics/media';
 
 /** What is read of the extension's manifest. */
 export interface Manifest {
   readonly contributes: {
+    readonly commands: readonly { readonly command: string; readonly title: string }[];
     readonly configuration: { readonly properties: Readonly<Record<string, SettingEntry>> };
   };
 }
@@ -20,10 +22,18 @@ interface SettingEntry {
 /** Parts of the README that are made from the program's own tables, by the name of their markers. */
 export function generatedSections(manifest: Manifest): ReadonlyMap<string, string> {
   return new Map([
+    ['commands', commandsSection(manifest)],
     ['findings', findingsSection()],
     ['media', mediaSection()],
     ['settings', settingsSection(manifest)],
   ]);
+}
+
+function commandsSection({ contributes }: Manifest): string {
+  const rows = contributes.commands.map(({ command, title }) => {
+    return `| ${title} | \`${command}\` | ${COMMAND_DOCS[command] ?? ''} |`;
+  });
+  return ['| command | name for key bindings | what it does |', '| --- | --- | --- |', ...rows].join('\n');
 }
 
 function settingsSection({ contributes }: Manifest): string {
