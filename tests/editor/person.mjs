@@ -3,6 +3,7 @@
 import { strictEqual } from 'node:assert/strict';
 import { mkdirSync, readdirSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
+import { ACTING } from './flows/acting.mjs';
 import { PANEL } from './flows/panel.mjs';
 import { READING } from './flows/reading.mjs';
 import { Person, SHOTS } from './hands.mjs';
@@ -20,7 +21,7 @@ import {
 const THEMES = { light: 'Default Light Modern', dark: 'Default Dark Modern', hc: 'Default High Contrast' };
 
 /** Each begins with nothing open but the folder of samples, as they are in the repository; it may leave behind what it likes. */
-const FLOWS = [...READING, ...PANEL];
+const FLOWS = [...READING, ...PANEL, ...ACTING];
 
 const option = (name) =>
   process.argv.find((argument) => argument.startsWith(`--${name}=`))?.slice(name.length + 3) ?? '';

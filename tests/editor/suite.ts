@@ -3,6 +3,7 @@ import { ok, strictEqual } from 'node:assert/strict';
 import { appendFileSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import * as vscode from 'vscode';
+import { ACTING } from './suite-acting';
 import { closeAll, folder, open, type Suite, sample, until } from './suite-kit';
 import { READING } from './suite-reading';
 
@@ -17,7 +18,7 @@ const FIRST: Suite = {
   },
 };
 
-const SUITES: readonly Suite[] = [READING];
+const SUITES: readonly Suite[] = [READING, ACTING];
 
 const LAST: Suite = {
   'nothing was written to the samples': async () => {

@@ -1,4 +1,4 @@
-import { commands, Position, Selection, type TextDocument, Uri, ViewColumn, window, workspace } from 'vscode';
+import { commands, Position, Selection, Uri, ViewColumn, window, workspace } from 'vscode';
 import sample from '../../../samples/bare-cluster.xyz';
 import { editorInView } from './target';
 
@@ -10,27 +10,22 @@ const FIRST_ATOM = 2;
 
 /** Opens the bundled cluster as a text of its own, which is saved only where that is wanted. */
 export async function openSample(): Promise<void> {
-  const document = await sampleDocument();
+  const folder = workspace.workspaceFolders?.[0]?.uri;
+  // Only a disk can take an unsaved text under a name in the folder.
+  const address = folder?.scheme === 'file' ? await freeAddress(folder) : null;
+  const document = await (address === null
+    ? workspace.openTextDocument({ language: 'xyz', content: sample })
+    : workspace.openTextDocument(address));
   // Beside a walkthrough, so that both are seen.
   const isBeside = window.activeTextEditor === undefined && window.tabGroups.activeTabGroup.activeTab !== undefined;
   const editor = await window.showTextDocument(document, {
     viewColumn: isBeside ? ViewColumn.Beside : ViewColumn.Active,
     preview: false,
   });
+  // Filled where it is seen: a text that is changed out of sight is shown once more by the editor.
+  if (document.getText() === '') await editor.edit((edit) => edit.insert(new Position(0, 0), sample));
   const atom = new Position(Math.min(FIRST_ATOM, document.lineCount - 1), 0);
   editor.selection = new Selection(atom, atom);
-}
-
-async function sampleDocument(): Promise<TextDocument> {
-  const folder = workspace.workspaceFolders?.[0]?.uri;
-  // Only a disk can take an unsaved text under a name in the folder.
-  const address = folder?.scheme === 'file' ? await freeAddress(folder) : null;
-  if (address === null) return workspace.openTextDocument({ language: 'xyz', content: sample });
-  const document = await workspace.openTextDocument(address);
-  if (document.getText() !== '') return document;
-  const editor = await window.showTextDocument(document, { preview: false });
-  await editor.edit((edit) => edit.insert(new Position(0, 0), sample));
-  return document;
 }
 
 /** An address in the folder under which there is no file yet. */
