@@ -119,9 +119,11 @@ async function change(
 ): Promise<void> {
   const params: LineParams = { uri: document.uri.toString(), line, ...more };
   for (let attempt = 0; attempt < 2; attempt++) {
+    const { version } = document;
     const answer = await request<EditAnswer>(client, TITLE, method, params);
     if (answer === null) return;
     const { edit, reason } = answer;
+    if (edit === null && document.version !== version) continue;
     if (edit === null) {
       void window.showInformationMessage(reason ?? 'There is nothing to change.');
       return;
