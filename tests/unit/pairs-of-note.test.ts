@@ -51,17 +51,35 @@ describe.each(SETTINGS)('%s', (_, settings) => {
   });
 });
 
-describe('two ions far apart', () => {
-  const ions = (gap: number) => `4\nfragment_atoms="1 2 3 4" fragment_charges="1 -1 0 0"
+const WATERS = 'O 0 0 0\nH 0.76 0.59 0\nH -0.76 0.59 0\nO 0 3 0\nH 0.76 3.59 0\nH -0.76 3.59 0\n';
+
+describe('the strongest pair, where nothing is noted of it,', () => {
+  const strongest = (text: string, settings: Partial<typeof DEFAULT_SETTINGS> = {}) => {
+    const [frame] = analyse(text, 'xyz', requestOf(settings)).frames;
+    const survey = finish(surveySteps(frame!.system, frame!.partners));
+    const { pair } = finish(strongestPair(frame!, survey));
+    const noted = Array.from({ length: survey.notes.count }, (_, k) => [survey.notes.first[k], survey.notes.second[k]]);
+    return { pair: [pair?.first, pair?.second], noted };
+  };
+
+  it.each([6, 12, 30])('is that of two ions %s Å apart, with no other to compare', (gap) => {
+    const text = `4\nfragment_atoms="1 2 3 4" fragment_charges="1 -1 0 0"
 Na 0 0 0
 Cl ${gap} 0 0
 Ar 40 0 0
 Ar 44 0 0
 `;
-  it.each([6, 12, 30])('are the strongest pair though nothing is noted of them (%s Å)', (gap) => {
-    const { frames } = analyse(ions(gap), 'xyz', requestOf({}));
-    const survey = finish(surveySteps(frames[0]!.system, frames[0]!.partners));
-    const { pair } = finish(strongestPair(frames[0]!, survey));
-    expect([pair?.first, pair?.second]).toEqual([0, 1]);
+    expect(strongest(text)).toEqual({ pair: [0, 1], noted: [] });
+  });
+
+  it('is that of two ions, a little stronger than a noted pair of waters', () => {
+    const text = `8\nfragment_atoms="1-3 4-6 7 8" fragment_charges="0 0 0.5 -0.5"\n${WATERS}Na 60 0 0\nCl 80 0 0\n`;
+    expect(strongest(text)).toEqual({ pair: [2, 3], noted: [[0, 1]] });
+  });
+
+  it('is that of touching waters, which count without the medium', () => {
+    const text = `8\nfragment_atoms="1-3 4-6 7 8" fragment_charges="0 0 1.7 -1.7"\n${WATERS}Na 60 0 0\nCl 65 0 0\n`;
+    const settings = { temperatureK: 2000, relativePermittivity: 80, tolerance: 0.9 };
+    expect(strongest(text, settings)).toEqual({ pair: [0, 1], noted: [] });
   });
 });

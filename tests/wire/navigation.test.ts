@@ -315,6 +315,18 @@ describe('the selection grows', () => {
     ]);
   });
 
+  it('takes the blanks around a line before its fragment', async () => {
+    const text = LIST.replaceAll(/^(H|O) (.*)$/gm, '  $1 $2 ');
+    expect((await grown(text, { line: 6, character: 2 })).slice(0, 4)).toEqual([
+      'H',
+      LINES[6],
+      `  ${LINES[6]} `,
+      LINES.slice(5, 8)
+        .map((line) => `  ${line} `)
+        .join('\n'),
+    ]);
+  });
+
   it('over the run of lines where a fragment does not stand together', async () => {
     const text = LIST.replace('"7 1-3 4,5-6"', '"7 1,5-6 4,2-3"');
     expect((await grown(text, { line: 7, character: 0 })).slice(0, 3)).toEqual([
