@@ -3,6 +3,7 @@ import { readdirSync } from 'node:fs';
 import { readFile, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { build } from 'esbuild';
+import { refuseMissing, sleepingUnits } from './server/esbuild-browser.mjs';
 
 const { version } = JSON.parse(await readFile(new URL('package.json', import.meta.url), 'utf8'));
 
@@ -45,6 +46,14 @@ const lazyCommands = {
 /** What goes into the .vsix is made small; names are kept so that a stack trace stays readable. */
 const packaged = { ...shared, minify: true, keepNames: true };
 
+const forBrowser = { ...packaged, platform: 'browser', target: 'es2022' };
+
+const browserUnits = await build({
+  ...forBrowser,
+  entryPoints: ['server/src/physics/unit-evaluator.ts'],
+  write: false,
+});
+
 const results = await Promise.all([
   build({
     ...packaged,
@@ -77,19 +86,35 @@ const results = await Promise.all([
   }),
   build({
     ...packaged,
-    platform: 'browser',
-    target: 'es2022',
-    format: 'iife',
-    entryPoints: { panel: 'client/panel/main.ts' },
-    outdir: 'client/dist',
-  }),
-  build({
-    ...packaged,
     ...withLazyUnits,
     entryPoints: ['server/src/entry/server.ts'],
     outfile: 'server/dist/server.cjs',
   }),
+  build({
+    ...forBrowser,
+    entryPoints: ['client/src/browser.ts'],
+    outfile: 'client/dist/browser.js',
+    external: ['vscode'],
+  }),
+  build({
+    ...forBrowser,
+    format: 'iife',
+    entryPoints: ['server/src/entry/worker.ts'],
+    outfile: 'server/dist/worker.js',
+    plugins: [sleepingUnits(browserUnits.outputFiles[0].text)],
+  }),
+  build({
+    ...forBrowser,
+    format: 'iife',
+    entryPoints: { panel: 'client/panel/main.ts' },
+    outdir: 'client/dist',
+  }),
 ]);
+
+const [browserClient, worker, panel] = results.slice(-3);
+refuseMissing(browserClient.metafile, ['vscode']);
+refuseMissing(worker.metafile);
+refuseMissing(panel.metafile);
 
 /** The licences of the packages that a bundle took in; they ask to be passed on with it. */
 async function noticesOf(metafiles) {
@@ -108,4 +133,7 @@ async function noticesOf(metafiles) {
   return notices.join(`\n${'-'.repeat(78)}\n\n`);
 }
 
-await writeFile('server/dist/NOTICES.txt', await noticesOf(results.map((result) => result.metafile)));
+await writeFile(
+  'server/dist/NOTICES.txt',
+  await noticesOf([...results, browserUnits].map((result) => result.metafile)),
+);

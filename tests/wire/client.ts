@@ -1,9 +1,14 @@
 import { type ChildProcess, spawn } from 'node:child_process';
 import { resolve } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { Worker } from 'node:worker_threads';
 import {
+  AbstractMessageReader,
+  AbstractMessageWriter,
   type ClientCapabilities,
   ConfigurationRequest,
   createProtocolConnection,
+  type DataCallback,
   type Diagnostic,
   DidChangeConfigurationNotification,
   DidChangeTextDocumentNotification,
@@ -18,6 +23,9 @@ import {
   InitializeRequest,
   type InitializeResult,
   LSPErrorCodes,
+  type Message,
+  type MessageReader,
+  type MessageWriter,
   type ProtocolConnection,
   PublishDiagnosticsNotification,
   type PublishDiagnosticsParams,
@@ -46,11 +54,70 @@ export interface ClientOptions {
   readonly files?: Readonly<Record<string, string>>;
   /** The server's program (default: the built server). */
   readonly server?: string;
+  /** The program of a server that is a web worker, in place of {@link server}. */
+  readonly worker?: string;
   /** A module that Node loads before the server, and that answers what {@link WireClient.askPreloaded} asks. */
   readonly preload?: string;
 }
 
-/** A client of the built server over a real connection (standard input and output of a process). */
+/** Where a server runs and how it is spoken to. */
+interface Running {
+  readonly reader: MessageReader;
+  readonly writer: MessageWriter;
+  readonly process: ChildProcess | null;
+  /** Its exit status, once it has ended. */
+  readonly exit: Promise<number | null>;
+}
+
+function runProcess({ server = 'server/dist/server.cjs', preload }: ClientOptions): Running {
+  const loaded = preload === undefined ? [] : ['--expose-gc', '--require', resolve(preload)];
+  const child = spawn('node', [...loaded, resolve(server), '--stdio'], {
+    stdio: ['pipe', 'pipe', 'inherit', ...(preload === undefined ? [] : ['ipc' as const])],
+  });
+  return {
+    reader: new StreamMessageReader(child.stdout!),
+    writer: new StreamMessageWriter(child.stdin!),
+    process: child,
+    exit: new Promise((done) => child.on('exit', done)),
+  };
+}
+
+class WorkerReader extends AbstractMessageReader {
+  constructor(readonly worker: Worker) {
+    super();
+  }
+
+  listen(callback: DataCallback) {
+    this.worker.on('message', callback);
+    return { dispose: () => this.worker.off('message', callback) };
+  }
+}
+
+class WorkerWriter extends AbstractMessageWriter {
+  constructor(readonly worker: Worker) {
+    super();
+  }
+
+  write(message: Message): Promise<void> {
+    this.worker.postMessage(message);
+    return Promise.resolve();
+  }
+
+  end(): void {}
+}
+
+function runWorker(script: string): Running {
+  const scope = fileURLToPath(new URL('browser-worker.cjs', import.meta.url));
+  const worker = new Worker(scope, { workerData: resolve(script) });
+  return {
+    reader: new WorkerReader(worker),
+    writer: new WorkerWriter(worker),
+    process: null,
+    exit: new Promise((done) => worker.on('exit', done)),
+  };
+}
+
+/** A client of the built server over a real connection (standard input and output of a process, or the messages of a worker). */
 export class WireClient {
   readonly connection: ProtocolConnection;
   readonly published: PublishDiagnosticsParams[] = [];
@@ -60,22 +127,17 @@ export class WireClient {
   settings: unknown;
   files: Record<string, string>;
   initialized: InitializeResult | undefined;
-  readonly #process: ChildProcess;
+  readonly #process: ChildProcess | null;
   readonly #exit: Promise<number | null>;
   readonly #waiting: { test: () => boolean; done: () => void }[] = [];
 
-  private constructor({ settings = {}, files = {}, server = 'server/dist/server.cjs', preload }: ClientOptions) {
-    this.settings = settings;
-    this.files = { ...files };
-    const loaded = preload === undefined ? [] : ['--expose-gc', '--require', resolve(preload)];
-    this.#process = spawn('node', [...loaded, resolve(server), '--stdio'], {
-      stdio: ['pipe', 'pipe', 'inherit', ...(preload === undefined ? [] : ['ipc' as const])],
-    });
-    this.#exit = new Promise((done) => this.#process.on('exit', done));
-    this.connection = createProtocolConnection(
-      new StreamMessageReader(this.#process.stdout!),
-      new StreamMessageWriter(this.#process.stdin!),
-    );
+  private constructor(options: ClientOptions) {
+    this.settings = options.settings ?? {};
+    this.files = { ...options.files };
+    const running = options.worker === undefined ? runProcess(options) : runWorker(options.worker);
+    this.#process = running.process;
+    this.#exit = running.exit;
+    this.connection = createProtocolConnection(running.reader, running.writer);
     this.connection.onRequest('polewise/readFiles', ({ names }: { names: string[] }) =>
       names.map((name) => this.files[name] ?? null),
     );
@@ -180,8 +242,8 @@ export class WireClient {
   /** Sends a message to the module loaded before the server; its next message is the answer. */
   askPreloaded(question: string): Promise<unknown> {
     return new Promise((done, failed) => {
-      this.#process.once('message', done);
-      this.#process.send(question, (error) => error && failed(error));
+      this.#process!.once('message', done);
+      this.#process!.send(question, (error) => error && failed(error));
     });
   }
 

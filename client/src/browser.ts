@@ -1,0 +1,27 @@
+import { type ExtensionContext, Uri } from 'vscode';
+import { LanguageClient } from 'vscode-languageclient/browser';
+import { start } from './start';
+
+let client: LanguageClient | undefined;
+let worker: Worker | undefined;
+
+/** Entry in a browser: the server is a web worker. */
+export async function activate(context: ExtensionContext): Promise<void> {
+  const script = Uri.joinPath(context.extensionUri, 'server/dist/worker.js').toString(true);
+  // A client that starts again wants a worker of its own.
+  const startWorker = (): Promise<Worker> => {
+    worker?.terminate();
+    worker = new Worker(script);
+    return Promise.resolve(worker);
+  };
+  await start(context, (options) => {
+    client = new LanguageClient('polewise', 'Polewise', startWorker, options);
+    return client;
+  });
+}
+
+export async function deactivate(): Promise<void> {
+  await client?.stop();
+  worker?.terminate();
+  client = worker = undefined;
+}
