@@ -1,5 +1,10 @@
 import { type ExtensionContext, Uri } from 'vscode';
-import { LanguageClient } from 'vscode-languageclient/browser';
+import {
+  BrowserMessageReader,
+  BrowserMessageWriter,
+  LanguageClient,
+  type MessageTransports,
+} from 'vscode-languageclient/browser';
 import { start } from './start';
 
 let client: LanguageClient | undefined;
@@ -8,11 +13,11 @@ let worker: Worker | undefined;
 /** Entry in a browser: the server is a web worker. */
 export async function activate(context: ExtensionContext): Promise<void> {
   const script = Uri.joinPath(context.extensionUri, 'server/dist/worker.js').toString(true);
-  // A client that starts again wants a worker of its own.
-  const startWorker = (): Promise<Worker> => {
+  // A client that starts again wants a worker of its own. The library would not know a worker made here: the host's `Worker` is not its own.
+  const startWorker = (): Promise<MessageTransports> => {
     worker?.terminate();
     worker = new Worker(script);
-    return Promise.resolve(worker);
+    return Promise.resolve({ reader: new BrowserMessageReader(worker), writer: new BrowserMessageWriter(worker) });
   };
   await start(context, (options) => {
     client = new LanguageClient('polewise', 'Polewise', startWorker, options);
