@@ -59,4 +59,7 @@ describe.sequential('the packaged extension in a real editor', () => {
   test('as a person uses it, in every theme', { timeout: LIMIT, retry: RETRIES }, (context) =>
     passes(context, 'person.mjs'),
   );
+  test('where there is nothing but a browser', { timeout: LIMIT, retry: RETRIES }, (context) =>
+    passes(context, 'web.mjs'),
+  );
 });

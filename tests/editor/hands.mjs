@@ -1,5 +1,6 @@
 // What a person does and sees in the editor; the flows are written in these.
-import { ok } from 'node:assert/strict';
+import { ok, strictEqual } from 'node:assert/strict';
+import { mkdirSync, readdirSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 
@@ -104,6 +105,24 @@ export class Person {
     await all.first().waitFor({ state: 'hidden', timeout: WAIT });
   }
 
+  /** Back to the text from wherever the keyboard is. */
+  async focusEditor() {
+    await this.page.keyboard.press('Control+1');
+    await this.see('.monaco-editor.focused');
+  }
+
+  /** Takes the remedy whose title has some words, at the place of the cursor. */
+  async quickFix(title) {
+    await this.page.keyboard.press('Control+.');
+    const row = await this.see('.action-widget .monaco-list-row', title);
+    await this.shot('quick-fix');
+    // The list has the keyboard, and something to catch the mouse lies over it.
+    const isChosen = async () => /\bfocused\b/.test((await row.getAttribute('class')) ?? '');
+    for (let step = 0; step < 50 && !(await isChosen()); step++) await this.page.keyboard.press('ArrowDown');
+    await this.page.keyboard.press('Enter');
+    await this.gone('.action-widget');
+  }
+
   /** Runs a command by its title. */
   async command(title) {
     await this.page.keyboard.press('F1');
@@ -113,5 +132,43 @@ export class Person {
     // The list is filtered once more after it is shown.
     await this.page.waitForTimeout(300);
     await this.page.keyboard.press('Enter');
+  }
+}
+
+/** A window that has never been used. */
+export async function newWindow(browser) {
+  const context = await browser.newContext({ locale: 'en-US', viewport: { width: 1280, height: 800 } });
+  const page = await context.newPage();
+  const errors = [];
+  page.on('pageerror', (error) => errors.push(String(error)));
+  return {
+    context,
+    page,
+    open: (server, place) => page.goto(`${server.url}?${new URLSearchParams({ folder: place.samples })}`),
+    checkErrors: () => strictEqual(errors.length, 0, errors.join('\n')),
+  };
+}
+
+/** Makes room for the screenshots of some themes; those of an earlier run go. */
+export function makeShots(...themes) {
+  mkdirSync(SHOTS, { recursive: true });
+  for (const name of readdirSync(SHOTS)) {
+    if (name.endsWith('.png') && themes.includes(name.split('-')[0])) rmSync(join(SHOTS, name));
+  }
+}
+
+/** Runs flows one after another in one window: a new one for each would take longer than the flow. */
+export async function runFlows(page, place, theme, flows) {
+  for (const flow of flows) {
+    const started = Date.now();
+    const person = new Person(page, place, { theme, flow: flow.name });
+    try {
+      await person.tidyUp();
+      await flow.run(person);
+    } catch (error) {
+      await person.shot('failed').catch(() => {});
+      throw error;
+    }
+    console.log(`passed ${theme} ${flow.name} (${Date.now() - started} ms)`);
   }
 }
