@@ -2,6 +2,7 @@ import type { FindingCollector } from '../base/finding';
 import type { Entry } from '../formats/annotation/entries';
 import { SELECTED_KEYS } from '../formats/annotation/keys';
 import { listItems, valueText } from '../formats/annotation/lists';
+import { meantAxis, meantCharge } from '../formats/annotation/meant';
 import { selectorMatches, selectorWeight } from '../formats/pdb/remarks';
 import type { FrameTree, RemarkAnnotation, Residue } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
@@ -105,7 +106,7 @@ function bindFragment(
         note.name = valueText(reader.text, entry).trim() || null;
         break;
       case 'charge':
-        note.chargeE = reader.number(entry.inner, 'charge');
+        note.chargeE = reader.number(entry.inner, 'charge', meantCharge);
         break;
       case 'polarizability': {
         const value = reader.quantity(entry.inner, 'volumeA3', 'polarizability');
@@ -155,7 +156,9 @@ function axisByNames(reader: ValueReader, frame: FrameTree, set: FragmentSet, f:
     sides.some((names) => names.length > MOST_AXIS_NAMES) ||
     sides.some((names) => names.some((name) => name === ''))
   ) {
-    return reader.invalid(entry.value, `"${reader.shown(entry.inner)}" is no axis; write atom names as in O>H1,H2.`);
+    const meant = meantAxis(reader.shown(entry.inner));
+    const reason = `"${reader.shown(entry.inner)}" is no axis; write atom names as in O>H1,H2.`;
+    return reader.invalid(entry.value, reason, meant, entry.inner);
   }
   const members = residuesOf(frame, set, f).flatMap((residue) =>
     residue.atoms.map((atom, k) => ({ atom, name: residue.atomNames[k]! })),

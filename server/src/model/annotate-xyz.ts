@@ -3,6 +3,7 @@ import type { Span } from '../base/span';
 import { finish, inStrides, type Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
 import { listGroups, listItems, listWords } from '../formats/annotation/lists';
+import { meantAxis, meantCharge, nearestWord, replacement } from '../formats/annotation/meant';
 import { AtomFlag, type FrameTree } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
@@ -16,6 +17,9 @@ import { atomsOf, type FragmentSet } from './fragment-set';
 const MOST_FIXED_ENTRIES = 1000;
 /** Fragments looked at between two pauses. */
 const FRAGMENTS_A_STEP = 1024;
+/** A longer formula, and one in a longer list, is not mended. */
+const LONGEST_KIND = 40;
+const LONGEST_LIST = 2000;
 /** An axis names a few atoms; what names more is no axis. */
 const MOST_AXIS_NAMES = 200;
 
@@ -121,7 +125,7 @@ class XyzBinder {
     const names = entryOf('fragment_names');
     if (names !== undefined) this.#bindNames(names);
     each('fragment_charges', 1, (f, [item]) => {
-      this.#notes[f]!.chargeE = this.#reader.number(item!, 'charge');
+      this.#notes[f]!.chargeE = this.#reader.number(item!, 'charge', meantCharge);
     });
     each('fragment_polarizabilities', 1, (f, [item]) => {
       const value = this.#reader.number(item!, 'polarizability');
@@ -238,7 +242,14 @@ class XyzBinder {
       const colon = words.indexOf(':');
       const formula = colon < 0 ? undefined : canonicalFormula(words.slice(0, colon));
       if (formula === undefined || colon === words.length - 1) {
-        this.#reader.invalid(group, `"${this.#reader.shown(group)}" in ${entry.key} is no FORMULA:VALUE.`);
+        const place = { start: group.start, end: group.start + Math.max(0, colon) };
+        const meant = colon > 0 && colon < words.length - 1 ? this.#nearestKind(words.slice(0, colon), entry) : null;
+        this.#reader.invalid(
+          group,
+          `"${this.#reader.shown(group)}" in ${entry.key} is no FORMULA:VALUE.`,
+          meant,
+          place,
+        );
         continue;
       }
       const value = { start: group.start + colon + 1, end: group.end };
@@ -247,11 +258,22 @@ class XyzBinder {
       yield* inStrides(matches.length, FRAGMENTS_A_STEP, (n) => assign(matches[n]!));
       // A fragment with a hole has another composition than was meant; the hole has been told.
       if (matches.length === 0 && !this.#hasHoles()) {
-        problems.add('selector-unmatched', { start: group.start, end: group.start + colon }, () => {
-          return `No fragment of the frame has the composition ${formula}.`;
-        });
+        const place = { start: group.start, end: group.start + colon };
+        problems.add(
+          'selector-unmatched',
+          place,
+          () => `No fragment of the frame has the composition ${formula}.`,
+          () => replacement(place, this.#nearestKind(formula, entry)),
+        );
       }
     }
+  }
+
+  /** The one composition of the frame that a formula nearly is, where the key does not speak of it yet. */
+  #nearestKind(formula: string, entry: Entry): string | null {
+    if (formula.length > LONGEST_KIND || entry.value.end - entry.value.start > LONGEST_LIST) return null;
+    const meant = nearestWord(formula, new Set(this.#formulas));
+    return meant === null || kindFormulas(this.#reader.text, [entry]).includes(meant) ? null : meant;
   }
 
   #hasHoles(): boolean {
@@ -287,10 +309,10 @@ class XyzBinder {
     const before = mark < 0 ? [] : read(group.start, group.start + mark);
     const after = mark < 0 ? [] : read(group.start + mark + 1, group.end);
     if (before.length > 0 && after.length > 0) return { before, after, span: group };
-    if (/^[\d,-]+>[\d,-]+$/.test(words)) {
-      return this.#reader.invalid(group, `The axis "${this.#reader.shown(group)}" names atoms outside 1 to ${count}.`);
-    }
-    return this.#reader.invalid(group, `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`);
+    const reason = /^[\d,-]+>[\d,-]+$/.test(words)
+      ? `The axis "${this.#reader.shown(group)}" names atoms outside 1 to ${count}.`
+      : `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`;
+    return this.#reader.invalid(group, reason, meantAxis(this.#reader.shown(group)));
   }
 
   /** Reads an axis by symbols (`O>H`), for all fragments that it is given to. */
@@ -305,6 +327,7 @@ class XyzBinder {
       return this.#reader.invalid(
         value,
         `"${this.#reader.shown(value)}" names no atoms on both sides of ">"; write symbols as in O>H.`,
+        meantAxis(this.#reader.shown(value)),
       );
     };
   }

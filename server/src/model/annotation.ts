@@ -4,6 +4,16 @@ import type { Span } from '../base/span';
 import type { Entry } from '../formats/annotation/entries';
 import { likelyKey } from '../formats/annotation/keys';
 import { itemNumber, listItems, valueText } from '../formats/annotation/lists';
+import {
+  meantCharge,
+  meantDipoleUnit,
+  meantFlag,
+  meantMultiplicity,
+  meantNumber,
+  meantPermittivity,
+  meantQuantity,
+  replacement,
+} from '../formats/annotation/meant';
 import { findMedium } from '../physics/media';
 import { type Dimension, readQuantity } from '../physics/quantity';
 import { dipoleUnitEA, standardDipoleUnit } from '../physics/units';
@@ -69,6 +79,9 @@ export function emptyNotes(): FragmentNotes {
   };
 }
 
+/** Longer values are not mended. */
+const LONGEST_MENDED = 80;
+
 /** Reads single values of entries, reporting what cannot be read. */
 export class ValueReader {
   readonly text: Snapshot;
@@ -79,8 +92,14 @@ export class ValueReader {
     this.problems = problems;
   }
 
-  invalid(span: Span, reason: string): null {
-    this.problems.add('value-invalid', span, () => reason);
+  /** Reports a value; `meant` is what is surely meant by it, and `at` where that goes. */
+  invalid(span: Span, reason: string, meant: string | null = null, at = span): null {
+    this.problems.add(
+      'value-invalid',
+      span,
+      () => reason,
+      () => replacement(at, meant),
+    );
     return null;
   }
 
@@ -90,25 +109,34 @@ export class ValueReader {
   }
 
   quantity(span: Span, dimension: Dimension, what: string, bareUnit = 1): number | null {
-    const result = readQuantity(this.text.slice(span.start, span.end), dimension, bareUnit);
+    const words = this.text.slice(span.start, span.end);
+    const result = readQuantity(words, dimension, bareUnit);
     if (result.ok) return result.value;
+    const meant = words.length > LONGEST_MENDED ? null : meantQuantity(words, dimension);
     if (result.kind === 'unit') {
       this.problems.add(
         'unit-unknown',
         span,
         () => `The ${what} "${this.shown(span)}" cannot be read. ${result.reason}`,
+        () => replacement(span, meant),
       );
       return null;
     }
-    return this.invalid(span, `The ${what} "${this.shown(span)}" is no quantity. ${result.reason}`);
+    return this.invalid(span, `The ${what} "${this.shown(span)}" is no quantity. ${result.reason}`, meant);
   }
 
   /** A finite number; `nan` and anything else that is none gives null, the latter with a finding. */
-  number(span: Span, what: string): number | null {
+  number(span: Span, what: string, meantBy: (text: string) => string | null = meantNumber): number | null {
     const { value, readable } = itemNumber(this.text, span);
     if (!Number.isNaN(value)) return value;
     if (!readable) {
-      this.problems.add('number-unreadable', span, () => `The ${what} "${this.shown(span)}" is no finite number.`);
+      const isShort = span.end - span.start <= LONGEST_MENDED;
+      this.problems.add(
+        'number-unreadable',
+        span,
+        () => `The ${what} "${this.shown(span)}" is no finite number.`,
+        () => replacement(span, isShort ? meantBy(this.text.slice(span.start, span.end)) : null),
+      );
     }
     return null;
   }
@@ -117,7 +145,12 @@ export class ValueReader {
   dipoleUnit(entry: Entry): string | null {
     const unit = standardDipoleUnit(valueText(this.text, entry));
     if (unit !== undefined) return unit;
-    this.problems.add('unit-unknown', entry.value, () => `"${this.shown(entry.inner)}" is no unit of a dipole.`);
+    this.problems.add(
+      'unit-unknown',
+      entry.value,
+      () => `"${this.shown(entry.inner)}" is no unit of a dipole.`,
+      () => replacement(entry.inner, meantDipoleUnit(this.shown(entry.inner))),
+    );
     return null;
   }
 
@@ -143,6 +176,8 @@ export class ValueReader {
     return this.invalid(
       entry.value,
       `relative_permittivity "${this.shown(entry.inner)}" is no number from 1 up and no known medium.`,
+      meantPermittivity(this.shown(entry.inner)),
+      entry.inner,
     );
   }
 
@@ -165,9 +200,14 @@ export class ValueReader {
     return {
       relativePermittivity: permittivity ? this.permittivity(permittivity) : null,
       temperatureK: temperature ? this.temperature(temperature) : null,
-      totalChargeE: total ? this.#placed(total, 'total charge', Number.isFinite) : null,
+      totalChargeE: total ? this.#placed(total, 'total charge', meantCharge, Number.isFinite) : null,
       multiplicity: multiplicity
-        ? this.#placed(multiplicity, 'multiplicity', (value) => Number.isInteger(value) && value >= 1)
+        ? this.#placed(
+            multiplicity,
+            'multiplicity',
+            meantMultiplicity,
+            (value) => Number.isInteger(value) && value >= 1,
+          )
         : null,
       dipoleEA: dipole ? this.#frameDipole(dipole) : null,
       periodic: periodic ? this.#flag(periodic) : null,
@@ -189,14 +229,19 @@ export class ValueReader {
         item,
         () =>
           `"${this.shown(item)}" in silence is no finding${meant === undefined ? '' : `; did you mean "${meant}"?`}.`,
-        () => (meant === undefined ? {} : { fix: { title: `Replace by ${meant}`, edits: [{ ...item, text: meant }] } }),
+        () => replacement(item, meant),
       );
     }
     return codes;
   }
 
-  #placed(entry: Entry, what: string, allowed: (value: number) => boolean): Placed<number> | null {
-    const value = this.number(entry.inner, what);
+  #placed(
+    entry: Entry,
+    what: string,
+    meantBy: (text: string) => string | null,
+    allowed: (value: number) => boolean,
+  ): Placed<number> | null {
+    const value = this.number(entry.inner, what, meantBy);
     if (value === null) return null;
     if (allowed(value)) return { value, span: entry.value };
     return this.invalid(entry.value, `The ${what} ${value} is not allowed.`);
@@ -216,6 +261,7 @@ export class ValueReader {
     const word = valueText(this.text, entry).trim().toLowerCase();
     if (word === 'true' || word === 't' || word === '1' || word === 'yes') return true;
     if (word === 'false' || word === 'f' || word === '0' || word === 'no') return false;
-    return this.invalid(entry.value, `"${this.shown(entry.inner)}" is neither true nor false.`);
+    const meant = meantFlag(this.shown(entry.inner));
+    return this.invalid(entry.value, `"${this.shown(entry.inner)}" is neither true nor false.`, meant, entry.inner);
   }
 }

@@ -1,4 +1,4 @@
-import type { FindingCollector } from '../base/finding';
+import type { FindingCollector, FindingDetail } from '../base/finding';
 import type { Span } from '../base/span';
 import type { Entry } from '../formats/annotation/entries';
 import { listGroups } from '../formats/annotation/lists';
@@ -35,14 +35,22 @@ export function readFragmentAtoms(
       }
       let taken = -1;
       let expected = from - 1;
+      const kept: Range[] = [];
       for (let atom = free.next(expected); atom < to; atom = free.next(atom)) {
         if (taken < 0 && atom > expected) taken = expected;
+        addTo(kept, atom + 1);
         expected = atom + 1;
         labels[atom] = label;
         free.take(atom);
       }
       if (taken < 0 && expected < to) taken = expected;
-      if (taken >= 0) problems.add('fragments-overlap', span, () => `Atom ${taken + 1} is listed already.`);
+      if (taken < 0) continue;
+      problems.add(
+        'fragments-overlap',
+        span,
+        () => `Atom ${taken + 1} is listed already.`,
+        () => overlapFix(text, group, span, kept),
+      );
     }
     label++;
   }
@@ -59,6 +67,39 @@ export function readFragmentAtoms(
     });
   }
   return labels;
+}
+
+interface Range {
+  from: number;
+  to: number;
+}
+
+/** A list with more pieces is not written anew. */
+const MOST_PIECES = 40;
+
+/** Puts a number behind others, in runs; past a few pieces they are only counted. */
+function addTo(ranges: Range[], number: number): void {
+  const last = ranges[ranges.length - 1];
+  if (last !== undefined && last.to === number - 1) last.to = number;
+  else if (ranges.length <= MOST_PIECES) ranges.push({ from: number, to: number });
+}
+
+/** Leaves of a range the atoms that are in no earlier fragment; with none left the range goes, and with it its comma. */
+function overlapFix(text: Snapshot, group: Span, span: Span, kept: readonly Range[]): FindingDetail {
+  if (kept.length > MOST_PIECES) return {};
+  const title = 'Leave the atoms to the first fragment';
+  const words = kept.map(({ from, to }) => (from === to ? String(from) : `${from}-${to}`)).join(',');
+  if (words !== '') return { fix: { title, edits: [{ ...span, text: words }] } };
+  let { start, end } = span;
+  const isSeparator = (unit: number | undefined) => unit === COMMA || unit === BLANK;
+  while (end < group.end && isSeparator(text.bytes[end])) end++;
+  if (end === group.end) while (start > group.start && isSeparator(text.bytes[start - 1])) start--;
+  // A group that is left without atoms goes with the blank before it; in brackets it would leave them empty.
+  if (start === group.start && end === group.end) {
+    if (text.bytes[start - 1] !== BLANK) return {};
+    start--;
+  }
+  return { fix: { title, edits: [{ start, end, text: '' }] } };
 }
 
 /** Which of the first `count` numbers are not taken yet; skips over taken ones in almost constant time. */

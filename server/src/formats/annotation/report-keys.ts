@@ -1,6 +1,7 @@
 import type { FindingCollector } from '../../base/finding';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from './entries';
+import { portable, removal } from './entry-fixes';
 import { likelyKey } from './keys';
 import { typedValue } from './values';
 
@@ -37,7 +38,10 @@ export function reportKeys(
         'key-repeated',
         entry.keySpan,
         () => `"${entry.key}" is given a second time; the first one is used.`,
-        () => ({ related: [{ ...earlier.keySpan, message: 'The first one stands here.' }] }),
+        () => ({
+          related: [{ ...earlier.keySpan, message: 'The first one stands here.' }],
+          fix: removal(text, entry),
+        }),
       );
     }
     reportSyntax(text, entry, problems);
@@ -64,6 +68,7 @@ function reportSyntax(text: Snapshot, entry: Entry, problems: FindingCollector):
       'value-unportable',
       entry.value,
       () => `Other readers of extended XYZ will not take this value. ${value.reason}`,
+      () => portable(text, entry),
     );
   }
 }

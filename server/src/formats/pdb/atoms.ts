@@ -1,5 +1,6 @@
 import type { FindingCollector } from '../../base/finding';
 import { scanNumberInto, skipBlanks, trimEnd } from '../../text/numbers';
+import { meantNumber, replacement } from '../annotation/meant';
 import { AtomBuilder } from '../atom-builder';
 import { readSpecies, symbolNumber } from '../species';
 import { AtomFlag, type AtomTable } from '../tree';
@@ -148,9 +149,16 @@ export class ModelAtoms {
         continue;
       }
       this.#atoms.flags[atom]! |= AtomFlag.noPosition;
-      this.#problems.add('number-unreadable', { start, end }, () => {
-        return `The ${COORDINATE_NAMES[axis]!} coordinate "${text.slice(start, end)}" is no finite number.`;
-      });
+      this.#problems.add(
+        'number-unreadable',
+        { start, end },
+        () => `The ${COORDINATE_NAMES[axis]!} coordinate "${text.slice(start, end)}" is no finite number.`,
+        () => {
+          const meant = meantNumber(text.slice(start, end));
+          // In fixed columns it must not be shorter or longer.
+          return replacement({ start, end }, meant?.length === end - start ? meant : null);
+        },
+      );
     }
     if (this.#atoms.flags[atom]! & AtomFlag.noPosition) this.#spoil(atom);
     return true;

@@ -2,6 +2,7 @@ import { FindingCollector } from '../../base/finding';
 import { indexLines } from '../../text/lines';
 import type { Snapshot } from '../../text/snapshot';
 import { valueText } from '../annotation/lists';
+import { meantChargeColumn, replacement } from '../annotation/meant';
 import type { CoordinateTree, FrameTree, RemarkAnnotation } from '../tree';
 import { finishTree } from '../unreadable';
 import { ModelAtoms } from './atoms';
@@ -77,7 +78,7 @@ export function parsePdb(text: Snapshot): CoordinateTree {
   }
   end(lines.count);
   for (const frame of frames) frame.bonds = connections.bondsOf(frame);
-  checkRemarks(remarks, frames, text, problems);
+  checkRemarks(remarks, frames, { snapshot: text, lines }, problems);
   return finishTree({ language: 'pdb', text, lines, frames, remarks }, problems);
 }
 
@@ -145,9 +146,12 @@ function readChargeColumn(
     const first = Number(match?.[1]);
     const last = Number(match?.[2]);
     if (match !== null && first >= 55 && last >= first && last <= 200) return [first - 1, last];
-    problems.add('value-invalid', entry.value, () => {
-      return 'charge_column is occupancy, bfactor, or a range of columns from 55 on such as 71-76.';
-    });
+    problems.add(
+      'value-invalid',
+      entry.value,
+      () => 'charge_column is occupancy, bfactor, or a range of columns from 55 on such as 71-76.',
+      () => replacement(entry.inner, meantChargeColumn(value.slice(0, 40))),
+    );
     return null;
   }
   return null;

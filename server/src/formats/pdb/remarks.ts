@@ -1,12 +1,17 @@
 import type { FindingCollector } from '../../base/finding';
+import type { Span } from '../../base/span';
 import type { LineIndex } from '../../text/lines';
 import type { Snapshot } from '../../text/snapshot';
+import type { IndexedText } from '../../text/splice';
 import { type Entry, scanEntries } from '../annotation/entries';
+import { lineRemoval, removal } from '../annotation/entry-fixes';
 import { FILE_KEYS, likelyKey, SELECTED_KEYS } from '../annotation/keys';
 import { valueText } from '../annotation/lists';
+import { meantSelector, replacement } from '../annotation/meant';
 import { reportKeys } from '../annotation/report-keys';
 import type { FrameTree, RemarkAnnotation, Residue, Selector } from '../tree';
 import { decodeHybrid36 } from './hybrid36';
+import { nearestSelector } from './nearest-selector';
 
 const FIRST_FREE_REMARK = 6;
 const LAST_FREE_REMARK = 99;
@@ -45,6 +50,7 @@ export function readRemark(
       'value-invalid',
       selectorEntry.value,
       () => 'A selector is chain:residue:number with an optional insertion code.',
+      () => replacement(selectorEntry.inner, meantSelector(valueText(text, selectorEntry).slice(0, 40))),
     );
     return null;
   }
@@ -87,16 +93,20 @@ export function selectorWeight(selector: Selector): number {
 export function checkRemarks(
   remarks: readonly RemarkAnnotation[],
   frames: readonly FrameTree[],
-  text: Snapshot,
+  { snapshot: text, lines }: IndexedText,
   problems: FindingCollector,
 ): void {
   const first = new Map<string, { line: number; entry: Entry }>();
   const residues = residuesByNumber(remarks.some(({ selector }) => selector !== null) ? frames : []);
   for (const { line, selector, selectorSpan, entries } of remarks) {
     if (selector !== null && !isMatched(selector, residues)) {
-      problems.add('selector-unmatched', selectorSpan, () => {
-        return `No fragment of the file is ${text.slice(selectorSpan.start, Math.min(selectorSpan.end, selectorSpan.start + 60))}.`;
-      });
+      problems.add(
+        'selector-unmatched',
+        selectorSpan,
+        () =>
+          `No fragment of the file is ${text.slice(selectorSpan.start, Math.min(selectorSpan.end, selectorSpan.start + 60))}.`,
+        () => replacement(innerOf(text, selectorSpan), nearestSelector(selector, residues.get(null)!)),
+      );
     }
     const owner = JSON.stringify(selector);
     for (const entry of entries) {
@@ -110,7 +120,10 @@ export function checkRemarks(
           entry.keySpan,
           () =>
             `"${entry.key}" is given on line ${earlier.line + 1} and again on line ${line + 1} for the same fragments; the first one is used.`,
-          () => ({ related: [{ ...earlier.entry.keySpan, message: 'The first one stands here.' }] }),
+          () => ({
+            related: [{ ...earlier.entry.keySpan, message: 'The first one stands here.' }],
+            fix: entries.length === 1 ? lineRemoval(lines, line) : removal(text, entry),
+          }),
         );
       }
     }
@@ -131,6 +144,12 @@ function residuesByNumber(frames: readonly FrameTree[]): Map<number | null, Resi
     else list.push(residue);
   }
   return byNumber;
+}
+
+/** A value without the quotes around it. */
+function innerOf({ bytes }: Snapshot, { start, end }: Span): Span {
+  const isQuoted = end - start > 1 && (bytes[start] === 34 || bytes[start] === 39) && bytes[end - 1] === bytes[start];
+  return isQuoted ? { start: start + 1, end: end - 1 } : { start, end };
 }
 
 function isMatched(selector: Selector, residues: ReadonlyMap<number | null, readonly Residue[]>): boolean {

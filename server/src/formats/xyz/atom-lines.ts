@@ -5,6 +5,7 @@ import type { LineIndex } from '../../text/lines';
 import { isBlank, scanCount, scanNumberInto, skipBlanks, skipField, trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from '../annotation/entries';
+import { meantNumber, replacement } from '../annotation/meant';
 import { AtomBuilder } from '../atom-builder';
 import { likelySymbol, readSpecies } from '../species';
 import { type AtomField, AtomFlag } from '../tree';
@@ -136,6 +137,8 @@ export class AtomLineReader {
       'number-unreadable',
       { start, end },
       () => `The ${what} "${shown(this.#text, start, end)}" is no finite number.`,
+      () =>
+        replacement({ start, end }, end - start > 40 ? null : meantNumber(this.#text.slice(start, end), ['Å', 'A'])),
     );
   }
 

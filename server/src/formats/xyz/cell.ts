@@ -2,6 +2,7 @@ import type { FindingCollector } from '../../base/finding';
 import type { Snapshot } from '../../text/snapshot';
 import type { Entry } from '../annotation/entries';
 import { itemNumber, listItems } from '../annotation/lists';
+import { meantNumber, meantPeriodicity, replacement } from '../annotation/meant';
 import { readBoolean } from '../annotation/values';
 import type { FrameTree } from '../tree';
 
@@ -27,6 +28,7 @@ export function readCell(text: Snapshot, entries: readonly Entry[], problems: Fi
       'number-unreadable',
       span,
       () => `"${text.slice(span.start, Math.min(span.end, span.start + 40))}" in Lattice is no finite number.`,
+      () => replacement(span, meantNumber(text.slice(span.start, Math.min(span.end, span.start + 40)))),
     );
     return null;
   }
@@ -47,7 +49,13 @@ function readPeriodic(
     readBoolean(text.slice(item.start, Math.min(item.end, item.start + 8))),
   );
   if (flags.length !== 3 || flags.includes(undefined)) {
-    problems.add('value-invalid', entry.value, () => 'pbc needs three flags, each T or F.');
+    const meant = meantPeriodicity(text.slice(entry.inner.start, Math.min(entry.inner.end, entry.inner.start + 40)));
+    problems.add(
+      'value-invalid',
+      entry.value,
+      () => 'pbc needs three flags, each T or F.',
+      () => replacement(entry.value, meant === null ? null : `"${meant}"`),
+    );
     return null;
   }
   return [flags[0] === true, flags[1] === true, flags[2] === true];

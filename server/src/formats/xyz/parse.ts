@@ -1,5 +1,6 @@
 import { FindingCollector } from '../../base/finding';
 import type { Span } from '../../base/span';
+import { lineEndOf } from '../../text/line-end';
 import { indexLines, type LineIndex } from '../../text/lines';
 import { scanCount, scanNumber, skipBlanks, skipField, trimEnd } from '../../text/numbers';
 import type { Snapshot } from '../../text/snapshot';
@@ -139,7 +140,13 @@ class XyzReader {
       if (start === end) {
         if (this.#onlyBlankFrom(line) || this.#looksLikeHead(this.#nextFilled(line))) break;
         const span = { start: lines.starts[line]!, end };
-        this.#problems.add('field-missing', span, () => 'A blank line stands among the atoms.');
+        const whole = { start: span.start, end: lines.starts[line + 1]! };
+        this.#problems.add(
+          'field-missing',
+          span,
+          () => 'A blank line stands among the atoms.',
+          () => ({ fix: { title: 'Remove the blank line', edits: [{ ...whole, text: '' }] } }),
+        );
         continue;
       }
       if (isDigit(bytes[start]!) && this.#looksLikeHead(line)) break;
@@ -193,6 +200,7 @@ class XyzReader {
     const span = this.contentSpan(head);
     const atomLines = `${found} atom line${found === 1 ? '' : 's'}`;
     if (!hasHead) {
+      const lineEnd = lineEndOf(this.#text, this.#lines);
       this.#problems.add(
         'count-wrong',
         span,
@@ -200,7 +208,13 @@ class XyzReader {
         () => ({
           fix: {
             title: `Insert the count ${found} and an empty comment line`,
-            edits: [{ start: this.#lines.starts[head]!, end: this.#lines.starts[head]!, text: `${found}\n\n` }],
+            edits: [
+              {
+                start: this.#lines.starts[head]!,
+                end: this.#lines.starts[head]!,
+                text: `${found}${lineEnd}${lineEnd}`,
+              },
+            ],
           },
         }),
       );
