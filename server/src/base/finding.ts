@@ -17,6 +17,8 @@ export interface Fix {
   readonly edits: readonly TextEdit[];
 }
 
+export type FragmentPair = readonly [first: number, second: number];
+
 /** One thing found in a file, at an exact place. */
 export interface Finding extends Span {
   readonly code: FindingCode;
@@ -25,6 +27,8 @@ export interface Finding extends Span {
   readonly message: string;
   readonly related: readonly Related[];
   readonly fix?: Fix;
+  /** Pairs of fragments that it speaks of, the worst first; fragments of the frame from 0. */
+  readonly pairs?: readonly FragmentPair[];
   /** How many more of its code were met and only counted, on the last one kept. */
   readonly more?: number;
 }
@@ -33,6 +37,7 @@ export interface Finding extends Span {
 export interface FindingDetail {
   readonly related?: readonly Related[];
   readonly fix?: Fix;
+  readonly pairs?: readonly FragmentPair[];
 }
 
 /** A reason quotes pieces of the file; one that runs on is cut. */
@@ -49,6 +54,7 @@ export function finding(code: FindingCode, span: Span, reason: string, detail: F
     end: span.end,
     related: detail.related ?? [],
     ...(detail.fix === undefined ? {} : { fix: detail.fix }),
+    ...(detail.pairs === undefined ? {} : { pairs: detail.pairs }),
   };
 }
 

@@ -1,22 +1,13 @@
 import type { FindingCode } from '../base/catalogue';
-import type { Finding, Fix, TextEdit } from '../base/finding';
+import type { Finding, TextEdit } from '../base/finding';
 import type { Span } from '../base/span';
-
-/** A finding with the remedy that it offers. */
-export interface QuickFix {
-  readonly finding: Finding;
-  readonly fix: Fix;
-}
 
 /** Remedies that change no number and no atom: they may be applied all at once. */
 const SAFE: ReadonlySet<FindingCode> = new Set(['count-wrong', 'key-misspelt', 'array-length']);
 
-/** The remedies for the findings that a span touches. */
-export function quickFixesAt(findings: readonly Finding[], { start, end }: Span): QuickFix[] {
-  return findings.flatMap((finding) => {
-    const { fix } = finding;
-    return fix !== undefined && finding.start <= end && finding.end >= start ? [{ finding, fix }] : [];
-  });
+/** The findings that a span touches. */
+export function findingsIn(findings: readonly Finding[], span: Span): Finding[] {
+  return findings.filter(({ start, end }) => start <= span.end && end >= span.start);
 }
 
 /** The edits of all safe remedies, ascending; of two that touch the same place the first stands. */

@@ -24,6 +24,7 @@ import {
   type ThemeKind,
 } from './protocol';
 import { READING_CAPABILITIES, serveReading } from './reading';
+import { serveRewriting } from './rewriting';
 import { abilitiesOf, NO_ABILITIES, type Platform } from './session';
 import { type LibraryFile, libraryFileNames, readSettings, SettingsStore } from './settings';
 import { busyStatus, failedStatus, readyStatus } from './status';
@@ -152,6 +153,7 @@ export function startServer(connection: Connection, platform: Platform): void {
   serveNavigation(session);
   serveLens(session);
   serveActing(session);
+  serveRewriting(session);
 
   connection.onNotification(THEME_NOTIFICATION, (params: unknown) => {
     theme = themeOf(params);

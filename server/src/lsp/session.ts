@@ -28,6 +28,8 @@ export interface ClientAbilities {
   readonly snippets: boolean;
   /** Takes links that tell what they lead from. */
   readonly links: boolean;
+  /** Lets edits be looked at before they are made. */
+  readonly previews: boolean;
 }
 
 export const NO_ABILITIES: ClientAbilities = {
@@ -39,6 +41,7 @@ export const NO_ABILITIES: ClientAbilities = {
   snippets: false,
   refreshLenses: false,
   refreshHints: false,
+  previews: false,
 };
 
 export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): ClientAbilities {
@@ -47,6 +50,7 @@ export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): Cl
     configuration: workspace?.configuration === true,
     pull: textDocument?.diagnostic !== undefined,
     refresh: workspace?.diagnostics?.refreshSupport === true,
+    previews: workspace?.workspaceEdit?.changeAnnotationSupport !== undefined,
     lazyEdits: codeAction?.dataSupport === true && codeAction.resolveSupport?.properties.includes('edit') === true,
     refreshLenses: workspace?.codeLens?.refreshSupport === true,
     refreshHints: workspace?.inlayHint?.refreshSupport === true,

@@ -8,7 +8,7 @@ const COINCIDENT_A = 0.1;
 
 /** Reports atoms at one point, once for each atom that lies on an earlier one. */
 export function reportCoincident(context: RuleContext): void {
-  const { pairs, tree } = context.frame.model;
+  const { pairs, tree, fragments } = context.frame.model;
   const reported = new Set<number>();
   for (let k = 0; k < pairs.count; k++) {
     if (pairs.distanceA[k]! >= COINCIDENT_A) continue;
@@ -19,7 +19,10 @@ export function reportCoincident(context: RuleContext): void {
       'atoms-coincident',
       tree.fieldSpan(j, 'line'),
       () => `Atom ${j + 1} is ${shown(pairs.distanceA[k]!)} Å from atom ${i + 1}.`,
-      () => ({ related: [{ ...tree.fieldSpan(i, 'line'), message: `Atom ${i + 1}` }] }),
+      () => ({
+        related: [{ ...tree.fieldSpan(i, 'line'), message: `Atom ${i + 1}` }],
+        pairs: [[fragments.ofAtom[i]!, fragments.ofAtom[j]!]],
+      }),
     );
   }
 }
@@ -50,7 +53,10 @@ function reportClash(context: RuleContext, pair: Pair): void {
     () =>
       `${context.nameOf(pair.first)} and ${context.nameOf(pair.second)} clash: ${atom(pair.closest1, numbers[0])} and ` +
       `${atom(pair.closest2, numbers[1])} are ${shown(pair.closestA)} Å apart, ${shown(pair.contactRatio, 2)} of the sum of their van der Waals radii.`,
-    () => ({ related: lines[0] && lines[0] !== at ? [{ ...lines[0], message: `Atom ${numbers[0]}` }] : [] }),
+    () => ({
+      related: lines[0] && lines[0] !== at ? [{ ...lines[0], message: `Atom ${numbers[0]}` }] : [],
+      pairs: [[pair.first, pair.second]],
+    }),
   );
 }
 

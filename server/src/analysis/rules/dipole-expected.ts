@@ -77,7 +77,10 @@ function compare(context: RuleContext, f: number, written: WrittenDipole): void 
       'dipole-rotated',
       span,
       () => `${compared}, of the same size and ${shown(angle)}° from it.`,
-      () => (isPublished && angleError === 0 ? rederived(expected, written, 'Take the published dipole') : {}),
+      () => {
+        const isExact = isPublished && angleError === 0;
+        return rederived(expected, written, `Take the ${isExact ? 'published' : 'estimated'} dipole`);
+      },
     );
   } else if (Math.abs(size - expectedSize) > ERRORS * sizeError && share > MISMATCH_SHARE) {
     context.findings.add('dipole-mismatch', span, () => `${compared}, ${percent(share)} off.`);

@@ -1,3 +1,5 @@
+import type { FindingDetail } from '../../base/finding';
+import type { Span } from '../../base/span';
 import { AtomFlag } from '../../formats/tree';
 import { DEBYE_E_A } from '../../physics/constants';
 import { type RuleContext, shown } from './context';
@@ -18,10 +20,18 @@ export function reportElectronParity(context: RuleContext): void {
     electrons += tree.atoms.element[i]!;
   }
   if (!Number.isInteger(electrons) || (electrons - multiplicity.value) % 2 !== 0) return;
-  context.findings.add('electron-parity', multiplicity.span, () => {
-    const kind = electrons % 2 === 0 ? 'even' : 'odd';
-    return `The frame has ${electrons} electrons, an ${kind} number, and the multiplicity is ${multiplicity.value}.`;
-  });
+  const lowest = electrons % 2 === 0 ? 1 : 2;
+  context.findings.add(
+    'electron-parity',
+    multiplicity.span,
+    () => {
+      const kind = electrons % 2 === 0 ? 'even' : 'odd';
+      return `The frame has ${electrons} electrons, an ${kind} number, and the multiplicity is ${multiplicity.value}.`;
+    },
+    () => ({
+      fix: { title: `Set the multiplicity to ${lowest}`, edits: [{ ...multiplicity.span, text: String(lowest) }] },
+    }),
+  );
 }
 
 /** Checks the sum of the fragment charges against the total charge. */
@@ -40,11 +50,31 @@ export function reportChargeSum(context: RuleContext): void {
   );
   const guess = guessed < 0 ? '' : ` The charge of ${context.nameOf(guessed)} is the library's.`;
   const assumed = moments.chargeSource.slice(0, own).every((source) => source === 'assumed');
-  context.findings.add('charge-sum', total.span, () =>
-    assumed
-      ? `The total charge is ${shown(total.value)} e, and nothing says which fragment carries it; all are taken as neutral.`
-      : `The charges of the fragments add up to ${shown(sum)} e, and the total charge is ${shown(total.value)} e.${guess}`,
+  context.findings.add(
+    'charge-sum',
+    total.span,
+    () =>
+      assumed
+        ? `The total charge is ${shown(total.value)} e, and nothing says which fragment carries it; all are taken as neutral.`
+        : `The charges of the fragments add up to ${shown(sum)} e, and the total charge is ${shown(total.value)} e.${guess}`,
+    () => totalFix(context, total.span, sum),
   );
+}
+
+/** Sets the total to the sum, where the file itself gives all charges, and its multiplicity fits that sum as well. */
+function totalFix(context: RuleContext, span: Span, sum: number): FindingDetail {
+  const { frameNotes, tree } = context.frame.model;
+  const { chargeSource } = context.frame.moments;
+  const isGiven = chargeSource
+    .slice(0, context.ownFragments)
+    .every((source) => source !== 'assumed' && source !== 'library');
+  const whole = Math.round(sum);
+  const total = Math.abs(sum - whole) <= CHARGE_TOLERANCE_E ? whole + 0 : Number(sum.toPrecision(6));
+  const { multiplicity } = frameNotes;
+  const electrons = tree.atoms.element.reduce((count, z) => count + z, -total);
+  const fits = multiplicity === null || !Number.isInteger(electrons) || (electrons - multiplicity.value) % 2 !== 0;
+  if (!isGiven || !fits) return {};
+  return { fix: { title: `Set the total charge to ${total}`, edits: [{ ...span, text: String(total) }] } };
 }
 
 /** Compares the dipole of the whole frame with the sum over its fragments; only for a neutral frame with every dipole known. */

@@ -77,7 +77,10 @@ class NearField {
         code,
         context.placeOf(f)!,
         () => this.#sentence(worst!, f),
-        () => ({ related: others.flatMap((pair) => this.#related(pair, f)) }),
+        () => ({
+          related: others.flatMap((pair) => this.#related(pair, f)),
+          pairs: [worst!, ...others].map(({ first, second }) => [first, second]),
+        }),
       );
     }
   }
@@ -90,7 +93,10 @@ class NearField {
       code,
       context.headSpan(),
       () => `The point dipole ${where} for ${pairs}; the strongest: ${this.#sentence(worst[0]!, worst[0]!.first)}`,
-      () => ({ related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)) }),
+      () => ({
+        related: worst.slice(0, MOST_RELATED).flatMap((pair) => this.#related(pair, pair.first)),
+        pairs: worst.map(({ first, second }) => [first, second]),
+      }),
     );
   }
 
