@@ -88,9 +88,12 @@ const ROUNDING_A = 2e-3;
 /** A gap between barred stretches must be wider than what coordinates are rounded by, Å. */
 const LEAST_GAP_A = 0.01;
 
+/** What a distance computed by another way may differ by. */
+const TINY_A = 1e-9;
+
 /** Whether atoms at some places touch nothing around them. */
 export function isClear(elements: ArrayLike<number>, positionA: ArrayLike<number>, around: Surroundings): boolean {
-  return isApart(elements, positionA, around, contacts(), 0);
+  return isApart(elements, positionA, around, contacts(), TINY_A);
 }
 
 /** Whether atoms at some places neither clash nor look bonded with anything around them. */

@@ -50,7 +50,7 @@ export interface Turn {
 /**
  * Turns a fragment about its centre, which stays, so that its dipole lies along the field of its strongest partner: the smallest such
  * rotation, or one of those that differ from it by a rotation about the dipole where it would clash. `null` where nothing turns: no
- * dipole or field, aligned already, cut from a chain, every orientation barred, or no gain.
+ * dipole or field, aligned already, cut from a chain, in a clash as it stands, every orientation barred, or no gain.
  */
 export function turnTowardStrongest(file: CoordinateTree, frame: FrameAnalysis, fragment: number): Turn | null {
   const { model, moments } = frame;
@@ -68,7 +68,7 @@ export function turnTowardStrongest(file: CoordinateTree, frame: FrameAnalysis, 
   return around === null ? null : new Turner(file, frame, fragment, pair, around).turn(dipole);
 }
 
-/** The pair of a fragment that matters most, among those whose energy is known. */
+/** The pair of a fragment that matters most. */
 function strongestPair(frame: FrameAnalysis, fragment: number): Pair | null {
   const { system, partners } = frame;
   let strongest: Pair | null = null;
@@ -76,9 +76,15 @@ function strongestPair(frame: FrameAnalysis, fragment: number): Pair | null {
     const pair = evaluatePair(system, Math.min(fragment, partner), Math.max(fragment, partner));
     if (pair.contact === 'bonded' || pair.enclosed) continue;
     if (pair.contact === 'apart' && !isWithinCutoff(system, pair.first, pair.second, pair.distanceA)) continue;
-    if (pair.strengthKJPerMol > (strongest?.strengthKJPerMol ?? 0)) strongest = pair;
+    if (strongest === null || mattersMore(pair, strongest)) strongest = pair;
   }
   return strongest;
+}
+
+/** Of two pairs that happen to have no energy as they stand, the nearer could have more. */
+function mattersMore(pair: Pair, than: Pair): boolean {
+  const gain = pair.strengthKJPerMol - than.strengthKJPerMol;
+  return Math.abs(gain) > LEAST_GAIN_KJ ? gain > 0 : pair.distanceA < than.distanceA;
 }
 
 /** Whether a vector that the file gives for a fragment holds for it alone, so that it can be turned with it. */
@@ -115,6 +121,8 @@ class Turner {
   }
 
   turn(dipole: Vector): Turn | null {
+    // Where atoms crowd, bonds are told otherwise than after the turn: that is to be mended first.
+    if (this.#placed((v) => v) === null) return null;
     const before = energyOf(this.#pair);
     for (const field of this.#fields()) {
       const angle = angleDeg(dipole, field);
