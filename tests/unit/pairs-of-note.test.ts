@@ -78,8 +78,8 @@ Ar 44 0 0
   });
 
   it('is that of touching waters, which count without the medium', () => {
-    const text = `8\nfragment_atoms="1-3 4-6 7 8" fragment_charges="0 0 1.7 -1.7"\n${WATERS}Na 60 0 0\nCl 65 0 0\n`;
+    const text = `8\nfragment_atoms="1 2 3-5 6-8" fragment_charges="1.7 -1.7 0 0"\nNa 60 0 0\nCl 65 0 0\n${WATERS}`;
     const settings = { temperatureK: 2000, relativePermittivity: 80, tolerance: 0.9 };
-    expect(strongest(text, settings)).toEqual({ pair: [0, 1], noted: [] });
+    expect(strongest(text, settings)).toEqual({ pair: [2, 3], noted: [] });
   });
 });
