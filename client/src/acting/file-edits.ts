@@ -1,4 +1,12 @@
-import { FilePermission, type QuickPickItem, type TextDocument, window, workspace } from 'vscode';
+import {
+  WorkspaceEdit as CodeEdit,
+  FilePermission,
+  type QuickPickItem,
+  type TextDocument,
+  type TextEdit,
+  window,
+  workspace,
+} from 'vscode';
 import type { BaseLanguageClient, WorkspaceEdit } from 'vscode-languageclient';
 import {
   ADD_DIPOLES_REQUEST,
@@ -130,10 +138,25 @@ async function change(
     }
     const converted = await client.protocol2CodeConverter.asWorkspaceEdit(edit as WorkspaceEdit);
     if (edit.documentChanges.some(({ textDocument }) => textDocument.version !== document.version)) continue;
-    if (!(await workspace.applyEdit(converted))) {
-      void window.showWarningMessage(`${nameOf(document.uri)} could not be changed; it may be read-only.`);
+    if (!(await apply(document, converted.get(document.uri)))) {
+      void window.showWarningMessage(`${nameOf(document.uri)} could not be changed; it is read-only or was closed.`);
     }
     return;
   }
   void window.showInformationMessage('The text changed meanwhile; nothing was changed by the command.');
+}
+
+/** Applies edits where the text is seen, if it is: an editor that was made read-only refuses them there, and only there. */
+async function apply(document: TextDocument, edits: readonly TextEdit[]): Promise<boolean> {
+  const editor = window.visibleTextEditors.find((other) => other.document === document);
+  if (editor === undefined) {
+    const unseen = new CodeEdit();
+    unseen.set(document.uri, [...edits]);
+    return workspace.applyEdit(unseen);
+  }
+  const { version } = document;
+  const isTaken = await editor.edit((edit) => {
+    for (const { range, newText } of edits) edit.replace(range, newText);
+  });
+  return isTaken && document.version !== version;
 }
