@@ -2,10 +2,17 @@ import { readFileSync } from 'node:fs';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import {
   CodeLensRequest,
+  CodeLensResolveRequest,
+  CompletionRequest,
+  DefinitionRequest,
+  DocumentHighlightRequest,
   type DocumentSymbol,
   DocumentSymbolRequest,
   InlayHintRequest,
+  LSPErrorCodes,
+  SelectionRangeRequest,
 } from 'vscode-languageserver-protocol';
+import { waterBox } from '../bench/water';
 import { WireClient } from './client';
 
 /** Parts that switch off by themselves as documents grow, over a real connection. */
@@ -111,5 +118,51 @@ describe('a frame of more than 5000 fragments', () => {
     expect(found).toMatchObject({ frames: 1, fragments: 0, state: 'idle' });
     expect(found.words).toMatch(/^1 frame, 5001 fragments, \d+ pairs$/);
     expect(found.detail).toContain('fragments in the outline (never more than 5000)');
+  });
+});
+
+describe('a frame of 50,000 atoms', () => {
+  const { xyz, atoms } = waterBox(50_000);
+  const text = xyz.replace('water', 'kind_axes="H2O:O>H"');
+  const uri = 'file:///limits/large.xyz';
+  const textDocument = { uri };
+  const at = (line: number, character: number) => ({ textDocument, position: { line, character } });
+
+  it('is answered at every place, and meanwhile others are', async () => {
+    client.configure({});
+    client.open(uri, text);
+    const { connection } = client;
+    const [lens] = (await connection.sendRequest(CodeLensRequest.type, { textDocument }))!;
+    const order: string[] = [];
+    const resolved = connection.sendRequest(CodeLensResolveRequest.type, lens!).then(({ command }) => {
+      order.push('lens');
+      return command!.title;
+    });
+    await connection.sendRequest(CompletionRequest.type, at(1, 11)).then(() => order.push('completion'));
+    expect(await resolved).toMatch(/^H2O \(\d+\) – H2O \(\d+\): /);
+    expect(order).toEqual(['completion', 'lens']);
+    // A composition that all fragments have leads to all their lines, which follow one another.
+    expect(await connection.sendRequest(DefinitionRequest.type, at(1, 12))).toHaveLength(1);
+    expect(await connection.sendRequest(DocumentHighlightRequest.type, at(atoms - 1, 3))).toHaveLength(4);
+    expect((await connection.sendRequest(DocumentHighlightRequest.type, at(1, 12)))!.length).toBeLessThan(3000);
+    const [chain] = (await connection.sendRequest(SelectionRangeRequest.type, {
+      textDocument,
+      positions: [{ line: atoms - 1, character: 0 }],
+    }))!;
+    expect(chain!.parent!.parent!.range.end.line - chain!.parent!.parent!.range.start.line).toBe(2);
+  });
+
+  it('has a lens given up when it changes', async () => {
+    const [lens] = (await client.connection.sendRequest(CodeLensRequest.type, { textDocument }))!;
+    client.change(uri, 2, [{ range: { start: { line: 2, character: 0 }, end: { line: 2, character: 1 } }, text: 'S' }]);
+    const [again] = (await client.connection.sendRequest(CodeLensRequest.type, { textDocument }))!;
+    await expect(client.connection.sendRequest(CodeLensResolveRequest.type, lens!)).rejects.toMatchObject({
+      code: LSPErrorCodes.ContentModified,
+    });
+    const resolving = client.connection.sendRequest(CodeLensResolveRequest.type, again!);
+    const given = expect(resolving).rejects.toMatchObject({ code: LSPErrorCodes.ContentModified });
+    client.change(uri, 3, [{ range: { start: { line: 2, character: 0 }, end: { line: 2, character: 1 } }, text: 'O' }]);
+    await given;
+    client.close(uri);
   });
 });

@@ -1,5 +1,6 @@
 import type { Span } from '../base/span';
 import { atomAtLine } from '../formats/reread';
+import type { CoordinateTree } from '../formats/tree';
 import { atomsOf } from '../model/fragment-set';
 import type { FrameModel } from '../model/frame-model';
 import { type Annotated, mentionAt, mentionsOf } from './mentions';
@@ -64,4 +65,16 @@ export function runsOf({ tree }: Pick<FrameModel, 'tree'>, atoms: ArrayLike<numb
     before = line;
   }
   return runs.slice(0, MOST_PLACES);
+}
+
+/** Every line of some runs of lines, the first few thousand. */
+export function linesOf({ lines }: CoordinateTree, runs: readonly Span[]): Span[] {
+  const found: Span[] = [];
+  for (const { start, end } of runs) {
+    const last = lines.lineAt(end);
+    for (let line = lines.lineAt(start); line <= last && found.length < MOST_PLACES; line++) {
+      found.push({ start: Math.max(start, lines.starts[line]!), end: Math.min(end, lines.end(line)) });
+    }
+  }
+  return found;
 }

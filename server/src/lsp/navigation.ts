@@ -11,7 +11,7 @@ import {
 } from 'vscode-languageserver';
 import type { Span } from '../base/span';
 import { frameIndexAt } from '../features/hover';
-import { type Concern, concernAt, definitionAt } from '../features/navigation';
+import { type Concern, concernAt, definitionAt, linesOf } from '../features/navigation';
 import { NOTHING_TO_RENAME, type Renaming, renamingAt } from '../features/rename';
 import { selectionSpans } from '../features/selection';
 import type { FrameModel } from '../model/frame-model';
@@ -50,17 +50,6 @@ function concernOf({ analysed, offset, model }: Spot): Concern | null {
   return concernAt({ file: analysed.tree, model }, offset);
 }
 
-/** Every line of some runs of lines. */
-function linesOf({ tree: { lines } }: Analysed, runs: readonly Span[]): Span[] {
-  return runs.flatMap(({ start, end }) => {
-    const [first, last] = [lines.lineAt(start), lines.lineAt(end)];
-    return Array.from({ length: last - first + 1 }, (_, k) => ({
-      start: Math.max(start, lines.starts[first + k]!),
-      end: Math.min(end, lines.end(first + k)),
-    }));
-  });
-}
-
 /** Answers what leads from annotation to atoms and back: definition, references, highlights, rename, growing selection. */
 export function serveNavigation(session: Session): void {
   const { connection, workspace } = session;
@@ -74,7 +63,7 @@ export function serveNavigation(session: Session): void {
       if (!session.client.links) return lead.places.map((place) => ({ uri, range: rangeOf(lines, place) }));
       const originSelectionRange = rangeOf(lines, lead.from);
       return lead.places.map((place) => {
-        const [firstLine] = linesOf(spot.analysed, [place]);
+        const [firstLine] = linesOf(spot.analysed.tree, [place]);
         const targetSelectionRange = rangeOf(lines, firstLine!);
         return { originSelectionRange, targetUri: uri, targetRange: rangeOf(lines, place), targetSelectionRange };
       });
@@ -86,7 +75,7 @@ export function serveNavigation(session: Session): void {
     const concern = spot === null ? null : concernOf(spot);
     if (spot === null || concern === null) return null;
     // The atoms are what the annotation speaks of: they count as the declaration.
-    const atoms = context.includeDeclaration ? linesOf(spot.analysed, concern.atomRuns) : [];
+    const atoms = context.includeDeclaration ? linesOf(spot.analysed.tree, concern.atomRuns) : [];
     const places = [...concern.mentions, ...atoms].sort((a, b) => a.start - b.start);
     return places.map((place) => ({ uri, range: rangeOf(spot.analysed.document.lines, place) }));
   });
@@ -100,7 +89,7 @@ export function serveNavigation(session: Session): void {
       places.map((place) => ({ range: rangeOf(lines, place), kind }));
     return [
       ...marked(concern.mentions, DocumentHighlightKind.Read),
-      ...marked(linesOf(spot.analysed, concern.atomRuns), DocumentHighlightKind.Text),
+      ...marked(linesOf(spot.analysed.tree, concern.atomRuns), DocumentHighlightKind.Text),
     ];
   });
 

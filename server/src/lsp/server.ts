@@ -101,8 +101,8 @@ export function startServer(connection: Connection, platform: Platform): void {
     settings.clear();
     workspace.refresh();
     if (client.pull && client.refresh) void connection.languages.diagnostics.refresh();
-    if (client.refreshLenses) void connection.sendRequest(CodeLensRefreshRequest.type);
-    if (client.refreshHints) void connection.languages.inlayHint.refresh();
+    if (client.refreshLenses) connection.sendRequest(CodeLensRefreshRequest.type).catch(() => undefined);
+    if (client.refreshHints) connection.languages.inlayHint.refresh().catch(() => undefined);
   };
 
   connection.onDidChangeConfiguration((change) => {
