@@ -19,15 +19,17 @@ import {
   type DocumentPair,
   FRAGMENT_LINES_REQUEST,
   type FragmentLines,
+  OPEN_PANEL_COMMAND,
   PANEL_PLACE_REQUEST,
   type PanelPlace,
   type PanelPlaceParams,
   type StatusParams,
+  WRITE_DIMERS_COMMAND,
 } from '../../server/src/lsp/protocol';
 import type { FromHost, KeptState, PanelPair, ToHost } from '../panel/messages';
 import { panelHtml } from './panel-html';
 
-export const PANEL_TYPE = 'polewise.pairs';
+const PANEL_TYPE = 'polewise.pairs';
 const WAIT_MS = 60;
 /** What the panel may ask of the server. */
 const METHODS: ReadonlySet<string> = new Set(['polewise/panelRows', 'polewise/panelMatrix', 'polewise/panelSeries']);
@@ -54,7 +56,7 @@ export class PairPanel {
     this.#context = context;
     this.#client = client;
     context.subscriptions.push(
-      commands.registerCommand('polewise.openPanel', (target?: Partial<DocumentPair>) => this.open(target)),
+      commands.registerCommand(OPEN_PANEL_COMMAND, (target?: Partial<DocumentPair>) => this.open(target)),
       window.registerWebviewPanelSerializer(PANEL_TYPE, {
         deserializeWebviewPanel: async (panel, state: Partial<KeptState> | undefined) => this.#restore(panel, state),
       }),
@@ -194,7 +196,7 @@ export class PairPanel {
         return this.#ask();
       case 'write': {
         const { frame, first, second } = message.pair;
-        await commands.executeCommand('polewise.writeDimers', { uri: this.#uri, frame, pairs: [[first, second]] });
+        await commands.executeCommand(WRITE_DIMERS_COMMAND, { uri: this.#uri, frame, pairs: [[first, second]] });
         return;
       }
       case 'copy':

@@ -71,8 +71,9 @@ describe('the manifest', () => {
     expect(''.match(new RegExp(wordPattern))).toBeNull();
   });
 
-  it('runs nothing before one of its languages is opened or one of its commands is chosen', () => {
-    expect(manifest.activationEvents).toEqual([]);
+  it('runs nothing before one of its languages is opened, one of its commands is chosen, or its panel is restored', () => {
+    expect(manifest.activationEvents).toEqual(['onWebviewPanel:polewise.pairs']);
+    expect(readFileSync('client/src/panel.ts', 'utf8')).toContain("PANEL_TYPE = 'polewise.pairs'");
   });
 });
 

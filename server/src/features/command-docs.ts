@@ -1,5 +1,7 @@
 /** What each command of the editor does, for whoever reads of it before using it. */
 export const COMMAND_DOCS: Readonly<Record<string, string>> = {
+  'polewise.openPanel':
+    'Opens the panel of pairs beside the text. It follows the cursor: the pair in front with its curve of energy, its partners, and one step away all pairs, the energies fragment by fragment, and a pair over the frames.',
   'polewise.writeDimers':
     'Writes pairs of the frame at the cursor as files of their own, as `polewise dimers` does: those to compute, those to compute or review, or chosen from a list. Asks for the folder, and before it overwrites.',
   'polewise.copyPairTable':

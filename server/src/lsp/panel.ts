@@ -36,7 +36,7 @@ export function servePanel(session: Session): void {
     connection.onRequest(method, async (params: P): Promise<R | null> => {
       const analysed = await workspace.analysed(params.uri);
       if (analysed === null) return null;
-      return workspace.work(analysed, (pace) => answer(answersOf(analysed), params, pace));
+      return workspace.paced(analysed, (pace) => answer(answersOf(analysed), params, pace));
     });
 
   serve(PANEL_PLACE_REQUEST, (answers, params: PanelPlaceParams, pace) => answers.place(params, session.theme, pace));

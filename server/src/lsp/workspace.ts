@@ -129,31 +129,6 @@ export class Workspace {
     }
   }
 
-  /** Does work on an analysis in slices, as long as that is the newest; `null` where it is not any more. */
-  async work<T>(analysed: Analysed, task: (pace: Pace) => Promise<T>): Promise<T | null> {
-    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
-    try {
-      return this.#isNewest(analysed) ? await task(pace) : null;
-    } catch (error) {
-      if (error instanceof Outdated) return null;
-      throw error;
-    }
-  }
-
-  /** Does long work on an analysis as long as that is the newest and the result still wanted; `null` where it is not any more. */
-  async whileNewest<T>(
-    analysed: Analysed,
-    isWanted: () => boolean,
-    work: (pace: Pace) => Promise<T>,
-  ): Promise<T | null> {
-    try {
-      return await work(new Pace(this.#surroundings.clock, () => this.#isNewest(analysed) && isWanted()));
-    } catch (error) {
-      if (error instanceof Outdated) return null;
-      throw error;
-    }
-  }
-
   #isNewest(analysed: Analysed): boolean {
     return this.#entries.get(analysed.document.uri)?.latest === analysed;
   }
