@@ -69,7 +69,7 @@ export function serveActing({ connection, workspace }: Session): void {
     const wrong = frame !== null && frames[frame - 1] === undefined;
     if (wrong) return refusal(`There is no frame ${frame}: the file has ${frames.length}.`);
     const { eachFrame, result } = begin(analysed);
-    const answer = await workspace.whileNewest<Answer<T>>(
+    const answer = await workspace.paced<Answer<T>>(
       analysed,
       () => !token.isCancellationRequested,
       async (pace) => {
