@@ -71,7 +71,6 @@ export function serveActing({ connection, workspace }: Session): void {
     const { eachFrame, result } = begin(analysed);
     const answer = await workspace.paced<Answer<T>>(
       analysed,
-      () => !token.isCancellationRequested,
       async (pace) => {
         for (const { index } of frame === null ? frames : [frames[frame - 1]!]) {
           const reason = await pace.finish(eachFrame(await analysed.frames.frame(index, pace)));
@@ -79,6 +78,7 @@ export function serveActing({ connection, workspace }: Session): void {
         }
         return { result: result(), reason: null };
       },
+      () => !token.isCancellationRequested,
     );
     return answer ?? (token.isCancellationRequested ? refusal(CANCELLED) : refusal(OUTDATED, true));
   };

@@ -118,9 +118,13 @@ export class Workspace {
     return this.paced(analysed, (pace) => analysed.frames.frame(index, pace));
   }
 
-  /** Does work on an analysis in slices, as long as that is the newest; `null` where it is not any more. */
-  async paced<T>(analysed: Analysed, work: (pace: Pace) => Promise<T>): Promise<T | null> {
-    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed));
+  /** Does work on an analysis in slices, as long as that is the newest and the result still wanted; `null` where it is not any more. */
+  async paced<T>(
+    analysed: Analysed,
+    work: (pace: Pace) => Promise<T>,
+    isWanted: () => boolean = () => true,
+  ): Promise<T | null> {
+    const pace = new Pace(this.#surroundings.clock, () => this.#isNewest(analysed) && isWanted());
     try {
       return this.#isNewest(analysed) ? await work(pace) : null;
     } catch (error) {
