@@ -136,6 +136,33 @@ export const ACTING: Suite = {
       const names = (await vscode.workspace.fs.readDirectory(jobs)).map(([name]) => name);
       deepStrictEqual(names, ['sample-cluster-1-1-2.xyz']);
     }),
+  'missing dipoles and a header are written into the file, and undo takes them back': async () => {
+    for (const [command, key] of [
+      ['addDipoles', 'fragment_dipoles='],
+      ['insertHeader', 'fragment_names='],
+    ] as const) {
+      const { document } = await open(sample('bare-cluster.xyz'));
+      const before = document.getText();
+      await run(command);
+      ok(document.lineAt(1).text.includes(key), document.lineAt(1).text);
+      strictEqual(document.lineAt(0).text, '22');
+      await vscode.commands.executeCommand('undo');
+      strictEqual(document.getText(), before);
+    }
+  },
+
+  'a file that is read-only for the session is not changed': async () => {
+    const { document } = await open(sample('bare-cluster.xyz'));
+    const before = document.getText();
+    await vscode.commands.executeCommand('workbench.action.files.setActiveEditorReadonlyInSession');
+    try {
+      await run('addDipoles');
+      strictEqual(document.getText(), before);
+    } finally {
+      await vscode.commands.executeCommand('workbench.action.files.resetActiveEditorReadonlyInSession');
+    }
+  },
+
   'a read-only file is read, and commands that would change it or write beside it do not': async () => {
     const text = await bytesOf(sample('bare-cluster.xyz'));
     const files = new ReadOnlyFiles(text);
