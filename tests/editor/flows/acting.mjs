@@ -53,6 +53,8 @@ async function walkthrough(person) {
   await step('Write the dipoles down', 'Add Missing Dipoles', 'dipoles.svg');
   await person.see('.monaco-editor .view-line', 'fragment_dipoles');
   await person.shot('dipoles-written');
+  await step('See the pairs', 'Open the Panel', 'panel.svg');
+  await person.shot('panel-opened');
   await step('Write the pairs worth computing', 'Write Dimer Files', 'dimers.svg');
   await choose(person, /Pairs to compute \(/);
   await choose(person, 'In samples');
