@@ -1,5 +1,6 @@
 import { CATALOGUE, FINDING_CODES, SEVERITIES } from '../base/catalogue';
 import { COMMAND_DOCS } from '../features/command-docs';
+import { MENDED_CODES } from '../features/remedies/table';
 import { MEDIA } from '../physics/media';
 
 /** What is read of the extension's manifest. */
@@ -51,10 +52,12 @@ function findingsSection(): string {
   const rows = SEVERITIES.flatMap((severity) =>
     FINDING_CODES.filter((code) => CATALOGUE[code].severity === severity).map((code) => {
       const { title, meaning, remedy } = CATALOGUE[code];
-      return `| \`${code}\` | ${severity} | ${title}. ${meaning} | ${remedy} |`;
+      const mended = MENDED_CODES.includes(code) ? 'yes' : '';
+      return `| \`${code}\` | ${severity} | ${title}. ${meaning} | ${remedy} | ${mended} |`;
     }),
   );
-  return ['| code | severity | what it means | what to do |', '| --- | --- | --- | --- |', ...rows].join('\n');
+  const head = ['| code | severity | what it means | what to do | quick fix |', '| --- | --- | --- | --- | --- |'];
+  return [...head, ...rows].join('\n');
 }
 
 function mediaSection(): string {

@@ -78,13 +78,12 @@ function kindDipole(frame: FrameAnalysis, kind: string, offers: readonly DipoleO
       return own !== undefined && direction !== null && angleDeg(axisVector(frame, own), direction) <= AXIS_DEG;
     });
   });
+  const elements = (atoms: readonly number[] = []) =>
+    [...new Set(atoms.map((atom) => frame.model.tree.atoms.element[atom]))].sort().join();
+  const haveSameElements = (a: readonly number[], b: readonly number[] | undefined) => elements(a) === elements(b);
   const published = fitting.find(
-    ({ before, after }) => areSame(before, first!.axis?.before) && areSame(after, first!.axis?.after),
+    ({ before, after }) => haveSameElements(before, first!.axis?.before) && haveSameElements(after, first!.axis?.after),
   );
   const axis = published ?? fitting[0];
   return axis === undefined ? null : { kind, offers, sizeEA, axis };
-}
-
-function areSame(a: readonly number[], b: readonly number[] | undefined): boolean {
-  return b !== undefined && a.length === b.length && a.every((atom) => b.includes(atom));
 }
