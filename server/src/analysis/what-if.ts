@@ -7,8 +7,9 @@ import { evaluatePair, type Pair } from './pair';
 import { layOut, type System } from './system';
 
 /**
- * A frame as it would be with one of its fragments elsewhere, its bonds and all other fragments as they are. What it computes is what a
- * fresh analysis of such a file computes; the frame itself stays untouched.
+ * A frame as it would be with one of its fragments elsewhere, its bonds and all other fragments as they are. Where
+ * nothing is so close that bonds would be told otherwise, it computes what a fresh analysis of such a file does. The frame itself stays
+ * untouched.
  */
 export class WhatIf {
   readonly #frame: FrameAnalysis;

@@ -1,12 +1,16 @@
 import { BOHR_A } from '../../physics/constants';
-import { convertedLengths } from '../rewrite/convert-lengths';
-import { offered, type RemedyMaker } from './remedy';
+import { lengthConversion } from '../rewrite/convert-lengths';
+import type { RemedyMaker } from './remedy';
 
 const NANOMETRE_A = 10;
 
 /** Converts all coordinates of the frame to Å. */
-export const fromBohr: RemedyMaker = (_, { file, frame }) =>
-  offered('Convert the coordinates from bohr to Å', convertedLengths(file, frame.model.tree, BOHR_A));
+function from(unit: string, factor: number): RemedyMaker {
+  return (_, { file, frame }) => {
+    const edits = lengthConversion(file, frame.model.tree, factor);
+    return edits === null ? [] : [{ title: `Convert the coordinates from ${unit} to Å`, edits }];
+  };
+}
 
-export const fromNanometres: RemedyMaker = (_, { file, frame }) =>
-  offered('Convert the coordinates from nm to Å', convertedLengths(file, frame.model.tree, NANOMETRE_A));
+export const fromBohr = from('bohr', BOHR_A);
+export const fromNanometres = from('nm', NANOMETRE_A);

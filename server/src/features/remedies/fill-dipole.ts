@@ -10,7 +10,7 @@ export const fillDipole: RemedyMaker = ({ start }, { file, frame }) => {
   const atom = atomAtLine(model.tree, file.lines.lineAt(start));
   const kind = model.formulas[model.fragments.ofAtom[atom] ?? -1];
   if (kind === undefined) return [];
-  const offers = dipoleOffers(frame).filter(({ fragment }) => model.formulas[fragment] === kind);
+  const offers = dipoleOffers(frame, (fragment) => model.formulas[fragment] === kind);
   const [first] = offers;
   if (first === undefined || (first.direction === null && !isZero(first))) return [];
   const plan = planDipoles(frame, offers, (f) => model.formulas[f]!);

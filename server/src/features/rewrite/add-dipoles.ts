@@ -9,7 +9,7 @@ import { dipoleEdits } from './write-dipoles';
  * where there is nothing to add.
  */
 export function addDipolesEdits(file: CoordinateTree, frame: FrameAnalysis): readonly TextEdit[] | string {
-  const offers = dipoleOffers(frame).filter(({ sizeEA, direction }) => direction !== null || sizeEA >= 0);
+  const offers = dipoleOffers(frame);
   if (offers.length === 0) {
     const { dipoleSource } = frame.moments;
     return dipoleSource.includes('none')

@@ -9,18 +9,34 @@ const FIELDS = ['x', 'y', 'z'] as const;
 const TAB = 9;
 const BLANK = 32;
 
+/** Largest numbers that the fixed columns hold, Å. */
+const PDB_LARGEST_A = 9999.9994;
+const PDB_LEAST_A = -999.9994;
+
 /**
  * All coordinates of a frame times a factor. Numbers in columns stay in columns: where those are too narrow, each line grows by the same.
- * `null` where a number does not fit into fixed columns, one cannot be read, or a cell in the same doubtful unit stands beside them.
+ * The edits are made when they are asked for; `null` where a number does not fit into fixed columns, one cannot be read, or a cell in the
+ * same doubtful unit stands beside them.
  */
-export function convertedLengths(file: CoordinateTree, frame: FrameTree, factor: number): TextEdit[] | null {
+export function lengthConversion(
+  file: CoordinateTree,
+  frame: FrameTree,
+  factor: number,
+): (() => readonly TextEdit[]) | null {
   const { atoms } = frame;
   if (frame.cell !== null || atoms.count > MOST_ATOMS) return null;
   if (atoms.flags.some((flags) => flags & AtomFlag.noPosition)) return null;
+  const fits = (value: number) => value * factor < PDB_LARGEST_A && value * factor > PDB_LEAST_A;
+  if (file.language === 'pdb' && !atoms.positionA.every(fits)) return null;
+  return () => converted(file, frame, factor);
+}
+
+function converted(file: CoordinateTree, frame: FrameTree, factor: number): TextEdit[] {
+  const { atoms } = frame;
   const all = Int32Array.from({ length: atoms.count }, (_, i) => i);
   if (file.language === 'pdb') {
     const shifts = atoms.positionA.map((value) => value * factor - value);
-    return coordinateEdits(file, frame, all, shifts, decimalsOf(file, frame, []));
+    return coordinateEdits(file, frame, all, shifts, decimalsOf(file, frame, [])) ?? [];
   }
   const decimals = Math.max(FEWEST_DECIMALS, decimalsOf(file, frame, all));
   return FIELDS.flatMap((field, axis) => {

@@ -24,15 +24,15 @@ export function declaredChargeE({ moments }: FrameAnalysis, fragment: number): n
   return source === 'assumed' || source === 'library' ? null : moments.chargeE[fragment]!;
 }
 
-/** The published or estimated dipoles of those fragments of which the file gives none. */
-export function dipoleOffers(frame: FrameAnalysis): DipoleOffer[] {
+/** The published or estimated dipoles of those fragments, all or some, of which the file gives none. */
+export function dipoleOffers(frame: FrameAnalysis, wants: (fragment: number) => boolean = () => true): DipoleOffer[] {
   const { model, moments, system } = frame;
   let known: ModelKnowledge | null = null;
   const offers: DipoleOffer[] = [];
   for (let f = 0; f < model.fragments.count; f++) {
     const source = moments.dipoleSource[f]!;
     const isOpen = source === 'library' || source === 'estimated' || source === 'none';
-    if (!isOpen || !model.usable[f] || moments.isAtom[f] || system.chains.isCut(f)) continue;
+    if (!isOpen || !wants(f) || !model.usable[f] || moments.isAtom[f] || system.chains.isCut(f)) continue;
     known ??= fullKnowledge(frame);
     const match = known.match(f, declaredChargeE(frame, f));
     const charge = declaredChargeE(frame, f) ?? match?.entry.molecule.chargeE ?? 0;
