@@ -2,7 +2,7 @@
 // the extension host of the rig's server, and ends with the suite's status.
 import { ensureRig, launchBrowser, main, startServer } from './rig.mjs';
 
-const GIVE_UP_AFTER = 300_000;
+const GIVE_UP_AFTER = 400_000;
 
 const option = (name) => process.argv.find((argument) => argument.startsWith(`--${name}=`))?.slice(name.length + 3);
 

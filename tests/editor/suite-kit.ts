@@ -1,6 +1,8 @@
 // What the suites in the extension host are written in.
 import { deepStrictEqual, ok } from 'node:assert/strict';
 import { type ExecFileSyncOptionsWithStringEncoding, execFileSync } from 'node:child_process';
+import { mkdirSync, rmSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
 import * as vscode from 'vscode';
 
 const WAIT = 20_000;
@@ -156,3 +158,21 @@ export async function hoverText(uri: vscode.Uri, line: number, character: number
 
 /** Markdown as it reads: escapes gone, the typographic minus as a plain one. */
 export const plain = (markdown: string) => markdown.replace(/\\([^a-zA-Z0-9\s])/g, '$1').replace(/−/g, '-');
+
+/** Files of a test's own, beside the samples; they are gone afterwards. */
+export async function withFiles(
+  texts: Readonly<Record<string, string>>,
+  test: (uri: (name: string) => vscode.Uri) => Promise<void>,
+): Promise<void> {
+  const place = join(folder().fsPath, 'own');
+  mkdirSync(place);
+  try {
+    for (const [name, text] of Object.entries(texts)) writeFileSync(join(place, name), text);
+    await test((name) =>
+      vscode.Uri.file(join(place, name)).with({ scheme: folder().scheme, authority: folder().authority }),
+    );
+  } finally {
+    await closeAll();
+    rmSync(place, { recursive: true, force: true });
+  }
+}

@@ -5,7 +5,9 @@ import { join } from 'node:path';
 import * as vscode from 'vscode';
 import { ACTING } from './suite-acting';
 import { closeAll, folder, open, type Suite, sample, until } from './suite-kit';
+import { PROVIDERS } from './suite-providers';
 import { READING } from './suite-reading';
+import { ROUGH } from './suite-rough';
 
 const FIRST: Suite = {
   'the installed package is the one under test, and sleeps until one of our files opens': async () => {
@@ -18,7 +20,7 @@ const FIRST: Suite = {
   },
 };
 
-const SUITES: readonly Suite[] = [READING, ACTING];
+const SUITES: readonly Suite[] = [READING, PROVIDERS, ACTING, ROUGH];
 
 const LAST: Suite = {
   'nothing was written to the samples': async () => {
@@ -33,7 +35,11 @@ const LAST: Suite = {
 /** Called by the extension host. */
 export async function run(): Promise<void> {
   const report = (line: string) => appendFileSync(process.env.POLEWISE_REPORT!, `${line}\n`);
-  const tests = [FIRST, ...SUITES, LAST].flatMap((suite) => Object.entries(suite));
+  // Set to a part of a name to run a few alone.
+  const only = process.env.POLEWISE_ONLY ?? '';
+  const tests = [FIRST, ...SUITES, LAST]
+    .flatMap((suite) => Object.entries(suite))
+    .filter(([name]) => name.includes(only));
   let failed = 0;
   for (const [name, test] of tests) {
     const started = Date.now();
@@ -43,7 +49,9 @@ export async function run(): Promise<void> {
     } catch (error) {
       failed++;
       outcome = 'FAILED';
-      report(String((error as Error).stack));
+      const { stack, cause } = error as Error;
+      report(String(stack));
+      if (cause !== undefined) report(String((cause as Error).stack));
     }
     await closeAll();
     report(`${outcome} ${name} (${Date.now() - started} ms)`);
