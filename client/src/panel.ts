@@ -37,6 +37,12 @@ const MOST_SELECTIONS = 500;
 
 const isOurs = (document: TextDocument) => document.languageId === 'xyz' || document.languageId === 'pdb';
 
+/** The coordinates that a person means: those in the active editor, else the first in view, else any that are open. */
+function documentInView(): TextDocument | undefined {
+  const editors = [window.activeTextEditor, ...window.visibleTextEditors].filter((editor) => editor !== undefined);
+  return editors.map(({ document }) => document).find(isOurs) ?? workspace.textDocuments.find(isOurs);
+}
+
 /** The panel of pairs beside the editor: it follows the cursor, and rests while nobody sees it. */
 export class PairPanel {
   readonly #context: ExtensionContext;
@@ -71,9 +77,9 @@ export class PairPanel {
 
   /** Opens the panel beside the editor, on the document and pair given or on what the active editor shows. */
   open(target: Partial<DocumentPair> = {}): void {
-    const editor = window.activeTextEditor;
+    const document = documentInView();
     if (target.uri !== undefined) this.#turnTo(target.uri);
-    else if (editor !== undefined && isOurs(editor.document)) this.#turnTo(editor.document.uri.toString());
+    else if (document !== undefined) this.#turnTo(document.uri.toString());
     this.#position = this.#editor()?.selection.active ?? this.#position;
     const { frame, first, second } = target;
     if (frame !== undefined && first !== undefined && second !== undefined) {
@@ -82,7 +88,12 @@ export class PairPanel {
     }
     if (this.#panel !== null) this.#panel.reveal(undefined, true);
     else {
-      const column = { viewColumn: ViewColumn.Beside, preserveFocus: true };
+      // Beside the text, which need not be where the keyboard is.
+      const viewColumn = this.#editor()?.viewColumn;
+      const column = {
+        viewColumn: viewColumn === undefined ? ViewColumn.Beside : viewColumn + 1,
+        preserveFocus: true,
+      };
       this.#take(window.createWebviewPanel(PANEL_TYPE, 'Pairs', column));
     }
     this.#ask();

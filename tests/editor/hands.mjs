@@ -123,6 +123,13 @@ export class Person {
     await this.gone('.action-widget');
   }
 
+  /** The page inside our panel; other extensions and walkthroughs have pages of their own. */
+  get panel() {
+    return this.page
+      .frameLocator('iframe.webview.ready[src*="extensionId=polewise"]')
+      .frameLocator('iframe#active-frame');
+  }
+
   /** Runs a command by its title. */
   async command(title) {
     await this.page.keyboard.press('F1');

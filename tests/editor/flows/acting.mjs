@@ -54,6 +54,7 @@ async function walkthrough(person) {
   await person.see('.monaco-editor .view-line', 'fragment_dipoles');
   await person.shot('dipoles-written');
   await step('See the pairs', 'Open the Panel', 'panel.svg');
+  await person.panel.locator('h2', { hasText: 'C3H6O (1)' }).first().waitFor();
   await person.shot('panel-opened');
   await step('Write the pairs worth computing', 'Write Dimer Files', 'dimers.svg');
   await choose(person, /Pairs to compute \(/);

@@ -8,20 +8,15 @@ import { WAIT, words } from '../hands.mjs';
 const OPEN = 'Polewise: Open the Panel of Pairs';
 const AXE = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
 
-/** The page inside the panel. */
-function inPanel({ page }) {
-  return page.frameLocator('iframe.webview.ready').frameLocator('iframe#active-frame');
-}
-
 /** The words of the first such part of the panel, once it holds some text. */
 async function read(person, selector, text) {
-  const found = inPanel(person).locator(selector, text === undefined ? {} : { hasText: text });
+  const found = person.panel.locator(selector, text === undefined ? {} : { hasText: text });
   await found.first().waitFor({ timeout: WAIT });
   return words(await found.first().textContent());
 }
 
 async function view(person, name) {
-  await inPanel(person).getByRole('tab', { name }).click();
+  await person.panel.getByRole('tab', { name }).click();
 }
 
 /** Back to the text on the left. */
@@ -53,7 +48,7 @@ async function cluster(person) {
   match(await read(person, '.verdict'), /compute/);
   await person.shot('here');
   await isAccessible(person);
-  const picture = inPanel(person).locator('img.pair-picture');
+  const picture = person.panel.locator('img.pair-picture');
   ok(await picture.evaluate((img) => img.complete && img.naturalWidth > 0), 'the drawing is there');
 
   // It follows the cursor.
@@ -62,7 +57,7 @@ async function cluster(person) {
   await read(person, 'h2', 'Partners of H2O (3)');
 
   // Choosing a partner selects the atoms of both in the text, and shows that pair.
-  await inPanel(person).locator('.here .rows [role=row]').nth(1).click();
+  await person.panel.locator('.here .rows [role=row]').nth(1).click();
   await read(person, 'h2', 'H2O (3) – H2O (5)');
   await person.see('.monaco-editor .selected-text');
   strictEqual(await page.locator('.monaco-editor .cursors-layer .cursor').count(), 2, 'two fragments, two cursors');
@@ -72,17 +67,15 @@ async function cluster(person) {
   await read(person, '.all-pairs .rows [role=row]', 'H2O');
   await person.shot('pairs');
   await isAccessible(person);
-  await inPanel(person)
-    .getByRole('button', { name: /separation of the centres/ })
-    .click();
+  await person.panel.getByRole('button', { name: /separation of the centres/ }).click();
   const nearest = await read(person, '.all-pairs .rows [role=row]', '2.69');
   match(nearest, /H2O \(4\) – H2O \(5\)/);
-  await inPanel(person).getByLabel('Advice').selectOption('review');
+  await person.panel.getByLabel('Advice').selectOption('review');
   await read(person, '.all-pairs [role=status]', /^\d of 21 pairs/);
   await person.shot('pairs-filtered');
 
   await view(person, 'Fragment by fragment');
-  await inPanel(person).locator('.matrix svg').waitFor({ timeout: WAIT });
+  await person.panel.locator('.matrix svg').waitFor({ timeout: WAIT });
   await person.shot('matrix');
   await isAccessible(person);
 }
@@ -96,23 +89,21 @@ async function keyboard(person) {
   await read(person, 'h2', 'Partners of H2O (1)');
   // Into the panel, to its tabs, and on to the second.
   await page.keyboard.press('Control+2');
-  const focused = () => inPanel(person).locator(':focus').first();
+  const focused = () => person.panel.locator(':focus').first();
   for (let press = 0; press < 4; press++) {
     await page.keyboard.press('Tab');
-    if ((await inPanel(person).locator('[role=tab]:focus').count()) > 0) break;
+    if ((await person.panel.locator('[role=tab]:focus').count()) > 0) break;
   }
   await page.keyboard.press('ArrowRight');
   strictEqual(words(await focused().textContent()), 'All pairs');
   await read(person, '.all-pairs .rows [role=row]', 'H2O');
   for (let press = 0; press < 16; press++) {
     await page.keyboard.press('Tab');
-    if ((await inPanel(person).locator('[role=grid]:focus').count()) > 0) break;
+    if ((await person.panel.locator('[role=grid]:focus').count()) > 0) break;
   }
   await page.keyboard.press('ArrowDown');
   await page.keyboard.press('ArrowDown');
-  const current = words(
-    await inPanel(person).locator('.all-pairs .rows .current [role=gridcell]').first().textContent(),
-  );
+  const current = words(await person.panel.locator('.all-pairs .rows .current [role=gridcell]').first().textContent());
   await person.shot('grid');
   await page.keyboard.press('Enter');
   await person.see('.monaco-editor .selected-text');
@@ -130,13 +121,11 @@ async function frames(person) {
   await read(person, 'h1', 'frame 1 of 12');
   await person.shot('here');
   await view(person, 'Over frames');
-  await inPanel(person).locator('.over-frames svg').waitFor({ timeout: WAIT });
+  await person.panel.locator('.over-frames svg').waitFor({ timeout: WAIT });
   await person.shot('frames');
   await isAccessible(person);
   // What happens leads to the frame where it does.
-  await inPanel(person)
-    .getByRole('button', { name: /^Frames 5/ })
-    .click();
+  await person.panel.getByRole('button', { name: /^Frames 5/ }).click();
   await read(person, 'h1', 'frame 6 of 12');
 }
 
@@ -147,7 +136,7 @@ async function ligand(person) {
   await read(person, 'h2', 'A:LIG:401 –');
   await person.shot('here');
   await view(person, 'Fragment by fragment');
-  await inPanel(person).locator('.matrix svg').waitFor({ timeout: WAIT });
+  await person.panel.locator('.matrix svg').waitFor({ timeout: WAIT });
   await person.shot('matrix');
 }
 
@@ -191,7 +180,7 @@ async function lasting(person) {
     .locator('.codicon-close')
     .click();
   await read(person, '.state', 'water-cluster.xyz is not open');
-  strictEqual(await inPanel(person).locator('.tabs').isVisible(), false, 'nothing stale is left');
+  strictEqual(await person.panel.locator('.tabs').isVisible(), false, 'nothing stale is left');
   await person.shot('deleted');
 }
 
