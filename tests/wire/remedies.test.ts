@@ -128,6 +128,27 @@ describe.each([
   });
 });
 
+describe('a dipole that is filled in', () => {
+  it.each([
+    [
+      'as published',
+      'a kind without a dipole is information, once a kind',
+      'Give H2O its published dipole, 1.85 D along O>H',
+    ],
+    [
+      'as estimated',
+      'a molecule that nothing but an estimate gives a dipole',
+      'Give C2H5FO its estimated dipole, 1.7 D, as a vector',
+    ],
+  ])('is named for what it is: %s', async (_, fact, title) => {
+    const client = clients[1]!;
+    const { text } = CASES.find((entry) => entry.fact === fact)!;
+    const { uri, diagnostics } = await look(client, text, 'xyz');
+    const titles = (await quickFixes(client, uri, text, diagnostics)).map((action) => action.title);
+    expect(titles[0]).toBe(title);
+  });
+});
+
 describe('the table of what is mended', () => {
   it('names a finding exactly where some remedy was offered for it', () => {
     expect([...mended].sort()).toEqual([...MENDED_CODES].sort());

@@ -101,6 +101,22 @@ const texts: readonly (readonly [fact: string, text: string, language?: 'pdb'])[
     pdb(HOH.replace('HOH', 'HHO'), ...pdbWater(1, 0, 0), ...pdbWater(2, 0, 8)),
     'pdb',
   ],
+  [
+    'a molecule that nothing but an estimate gives a dipole',
+    xyz(
+      'fragment_dipoles="nan nan nan 0 1.85 0"',
+      'O     -1.0586     4.8049     0.3015',
+      'C      0.3638     4.8014     0.3102',
+      'C      0.8783     4.2586     1.6300',
+      'F      2.2371     4.2648     1.6196',
+      'H     -1.3365     5.1598    -0.5612',
+      'H      0.7249     5.8230     0.1538',
+      'H      0.7250     4.1854    -0.5197',
+      'H      0.5342     3.2332     1.7961',
+      'H      0.5319     4.8688     2.4697',
+      ...water(12),
+    ),
+  ],
   ['an empty comment line', xyz('', ...water(0), 'Na 0 0 8')],
   ['a comment with a quote that is not closed', xyz('it is "far', ...water(0), ...water(8))],
   [
