@@ -1,12 +1,12 @@
 // The suite inside the extension host, against the packaged extension: `node tests/editor/host.mjs`.
 // POLEWISE_VSCODE names the executable of a desktop build of VS Code to use in place of the rig.
 import { spawnSync } from 'node:child_process';
-import { chmod, mkdir, readFile, writeFile } from 'node:fs/promises';
+import { mkdir, readFile, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { resolveCliArgsFromVSCodeExecutablePath, runTests } from '@vscode/test-electron';
 import { build } from 'esbuild';
-import { ensureRig, freshPlace, installExtension, main, packExtension, ROOT } from './rig.mjs';
+import { ensureRig, freshPlace, installExtension, main, packExtension, ROOT, writeStandIn } from './rig.mjs';
 
 const here = (file) => fileURLToPath(new URL(file, import.meta.url));
 
@@ -22,7 +22,7 @@ function installInDesktop(executable, { user, extensions }, vsix) {
 }
 
 await main(async (atEnd) => {
-  const desktop = process.env.POLEWISE_VSCODE;
+  const desktop = process.env.POLEWISE_VSCODE || undefined;
   const rig = desktop ? undefined : await ensureRig();
   const place = await freshPlace();
   atEnd(() => place.remove());
@@ -45,12 +45,7 @@ await main(async (atEnd) => {
     external: ['vscode'],
     logLevel: 'warning',
   });
-  let executable = desktop;
-  if (!desktop) {
-    executable = join(place.folder, 'editor');
-    await writeFile(executable, `#!/bin/sh\nexec '${process.execPath}' '${here('stand-in.mjs')}' "$@"\n`);
-    await chmod(executable, 0o755);
-  }
+  const executable = desktop ?? (await writeStandIn(place));
 
   const report = join(place.folder, 'report.txt');
   let failure;

@@ -12,7 +12,7 @@ import {
   rmSync,
   symlinkSync,
 } from 'node:fs';
-import { mkdtemp, rename, rm, writeFile } from 'node:fs/promises';
+import { chmod, mkdtemp, rename, rm, writeFile } from 'node:fs/promises';
 import { createRequire } from 'node:module';
 import { createServer } from 'node:net';
 import { homedir, tmpdir } from 'node:os';
@@ -279,6 +279,15 @@ export async function startServer(rig, folders) {
     }
     await sleep(100);
   }
+}
+
+/** Writes a script that stands in for a desktop build of VS Code: it runs `stand-in.mjs` with the same arguments. */
+export async function writeStandIn(place) {
+  const file = join(place.folder, 'editor');
+  const standIn = fileURLToPath(new URL('stand-in.mjs', import.meta.url));
+  await writeFile(file, `#!/bin/sh\nexec '${process.execPath}' '${standIn}' "$@"\n`);
+  await chmod(file, 0o755);
+  return file;
 }
 
 /** Chromium without a window. */
