@@ -179,8 +179,10 @@ export class PairPanel {
     // An answer of an older version is followed by another: the analysis of the new one is told of.
     if (round !== this.#round || answer === null || answer.version !== document.version) return;
     if (answer.place?.isAsked !== true) this.#pair = null;
-    const file = workspace.asRelativePath(document.uri, false);
-    this.#panel.title = `Pairs of ${file.slice(file.lastIndexOf('/') + 1)}`;
+    const name = document.uri.path.split('/').at(-1) ?? '';
+    const isInWorkspace = workspace.getWorkspaceFolder(document.uri) !== undefined && !document.isUntitled;
+    const file = isInWorkspace ? workspace.asRelativePath(document.uri, false) : name;
+    this.#panel.title = `Pairs of ${name}`;
     this.#tell({ kind: 'place', uri: this.#uri!, file, answer });
   }
 
