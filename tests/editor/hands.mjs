@@ -113,9 +113,29 @@ export class Person {
 
   /** Takes the remedy whose title has some words, at the place of the cursor. */
   async quickFix(title) {
-    await this.page.keyboard.press('Control+.');
-    const row = await this.see('.action-widget .monaco-list-row', title);
+    const row = await this.offered('Control+.', title);
     await this.shot('quick-fix');
+    await this.take(row);
+  }
+
+  /** Asks what is offered at the place of the cursor, until something with some words is: the text may be looked at still. */
+  async offered(keys, title) {
+    for (let attempt = 0; ; attempt++) {
+      await this.page.keyboard.press(keys);
+      const row = this.page.locator('.action-widget .monaco-list-row', { hasText: title }).first();
+      const isThere = await row.waitFor({ timeout: 5_000 }).then(
+        () => true,
+        () => false,
+      );
+      if (isThere) return row;
+      if (attempt === 5) throw new Error(`not offered: ${title}`);
+      await this.page.keyboard.press('Escape');
+      await this.page.waitForTimeout(500);
+    }
+  }
+
+  /** Takes what is offered. */
+  async take(row) {
     // The list has the keyboard, and something to catch the mouse lies over it.
     const isChosen = async () => /\bfocused\b/.test((await row.getAttribute('class')) ?? '');
     for (let step = 0; step < 50 && !(await isChosen()); step++) await this.page.keyboard.press('ArrowDown');

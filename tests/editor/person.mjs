@@ -1,6 +1,7 @@
 // Uses the editor as a person would, in every theme: `node tests/editor/person.mjs [--theme=hc] [--flow=pdb]`.
 // Screenshots go to $POLEWISE_SHOTS, or to polewise-shots in the system's folder for temporary files.
 import { ACTING } from './flows/acting.mjs';
+import { EDITING } from './flows/editing.mjs';
 import { PANEL } from './flows/panel.mjs';
 import { READING } from './flows/reading.mjs';
 import { makeShots, newWindow, runFlows } from './hands.mjs';
@@ -18,7 +19,7 @@ import {
 const THEMES = { light: 'Default Light Modern', dark: 'Default Dark Modern', hc: 'Default High Contrast' };
 
 /** Each begins with nothing open but the folder of samples, as they are in the repository; it may leave behind what it likes. */
-const FLOWS = [...READING, ...PANEL, ...ACTING];
+const FLOWS = [...READING, ...EDITING, ...PANEL, ...ACTING];
 
 const option = (name) =>
   process.argv.find((argument) => argument.startsWith(`--${name}=`))?.slice(name.length + 3) ?? '';

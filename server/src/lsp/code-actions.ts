@@ -3,6 +3,7 @@ import type { FrameAnalysis } from '../analysis/frame-analysis';
 import type { TextEdit } from '../base/finding';
 import type { Span } from '../base/span';
 import { type Action, type ActionKind, actionsAt } from '../features/actions';
+import type { Snapshot } from '../text/snapshot';
 import type { Analysed } from './analyser';
 import { rangeOf } from './diagnostics';
 import { type DimerPairs, WRITE_DIMERS_COMMAND } from './protocol';
@@ -95,15 +96,32 @@ function editFor(analysed: Analysed, action: Action, hasPreviews: boolean): Work
   if (!action.needsLook || !hasPreviews) return editOf(analysed, edits);
   const { uri, version, lines } = analysed.document;
   const annotationId = action.kind;
+  const whole = asOne(analysed.document.snapshot, edits);
   return {
     documentChanges: [
       {
         textDocument: { uri, version },
-        edits: edits.map((edit) => ({ range: rangeOf(lines, edit), newText: edit.text, annotationId })),
+        edits: [{ range: rangeOf(lines, whole), newText: whole.text, annotationId }],
       },
     ],
     changeAnnotations: { [annotationId]: { label: action.title, needsConfirmation: true } },
   };
+}
+
+/**
+ * Edits as one, with what stands between them: an editor that shows edits before they are made lets each be left out, and half of a turned
+ * molecule is none.
+ */
+function asOne(snapshot: Snapshot, edits: readonly TextEdit[]): TextEdit {
+  const ascending = [...edits].sort((a, b) => a.start - b.start);
+  const [first] = ascending;
+  if (first === undefined) return { start: 0, end: 0, text: '' };
+  let { text, end } = first;
+  for (const edit of ascending.slice(1)) {
+    text += snapshot.slice(end, edit.start) + edit.text;
+    end = edit.end;
+  }
+  return { start: first.start, end, text };
 }
 
 /** The place that an action which came without its edits was offered at; `null` where it does not tell. */
