@@ -82,7 +82,7 @@ export class Person {
     return words(await row.textContent());
   }
 
-  /** Scrolls the hover down to its picture, which has to be drawn and to say in words what it shows. */
+  /** The hover's picture, which has to be drawn and to say in words what it shows; then scrolls down to the hover's end. */
   async picture() {
     const image = await this.see('.monaco-hover:not(.hidden) .hover-row img');
     ok(await image.evaluate((img) => img.complete && img.naturalWidth > 0), 'the picture is drawn');
@@ -192,6 +192,8 @@ export async function runFlows(page, place, theme, flows) {
     try {
       await person.tidyUp();
       await flow.run(person);
+      // What is left unsaved would come back in the next window.
+      if (flow === flows.at(-1)) await person.tidyUp();
     } catch (error) {
       await person.shot('failed').catch(() => {});
       throw error;

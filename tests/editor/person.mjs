@@ -2,6 +2,7 @@
 // Screenshots go to $POLEWISE_SHOTS, or to polewise-shots in the system's folder for temporary files.
 import { ACTING } from './flows/acting.mjs';
 import { EDITING } from './flows/editing.mjs';
+import { FILES } from './flows/files.mjs';
 import { PANEL } from './flows/panel.mjs';
 import { READING } from './flows/reading.mjs';
 import { makeShots, newWindow, runFlows } from './hands.mjs';
@@ -19,7 +20,7 @@ import {
 const THEMES = { light: 'Default Light Modern', dark: 'Default Dark Modern', hc: 'Default High Contrast' };
 
 /** Each begins with nothing open but the folder of samples, as they are in the repository; it may leave behind what it likes. */
-const FLOWS = [...READING, ...EDITING, ...PANEL, ...ACTING];
+const FLOWS = [...READING, ...EDITING, ...PANEL, ...ACTING, ...FILES];
 
 const option = (name) =>
   process.argv.find((argument) => argument.startsWith(`--${name}=`))?.slice(name.length + 3) ?? '';

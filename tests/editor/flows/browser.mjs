@@ -10,8 +10,8 @@ async function browser(person) {
 
   const atom = await person.hoverAt(4, 12, 'charge');
   ok(atom.includes('H2O') && atom.includes('compute'), atom);
+  await person.shot('hover');
   await person.picture();
-  await person.shot('picture');
   await page.keyboard.press('Escape');
 
   const status = await person.see('#status\\.languageStatus');

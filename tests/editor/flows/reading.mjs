@@ -14,7 +14,7 @@ async function cluster(person) {
   ok(atom.includes('H2O') && atom.includes('compute'), atom);
   await person.shot('atom-hover');
   await person.picture();
-  await person.shot('atom-picture');
+  await person.shot('atom-hover-end');
   await person.hoverAt(3, 1, 'near-field');
   await person.shot('flagged-atom-hover');
 
@@ -63,7 +63,7 @@ async function pdb(person) {
   ok(/aminobenzonitrile|LIG:401/.test(ligand), ligand);
   await person.shot('ligand-hover');
   await person.picture();
-  await person.shot('ligand-picture');
+  await person.shot('ligand-hover-end');
 }
 
 async function mistakes(person) {
