@@ -1,6 +1,6 @@
 import type { Advice } from '../../server/src/analysis/advice';
 import type { PairRow, RowKey, RowQuery } from '../../server/src/features/pair-list';
-import type { PanelRows } from '../../server/src/lsp/protocol';
+import { PANEL_ROWS_REQUEST, type PanelRows } from '../../server/src/lsp/protocol';
 import { button, html } from './dom';
 import type { Host } from './host';
 import { pairsCsv } from './pair-csv';
@@ -76,7 +76,7 @@ export class AllPairsView {
   }
 
   #page(from: number, count: number): Promise<PanelRows | null> {
-    return this.#host.ask<PanelRows>('polewise/panelRows', { frame: this.#frame, query: this.#query, from, count });
+    return this.#host.ask<PanelRows>(PANEL_ROWS_REQUEST, { frame: this.#frame, query: this.#query, from, count });
   }
 
   #show(first: PanelRows, round: number): void {

@@ -1,9 +1,9 @@
-import { fixed } from '../../server/src/features/number-text';
+import { fixed, unitText } from '../../server/src/features/number-text';
 import type { ChosenPair } from '../../server/src/features/panel-place';
 import type { CurvePoint, SeparationCurve } from '../../server/src/features/separation-curve';
 import { axes, type Frame, pathThrough, type Scale, scale } from './axes';
 import { html, svg } from './dom';
-import { csv, type Energies, energyText, unitText } from './words';
+import { csv, type Energies, energyText } from './words';
 
 const WIDTH = 470;
 const HEIGHT = 280;
@@ -54,7 +54,7 @@ export function drawCurve({ curve, titles }: ChosenPair, energies: Energies): SV
     clip,
     inside,
     ...stretchNames(points, x),
-    axes(FRAME, x, inUnits(y, energies), 'separation of the centres / Å', `energy / ${unitText(energies)}`),
+    axes(FRAME, x, inUnits(y, energies), 'separation of the centres / Å', `energy / ${unitText(energies.unit)}`),
     svg('text', { class: 'quiet', x: right - 4, y: y(kT) - 4, 'text-anchor': 'end' }, '±kT'),
     upright(x(presentA), 'present', `now ${fixed(presentA, 2)} Å`, x),
   );

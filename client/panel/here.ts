@@ -1,10 +1,10 @@
-import { fixed } from '../../server/src/features/number-text';
+import { fixed, unitText } from '../../server/src/features/number-text';
+import type { PairPlace } from '../../server/src/features/pair-place';
 import type { ChosenPair, PlaceData } from '../../server/src/features/panel-place';
 import type { FragmentRecord } from '../../server/src/features/records';
 import { curveCsv, curveLegend, drawCurve } from './curve';
 import { button, html } from './dom';
 import type { Host } from './host';
-import type { PanelPair } from './messages';
 import { pairsCsv } from './pair-csv';
 import { PairTable } from './pair-table';
 import { standaloneSvg } from './save-svg';
@@ -20,7 +20,6 @@ import {
   REGIME_WORDS,
   signWord,
   tableWords,
-  unitText,
 } from './words';
 
 /** What the cursor is on: the pair in front, then the partners. */
@@ -81,7 +80,7 @@ export class HereView {
     energies: Energies,
   ): HTMLElement[] {
     const { titles, pair, picture, first, second } = chosen;
-    const numbers: PanelPair = { frame, first: pair.first, second: pair.second };
+    const numbers: PairPlace = { frame, first: pair.first, second: pair.second };
     const image = html('img', {
       src: `data:image/svg+xml;utf8,${encodeURIComponent(picture.svg)}`,
       alt: picture.text,
@@ -177,7 +176,7 @@ function sizeWords(
   const sign = signWord(energy);
   const size = `${sign[0]!.toUpperCase()}${sign.slice(1)}, ${energyNumber(energies, energy)}${
     error === null ? '' : ` ± ${energyNumber(energies, error)}`
-  } ${unitText(energies)}`;
+  } ${unitText(energies.unit)}`;
   const { pointDipole } = pair.energyKJPerMol;
   const isUnscreened = pair.contact === 'touching' && relativePermittivity > 1;
   const whole = strengthKJPerMol / (isUnscreened ? relativePermittivity : 1);

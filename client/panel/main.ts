@@ -1,12 +1,13 @@
 import './panel.css';
 import { fixed } from '../../server/src/features/number-text';
+import type { PairPlace } from '../../server/src/features/pair-place';
 import type { PanelPlace } from '../../server/src/lsp/protocol';
 import { AllPairsView } from './all-pairs';
 import { html } from './dom';
 import { HereView } from './here';
 import { Host } from './host';
 import { MatrixView } from './matrix';
-import type { FromHost, PanelPair } from './messages';
+import type { FromHost } from './messages';
 import { OverFramesView } from './over-frames';
 import { Tabs } from './tabs';
 import { energyText } from './words';
@@ -38,7 +39,7 @@ class Panel {
     },
   );
   #uri = this.#host.kept.uri ?? '';
-  #pair: PanelPair | null = this.#host.kept.pair ?? null;
+  #pair: PairPlace | null = this.#host.kept.pair ?? null;
   #last: PanelPlace | null = null;
 
   constructor() {

@@ -1,4 +1,4 @@
-import type { PanelMatrix } from '../../server/src/lsp/protocol';
+import { PANEL_MATRIX_REQUEST, type PanelMatrix } from '../../server/src/lsp/protocol';
 import { button, html, svg } from './dom';
 import type { Host } from './host';
 import { CLASSES, cellPath, classOf, ktLegend } from './kt-scale';
@@ -56,7 +56,7 @@ export class MatrixView {
   show(frame: number, pair: { readonly first: number; readonly second: number } | null): void {
     const round = ++this.#round;
     if (pair !== null) this.#cell = [Math.min(pair.first, pair.second) - 1, Math.max(pair.first, pair.second) - 1];
-    void this.#host.ask<PanelMatrix>('polewise/panelMatrix', { frame }).then((answer) => {
+    void this.#host.ask<PanelMatrix>(PANEL_MATRIX_REQUEST, { frame }).then((answer) => {
       if (answer !== null && round === this.#round) this.#show(answer);
     });
   }

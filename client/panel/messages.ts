@@ -1,18 +1,22 @@
-import type { DocumentPair, PanelPlace } from '../../server/src/lsp/protocol';
+import type { PairPlace } from '../../server/src/features/pair-place';
+import {
+  PANEL_MATRIX_REQUEST,
+  PANEL_ROWS_REQUEST,
+  PANEL_SERIES_REQUEST,
+  type PanelPlace,
+} from '../../server/src/lsp/protocol';
 
 /** What the panel may ask the server, by the names of the requests; the host adds the document. */
-export type PanelMethod = 'polewise/panelRows' | 'polewise/panelMatrix' | 'polewise/panelSeries';
-
-/** A pair of a frame, both from 1. */
-export type PanelPair = Omit<DocumentPair, 'uri'>;
+export const PANEL_METHODS = [PANEL_ROWS_REQUEST, PANEL_MATRIX_REQUEST, PANEL_SERIES_REQUEST] as const;
+export type PanelMethod = (typeof PANEL_METHODS)[number];
 
 /** What the panel tells its host. */
 export type ToHost =
-  | { readonly kind: 'ready'; readonly pair: PanelPair | null }
+  | { readonly kind: 'ready'; readonly pair: PairPlace | null }
   | { readonly kind: 'ask'; readonly id: number; readonly method: PanelMethod; readonly params: object }
   /** A pair was chosen: its atoms are to be selected, and it is to be shown; null lets the cursor decide again. */
-  | { readonly kind: 'choose'; readonly pair: PanelPair | null }
-  | { readonly kind: 'write'; readonly pair: PanelPair }
+  | { readonly kind: 'choose'; readonly pair: PairPlace | null }
+  | { readonly kind: 'write'; readonly pair: PairPlace }
   | { readonly kind: 'copy'; readonly text: string; readonly what: string }
   | { readonly kind: 'save'; readonly text: string; readonly name: string };
 
@@ -26,5 +30,5 @@ export type FromHost =
 export interface KeptState {
   readonly uri: string;
   readonly view: string;
-  readonly pair: PanelPair | null;
+  readonly pair: PairPlace | null;
 }

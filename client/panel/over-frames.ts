@@ -1,12 +1,12 @@
-import { fixed } from '../../server/src/features/number-text';
+import { fixed, unitText } from '../../server/src/features/number-text';
+import type { PairPlace } from '../../server/src/features/pair-place';
 import type { SeriesFrame } from '../../server/src/features/series';
-import type { PanelSeries } from '../../server/src/lsp/protocol';
+import { PANEL_SERIES_REQUEST, type PanelSeries } from '../../server/src/lsp/protocol';
 import { axes, type Frame, pathThrough, type Scale, scale } from './axes';
 import { button, html, svg } from './dom';
 import type { Host } from './host';
-import type { PanelPair } from './messages';
 import { standaloneSvg } from './save-svg';
-import { csv, type Energies, energyText, multipleOfKT, unitText } from './words';
+import { csv, type Energies, energyText, multipleOfKT } from './words';
 
 const WIDTH = 470;
 const HEIGHT = 260;
@@ -26,13 +26,13 @@ export class OverFramesView {
     this.#host = host;
   }
 
-  show(pair: PanelPair | null): void {
+  show(pair: PairPlace | null): void {
     const round = ++this.#round;
     if (pair === null) {
       this.element.replaceChildren(html('p', { class: 'quiet' }, 'No pair is chosen.'));
       return;
     }
-    void this.#host.ask<PanelSeries>('polewise/panelSeries', pair).then((answer) => {
+    void this.#host.ask<PanelSeries>(PANEL_SERIES_REQUEST, pair).then((answer) => {
       if (answer === null || round !== this.#round) return;
       this.element.replaceChildren(...(answer.reason === null ? this.#series(answer, pair) : this.#none(answer)));
     });
@@ -42,7 +42,7 @@ export class OverFramesView {
     return [html('h2', {}, titles.join(' – ')), html('p', { class: 'quiet' }, reason)];
   }
 
-  #series(series: PanelSeries, pair: PanelPair): HTMLElement[] {
+  #series(series: PanelSeries, pair: PairPlace): HTMLElement[] {
     const picture = drawSeries(series);
     const name = `series-${pair.first}-${pair.second}`;
     const actions = html('div', { class: 'actions' });
@@ -108,7 +108,7 @@ function drawSeries(series: PanelSeries): SVGSVGElement {
       d: pathThrough(energies.map((energy, k) => (energy === null ? null : [x(k + 1), y(energy)]))),
     }),
     ...(frames.length <= MOST_MARKS ? marks(frames, x, y) : []),
-    axes(FRAME, x, yInUnits(y, series), 'frame', `energy / ${unitText(series)}`, true),
+    axes(FRAME, x, yInUnits(y, series), 'frame', `energy / ${unitText(series.unit)}`, true),
     svg(
       'g',
       { class: 'present' },

@@ -1,7 +1,8 @@
 import type { Advice } from '../../server/src/analysis/advice';
 import type { Contact } from '../../server/src/analysis/contact';
 import type { Regime } from '../../server/src/analysis/reference';
-import { fixed } from '../../server/src/features/number-text';
+import { csvLine, type Field } from '../../server/src/features/csv';
+import { fixed, unitText } from '../../server/src/features/number-text';
 import type { PairRecord } from '../../server/src/features/records';
 import type { PanelAnswer } from '../../server/src/lsp/protocol';
 
@@ -49,16 +50,12 @@ export function energyNumber(energies: Energies, energyKJPerMol: number | null):
 
 /** An energy with its unit. */
 export function energyText(energies: Energies, energyKJPerMol: number | null): string {
-  return `${energyNumber(energies, energyKJPerMol)} ${unitText(energies)}`;
-}
-
-export function unitText({ unit }: Energies): string {
-  return unit === 'cm-1' ? 'cm⁻¹' : unit;
+  return `${energyNumber(energies, energyKJPerMol)} ${unitText(energies.unit)}`;
 }
 
 /** What the columns of a table of pairs mean, as far as their heads leave open. */
 export function tableWords(energies: Energies): string {
-  return `E and point in ${unitText(energies)}; ~ is a point estimate without a reference.`;
+  return `E and point in ${unitText(energies.unit)}; ~ is a point estimate without a reference.`;
 }
 
 export function multipleOfKT({ kTKJPerMol }: Energies, energyKJPerMol: number): string {
@@ -73,11 +70,7 @@ export function signWord(energyKJPerMol: number): string {
   return energyKJPerMol < 0 ? 'attractive' : energyKJPerMol > 0 ? 'repulsive' : 'neither attractive nor repulsive';
 }
 
-/** Rows as CSV (RFC 4180), numbers with a plain minus sign. */
-export function csv(rows: readonly (readonly (string | number | null)[])[]): string {
-  const cell = (value: string | number | null) => {
-    const text = value === null ? '' : String(value);
-    return /[",\r\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text;
-  };
-  return rows.map((row) => `${row.map(cell).join(',')}\n`).join('');
+/** Rows as CSV, numbers with a plain minus sign. */
+export function csv(rows: readonly (readonly Field[])[]): string {
+  return rows.map(csvLine).join('');
 }

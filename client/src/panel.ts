@@ -15,6 +15,7 @@ import {
   workspace,
 } from 'vscode';
 import type { BaseLanguageClient } from 'vscode-languageclient';
+import type { PairPlace } from '../../server/src/features/pair-place';
 import {
   type DocumentPair,
   FRAGMENT_LINES_REQUEST,
@@ -26,16 +27,15 @@ import {
   type StatusParams,
   WRITE_DIMERS_COMMAND,
 } from '../../server/src/lsp/protocol';
-import type { FromHost, KeptState, PanelPair, ToHost } from '../panel/messages';
+import { type FromHost, type KeptState, PANEL_METHODS, type ToHost } from '../panel/messages';
+import { isOurs, nameOf } from './documents';
 import { panelHtml } from './panel-html';
 
 const PANEL_TYPE = 'polewise.pairs';
 const WAIT_MS = 60;
 /** What the panel may ask of the server. */
-const METHODS: ReadonlySet<string> = new Set(['polewise/panelRows', 'polewise/panelMatrix', 'polewise/panelSeries']);
+const METHODS: ReadonlySet<string> = new Set(PANEL_METHODS);
 const MOST_SELECTIONS = 500;
-
-const isOurs = (document: TextDocument) => document.languageId === 'xyz' || document.languageId === 'pdb';
 
 /** The coordinates that a person means: those in the active editor, else the first in view, else any that are open. */
 function documentInView(): TextDocument | undefined {
@@ -50,7 +50,7 @@ export class PairPanel {
   #panel: WebviewPanel | null = null;
   #uri: string | null = null;
   #position = new Position(0, 0);
-  #pair: PanelPair | null = null;
+  #pair: PairPlace | null = null;
   /** Rises with every question: an answer to an earlier one is not shown. */
   #round = 0;
   #timer: ReturnType<typeof setTimeout> | undefined;
@@ -179,7 +179,7 @@ export class PairPanel {
     // An answer of an older version is followed by another: the analysis of the new one is told of.
     if (round !== this.#round || answer === null || answer.version !== document.version) return;
     if (answer.place?.isAsked !== true) this.#pair = null;
-    const name = document.uri.path.split('/').at(-1) ?? '';
+    const name = nameOf(document.uri);
     const isInWorkspace = workspace.getWorkspaceFolder(document.uri) !== undefined && !document.isUntitled;
     const file = isInWorkspace ? workspace.asRelativePath(document.uri, false) : name;
     this.#panel.title = `Pairs of ${name}`;
@@ -187,7 +187,7 @@ export class PairPanel {
   }
 
   #showNothing(): void {
-    const name = this.#uri === null ? null : Uri.parse(this.#uri).path.split('/').pop();
+    const name = this.#uri === null ? null : nameOf(Uri.parse(this.#uri));
     const text =
       name === null
         ? 'Open an XYZ or PDB file, and put the cursor on an atom.'
@@ -230,7 +230,7 @@ export class PairPanel {
   }
 
   /** Selects the atoms of a pair in the text, the first fragment's first. */
-  async #select({ frame, first, second }: PanelPair): Promise<void> {
+  async #select({ frame, first, second }: PairPlace): Promise<void> {
     const uri = this.#uri;
     if (uri === null || !this.#client.isRunning()) return;
     const params = { uri, frame, fragments: [first, second] };

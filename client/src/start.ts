@@ -8,13 +8,11 @@ import {
   THEME_NOTIFICATION,
 } from '../../server/src/lsp/protocol';
 import { registerCommands } from './commands';
+import { SELECTOR } from './documents';
 import { readWorkspaceFiles, watchLibraryFiles } from './library-files';
 import { PairPanel } from './panel';
 import { type ServerState, StatusView } from './status';
 import { currentThemeKind } from './theme';
-
-/** Our languages, wherever their text lives: on disk, untitled, remote or virtual. */
-const SELECTOR = [{ language: 'xyz' }, { language: 'pdb' }];
 
 const SERVER_STATES: Readonly<Record<State, ServerState>> = {
   [State.Starting]: 'starting',

@@ -2,7 +2,7 @@ import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { FileAnalysis } from '../../server/src/analysis/frame-analysis';
 import { DEFAULT_REQUEST } from '../../server/src/analysis/settings';
-import { frameIndexAt } from '../../server/src/features/hover';
+import { frameIndexAt } from '../../server/src/features/frame-at';
 import { selectionSpans } from '../../server/src/features/selection';
 import { parse } from '../../server/src/formats/parse';
 import type { Language } from '../../server/src/formats/tree';

@@ -18,8 +18,9 @@ import {
   type MediumEntry,
   SET_FILE_SETTING_REQUEST,
 } from '../../../server/src/lsp/protocol';
+import { nameOf } from '../documents';
 import { request } from './asking';
-import { nameOf, type Target, targetOf } from './target';
+import { type Target, targetOf } from './target';
 
 const TITLE = 'Polewise: preparing the change';
 

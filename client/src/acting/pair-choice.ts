@@ -1,5 +1,6 @@
 import { type QuickPickItem, type TextDocument, window } from 'vscode';
 import type { BaseLanguageClient } from 'vscode-languageclient';
+import { fixed } from '../../../server/src/features/number-text';
 import {
   type DimersParams,
   type FrameAtResult,
@@ -74,7 +75,7 @@ function setsOf({ counts }: PairChoicesResult, frame: number, frames: number): S
 async function pickPairs({ pairs, counts, energyUnit }: PairChoicesResult): Promise<(readonly [number, number])[]> {
   const items = pairs.map(({ first, second, names, distanceA, energy, advice }) => ({
     label: `${first}–${second}  ${names.join(' · ')}`,
-    description: `${fixed(distanceA)} Å, ${fixed(energy)} ${energyUnit}, ${advice}`,
+    description: `${fixed(distanceA, 2)} Å, ${fixed(energy, 2)} ${energyUnit}, ${advice}`,
     picked: advice === 'compute',
     pair: [first, second] as const,
   }));
@@ -86,8 +87,4 @@ async function pickPairs({ pairs, counts, energyUnit }: PairChoicesResult): Prom
     matchOnDescription: true,
   });
   return (chosen ?? []).map(({ pair }) => pair);
-}
-
-function fixed(value: number | null): string {
-  return value === null ? '–' : value.toFixed(2).replace('-', '−');
 }

@@ -1,4 +1,5 @@
 import { type TextDocument, type TextEditor, Uri, window, workspace } from 'vscode';
+import { isOurs, nameOf } from '../documents';
 
 /** The document and line that a command is for. */
 export interface Target {
@@ -6,8 +7,6 @@ export interface Target {
   /** From 0. */
   readonly line: number;
 }
-
-const isOurs = ({ languageId }: TextDocument) => languageId === 'xyz' || languageId === 'pdb';
 
 /** The editor a person means: the active one, or one that is seen beside what else is active. */
 export function editorInView(): TextEditor | undefined {
@@ -39,9 +38,4 @@ export async function targetOf(argument: unknown): Promise<Target | null> {
   }
   const shown = [editor, ...window.visibleTextEditors].find((other) => other?.document === document);
   return { document, line: shown?.selection.active.line ?? 0 };
-}
-
-/** The last part of an address. */
-export function nameOf({ path }: Uri): string {
-  return path.split('/').at(-1) || path;
 }

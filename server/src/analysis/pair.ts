@@ -224,6 +224,11 @@ function multipoleEnergies(
   return energies;
 }
 
+/** The energy that a pair is judged by, kJ/mol: the reference, and where there is none the point estimate; NaN where neither is known. */
+export function energyInUse({ referenceKJPerMol, energies }: Pick<Pair, 'referenceKJPerMol' | 'energies'>): number {
+  return Number.isFinite(referenceKJPerMol) ? referenceKJPerMol : energies.pointDipole;
+}
+
 type Vector = readonly [number, number, number];
 
 /** A dipole; exactly zero where it counts as zero. */

@@ -1,9 +1,10 @@
-import { type Field, quoted } from '../features/pair-table';
+import { csvLine } from '../features/csv';
+import { fixed, NOTHING } from '../features/number-text';
 import type { SeriesFrame } from '../features/series';
 import type { SeriesEvent } from '../features/series-events';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
 import type { Output } from './output';
-import { CAUTIONS, fixed, NOTHING, plural, shownEnergy } from './report-text';
+import { CAUTIONS, plural, shownEnergy } from './report-text';
 import type { SeriesForReport } from './series-command';
 import { type Column, textTable } from './table';
 
@@ -28,10 +29,9 @@ export async function writeSeriesJson(output: Output, { name, language, series, 
 /** One frame a row, with the names of the JSON fields; `events` holds the kinds of what happens up to the frame. */
 export async function writeSeriesCsv(output: Output, { name, series }: SeriesForReport) {
   const kinds = kindsByFrame(series.events);
-  const row = (fields: readonly Field[]) => `${fields.map(quoted).join(',')}\n`;
-  output.write(row(['file', ...Object.keys(series.frames[0]!), 'events']));
+  output.write(csvLine(['file', ...Object.keys(series.frames[0]!), 'events']));
   await writeEach(output, series.frames, (frame) =>
-    row([name, ...Object.values(frame), (kinds.get(frame.frame) ?? []).join(' ')]),
+    csvLine([name, ...Object.values(frame), (kinds.get(frame.frame) ?? []).join(' ')]),
   );
 }
 

@@ -1,5 +1,6 @@
 import type { Advice } from '../analysis/advice';
 import type { FrameAnalysis } from '../analysis/frame-analysis';
+import { fixed, NOTHING } from '../features/number-text';
 import {
   type FragmentName,
   findingRecord,
@@ -15,7 +16,6 @@ import type { FileForReport, PairReport, PairsOptions } from './pairs-command';
 import { type Column, textTable } from './table';
 
 const MOST_FRAGMENTS = 30;
-export const NOTHING = '–';
 const PARTIAL = '*';
 
 export const CAUTIONS =
@@ -189,12 +189,6 @@ export function plural(count: number, what: string): string {
 
 function percent(share: number): string {
   return share > 9.99 ? '>999 %' : `${(100 * share).toFixed(share < 0.1 ? 1 : 0)} %`;
-}
-
-export function fixed(value: Maybe, digits: number): string {
-  if (value === null) return NOTHING;
-  const text = value.toFixed(digits);
-  return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
 }
 
 /** Two decimals, more where the number is small, none where it is large. */

@@ -3,7 +3,7 @@ import type { Finding, FragmentPair, TextEdit } from '../base/finding';
 import type { Span } from '../base/span';
 import type { CoordinateTree } from '../formats/tree';
 import type { EnergyUnit } from '../physics/units';
-import { frameIndexAt } from './hover';
+import { frameIndexAt } from './frame-at';
 import { findingsIn, safeEdits } from './quick-fixes';
 import { remediesFor, silencesFor } from './remedies/table';
 import { REWRITE_KINDS, type RewriteKind, rewritesAt } from './rewrite/rewrites';

@@ -4,6 +4,7 @@ import { evaluatePair, type Pair } from '../analysis/pair';
 import type { Part } from '../analysis/system';
 import type { Steps } from '../base/steps';
 import { dimerFile } from './dimer-file';
+import type { PairPlace } from './pair-place';
 import type { FragmentName } from './records';
 
 /** A pair written as a file of its own. */
@@ -60,13 +61,6 @@ export function planDimer(
 export interface WantedPairs {
   readonly pairs: readonly (readonly [number, number])[] | null;
   readonly advice: readonly Advice[] | null;
-}
-
-/** A pair of a frame; all from 1. */
-export interface PairPlace {
-  readonly frame: number;
-  readonly first: number;
-  readonly second: number;
 }
 
 /** What became of the pairs that were asked for. */

@@ -1,31 +1,15 @@
-import type { FrameAnalysis } from '../analysis/frame-analysis';
-import { pairsOf } from '../analysis/frame-analysis';
-import type { Pair } from '../analysis/pair';
-import { evaluatePair } from '../analysis/pair';
-import { isWithinCutoff } from '../analysis/partners';
+import { type FrameAnalysis, pairsOf } from '../analysis/frame-analysis';
+import { energyInUse, type Pair } from '../analysis/pair';
 import { ZERO_DIPOLE_EA } from '../analysis/settings';
 import type { Span } from '../base/span';
 import type { Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
 import { atomAtLine } from '../formats/reread';
-import type { CoordinateTree, FrameTree } from '../formats/tree';
+import type { CoordinateTree } from '../formats/tree';
+import { frameAtLine } from './frame-at';
 import { KEY_DOCS } from './key-docs';
-import {
-  type FragmentName,
-  type FragmentRecord,
-  fragmentRecord,
-  type InductionRecord,
-  inductionRecord,
-  type PairRecord,
-  pairRecord,
-} from './records';
-
-/** A partner of the fragment under the cursor, seen from it. */
-export interface PartnerView {
-  readonly partner: FragmentRecord;
-  readonly pair: PairRecord;
-  readonly strengthKJPerMol: number;
-}
+import { byStrength, namesOf, type PartnerView, pairsOfFragment, viewFrom } from './partner-view';
+import { type FragmentRecord, fragmentRecord, type InductionRecord, inductionRecord, known } from './records';
 
 /** What a hover shows, as plain data. */
 export type HoverData =
@@ -77,29 +61,6 @@ const MOST_PAIRS = 200000;
 /** Pairs looked at between two pauses. */
 const PAIRS_A_STEP = 512;
 
-/** The frame that holds a line, or `undefined` between frames. */
-export function frameAtLine(file: CoordinateTree, line: number): FrameTree | undefined {
-  let low = 0;
-  let high = file.frames.length - 1;
-  while (low <= high) {
-    const middle = (low + high) >> 1;
-    const frame = file.frames[middle]!;
-    if (line < frame.firstLine) high = middle - 1;
-    else if (line >= frame.endLine) low = middle + 1;
-    else return frame;
-  }
-  return undefined;
-}
-
-/** The frame (from 0) that a hover at an offset speaks of, −1 where it speaks of none. */
-export function frameIndexAt(file: CoordinateTree, offset: number): number {
-  const line = file.lines.lineAt(offset);
-  const tree = frameAtLine(file, line);
-  if (tree !== undefined) return tree.index;
-  // A REMARK stands before the models; the first of them shows what it does.
-  return file.frames.length > 0 && file.remarks.some((remark) => remark.line === line) ? 0 : -1;
-}
-
 /** What to show at an offset, or `null` where there is nothing to say. `frame` is the one of {@link frameIndexAt}, `null` for none. */
 export function* hoverSteps(
   file: CoordinateTree,
@@ -132,7 +93,7 @@ function dipoleAt(frame: FrameAnalysis, { key, text }: KeyHover, offset: number)
   const vector = (array: Float64Array) => [array[3 * f]!, array[3 * f + 1]!, array[3 * f + 2]!] as const;
   const used = vector(moments.dipoleEA);
   const charges = vector(moments.columnDipoleEA);
-  const chargesEA = finite(Math.hypot(...charges)) ?? null;
+  const chargesEA = known(Math.hypot(...charges));
   const cosine =
     (used[0] * charges[0] + used[1] * charges[1] + used[2] * charges[2]) /
     (Math.hypot(...used) * Math.hypot(...charges));
@@ -149,7 +110,7 @@ function dipoleAt(frame: FrameAnalysis, { key, text }: KeyHover, offset: number)
         ? Math.hypot(...note.dipoleEA)
         : (note.dipoleSizeEA ?? 0),
     chargesEA,
-    angleDeg: chargesEA === null || chargesEA < ZERO_DIPOLE_EA ? null : (finite(angle) ?? null),
+    angleDeg: chargesEA === null || chargesEA < ZERO_DIPOLE_EA ? null : known(angle),
   };
 }
 
@@ -159,11 +120,6 @@ function keyAt(entries: readonly Entry[], offset: number): KeyHover | null {
   const text = entry === undefined || !Object.hasOwn(KEY_DOCS, entry.key) ? undefined : KEY_DOCS[entry.key];
   if (entry === undefined || text === undefined) return null;
   return { kind: 'key', span: { start: entry.keySpan.start, end: entry.value.end }, key: entry.key, text };
-}
-
-/** What the fragments of a frame are called. */
-export function namesOf(frame: FrameAnalysis): (fragment: number) => FragmentName {
-  return (f) => ({ name: frame.model.names[f]!, label: frame.model.labels[f] === '' ? null : frame.model.labels[f]! });
 }
 
 function fragmentHover(frame: FrameAnalysis, atom: number): HoverData | null {
@@ -186,36 +142,6 @@ function fragmentHover(frame: FrameAnalysis, atom: number): HoverData | null {
   };
 }
 
-/** All pairs of one fragment. */
-export function pairsOfFragment(frame: FrameAnalysis, f: number): Pair[] {
-  const { system, partners } = frame;
-  return Array.from(partners.of(f, false))
-    .map((g) => evaluatePair(system, Math.min(f, g), Math.max(f, g)))
-    .filter((pair) => pair.contact !== 'apart' || isWithinCutoff(system, pair.first, pair.second, pair.distanceA));
-}
-
-/** Order of pairs by what they matter. */
-export function byStrength(a: Pair, b: Pair): number {
-  return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
-}
-
-/** A pair as seen from fragment `f`, one of its two. */
-export function viewFrom(frame: FrameAnalysis, f: number, pair: Pair): PartnerView {
-  const other = pair.first === f ? pair.second : pair.first;
-  return {
-    partner: fragmentRecord(frame, other, namesOf(frame)),
-    pair: turned(pairRecord(frame.system, pair), pair.second === f),
-    strengthKJPerMol: pair.strengthKJPerMol,
-  };
-}
-
-/** A pair as seen from its second fragment, where that is asked for: the line of centres turns round. */
-function turned(record: PairRecord, isTurned: boolean): PairRecord {
-  if (!isTurned) return record;
-  const opposite = (angle: number | null) => (angle === null ? null : 180 - angle);
-  return { ...record, theta1Deg: opposite(record.theta2Deg), theta2Deg: opposite(record.theta1Deg) };
-}
-
 function* frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): Steps<HoverData> {
   const { tree } = frame.model;
   const strongest: Pair[] = [];
@@ -227,8 +153,8 @@ function* frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): 
     if (++count > MOST_PAIRS) break;
     if (count % PAIRS_A_STEP === 0) yield;
     regimes[pair.regime ?? 'none']++;
-    const energy = finite(pair.referenceKJPerMol) ?? finite(pair.energies.pointDipole);
-    if (energy !== undefined) {
+    const energy = known(energyInUse(pair));
+    if (energy !== null) {
       sum += energy;
       summed++;
     }
@@ -254,8 +180,4 @@ function* frameHover(file: CoordinateTree, frame: FrameAnalysis, line: number): 
     regimes,
     induction: inductionRecord(frame),
   };
-}
-
-function finite(value: number): number | undefined {
-  return Number.isFinite(value) ? value : undefined;
 }

@@ -3,7 +3,8 @@ import type { Steps } from '../base/steps';
 import { atomAtLine } from '../formats/reread';
 import type { CoordinateTree } from '../formats/tree';
 import { DEBYE_E_A } from '../physics/constants';
-import { pairsOfFragment } from './hover';
+import { fragmentTitle } from './fragment-title';
+import { pairsOfFragment } from './partner-view';
 
 /** Which hints are wanted. */
 export interface HintKinds {
@@ -60,7 +61,7 @@ export function* hintSteps(
 }
 
 function fragmentText({ model, moments }: FrameAnalysis, f: number): string {
-  const name = model.labels[f] || `${model.names[f]} (${f + 1})`;
+  const name = fragmentTitle(model, f);
   const size = moments.dipoleNormEA[f]! / DEBYE_E_A;
   if (moments.dipoleSource[f] === 'atom') {
     const charge = moments.chargeE[f]!;
@@ -85,7 +86,7 @@ function closestContact(frame: FrameAnalysis, f: number): { atom: number; text: 
     };
   }
   if (best === null || best.partner >= model.fragments.count) return null;
-  const partner = model.labels[best.partner] || `${model.names[best.partner]} (${best.partner + 1})`;
+  const partner = fragmentTitle(model, best.partner);
   const atom = system.atomNumbers[best.own]! - 1;
   const tooltip = `Closest contact with another fragment: atom ${system.atomNumbers[best.other]}, ${best.ratio.toFixed(2)} of the sum of van der Waals radii`;
   return { atom, text: `${best.distanceA.toFixed(2)} Å to ${partner}`, tooltip };

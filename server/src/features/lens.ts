@@ -1,7 +1,9 @@
 import type { FrameAnalysis } from '../analysis/frame-analysis';
+import { energyInUse } from '../analysis/pair';
 import { pairsToCompute, strongestPair } from '../analysis/pairs-of-note';
 import type { PairSurvey } from '../analysis/survey';
 import type { Steps } from '../base/steps';
+import { fragmentTitle } from './fragment-title';
 import { known, type Maybe } from './records';
 
 /** What stands above a frame, as plain data; frame and fragments count from 1. */
@@ -31,7 +33,6 @@ export function* lensSteps(frame: FrameAnalysis, survey: PairSurvey): Steps<Fram
   const compute: [number, number][] = [];
   for (let k = 0; k < flat.length; k += 2) compute.push([flat[k]! + 1, flat[k + 1]! + 1]);
   const { model, system } = frame;
-  const nameOf = (f: number) => model.labels[f] || `${model.names[f]} (${f + 1})`;
   return {
     frame: frame.index + 1,
     pairs: survey.pairs,
@@ -42,9 +43,9 @@ export function* lensSteps(frame: FrameAnalysis, survey: PairSurvey): Steps<Fram
         : {
             first: pair.first + 1,
             second: pair.second + 1,
-            name1: nameOf(pair.first),
-            name2: nameOf(pair.second),
-            energyKJPerMol: known(pair.referenceKJPerMol) ?? known(pair.energies.pointDipole),
+            name1: fragmentTitle(model, pair.first),
+            name2: fragmentTitle(model, pair.second),
+            energyKJPerMol: known(energyInUse(pair)),
             verdict: pair.contact === 'clash' ? 'clash' : (pair.regime ?? 'no basis to judge the point dipole'),
           },
     isSearched,

@@ -1,8 +1,7 @@
 import type { Span } from '../base/span';
 import { atomAtLine } from '../formats/reread';
-import type { CoordinateTree } from '../formats/tree';
 import { atomsOf } from '../model/fragment-set';
-import type { FrameModel } from '../model/frame-model';
+import { runsOf } from './fragment-lines';
 import { type Annotated, mentionAt, mentionsOf } from './mentions';
 
 /** What the place under the cursor leads to. */
@@ -20,9 +19,6 @@ export interface Concern {
   readonly atomRuns: readonly Span[];
   readonly mentions: readonly Span[];
 }
-
-/** More places than this are of no use to anyone. */
-const MOST_PLACES = 2000;
 
 /** From an annotation to the atoms that it speaks of; from an atom to the annotation that speaks of its fragment. */
 export function definitionAt(annotated: Annotated, offset: number): Lead | null {
@@ -51,30 +47,4 @@ export function concernAt(annotated: Annotated, offset: number): Concern | null 
     atomRuns: runsOf(model, atomsOf(model.fragments, f)),
     mentions: mentionsOf(annotated, f).map((entry) => entry.span),
   };
-}
-
-/** The lines of atoms (ascending): each run of lines that follow one another is one span. */
-export function runsOf({ tree }: Pick<FrameModel, 'tree'>, atoms: ArrayLike<number>): Span[] {
-  const runs: Span[] = [];
-  let before = -2;
-  for (let k = 0; k < atoms.length && runs.length <= MOST_PLACES; k++) {
-    const span = tree.fieldSpan(atoms[k]!, 'line');
-    const line = tree.atoms.line[atoms[k]!]!;
-    if (line === before + 1) runs[runs.length - 1] = { start: runs[runs.length - 1]!.start, end: span.end };
-    else runs.push(span);
-    before = line;
-  }
-  return runs.slice(0, MOST_PLACES);
-}
-
-/** Every line of some runs of lines, the first few thousand. */
-export function linesOf({ lines }: CoordinateTree, runs: readonly Span[]): Span[] {
-  const found: Span[] = [];
-  for (const { start, end } of runs) {
-    const last = lines.lineAt(end);
-    for (let line = lines.lineAt(start); line <= last && found.length < MOST_PLACES; line++) {
-      found.push({ start: Math.max(start, lines.starts[line]!), end: Math.min(end, lines.end(line)) });
-    }
-  }
-  return found;
 }

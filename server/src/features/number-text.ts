@@ -1,3 +1,4 @@
+import type { EnergyUnit } from '../physics/units';
 import type { Maybe } from './records';
 
 /** Stands where a number is not known. */
@@ -8,4 +9,9 @@ export function fixed(value: Maybe, digits: number): string {
   if (value === null) return NOTHING;
   const text = value.toFixed(digits);
   return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
+}
+
+/** A unit of energy as it is printed. */
+export function unitText(unit: EnergyUnit): string {
+  return unit === 'cm-1' ? 'cm⁻¹' : unit;
 }

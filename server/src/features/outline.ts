@@ -2,6 +2,7 @@ import type { FrameAnalysis } from '../analysis/frame-analysis';
 import type { Span } from '../base/span';
 import type { CoordinateTree } from '../formats/tree';
 import { atomsOf } from '../model/fragment-set';
+import { fragmentTitle } from './fragment-title';
 
 /** A frame or fragment of the outline. */
 export interface OutlineEntry {
@@ -34,7 +35,7 @@ export function outlineOf(file: CoordinateTree, analysed: FrameAnalysis | null):
 }
 
 function fragmentsOf(file: CoordinateTree, { model, moments }: FrameAnalysis): OutlineEntry[] {
-  const { fragments, tree, names, labels, formulas } = model;
+  const { fragments, tree, formulas } = model;
   if (fragments.count > MOST_OUTLINED_FRAGMENTS) return [];
   return Array.from({ length: fragments.count }, (_, f) => {
     const atoms = atomsOf(fragments, f);
@@ -43,7 +44,7 @@ function fragmentsOf(file: CoordinateTree, { model, moments }: FrameAnalysis): O
     const charge = moments.chargeE[f]!;
     const sign = Math.abs(charge) < 0.005 ? '' : `, ${charge > 0 ? '+' : '−'}${Math.abs(charge).toFixed(2)} e`;
     return {
-      name: labels[f] || `${names[f]} (${f + 1})`,
+      name: fragmentTitle(model, f),
       detail: `${formulas[f]}${sign}`,
       kind: 'fragment',
       span: linesSpan(file, first, last + 1),

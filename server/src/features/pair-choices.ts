@@ -1,9 +1,8 @@
 import type { Advice } from '../analysis/advice';
 import { type FrameAnalysis, pairsOf } from '../analysis/frame-analysis';
-import type { Pair } from '../analysis/pair';
+import { energyInUse, type Pair } from '../analysis/pair';
 import type { Steps } from '../base/steps';
-import type { CoordinateTree } from '../formats/tree';
-import { frameAtLine } from './hover';
+import { byStrength } from './partner-view';
 import { known, type Maybe } from './records';
 
 /** A pair to choose; fragments from 1. */
@@ -41,10 +40,6 @@ export function* pairChoiceSteps(frame: FrameAnalysis, most: number): Steps<Pair
   return { counts, pairs: strongest.map((pair) => choiceOf(frame, pair)) };
 }
 
-function byStrength(a: Pair, b: Pair): number {
-  return b.strengthKJPerMol - a.strengthKJPerMol || a.first - b.first || a.second - b.second;
-}
-
 function choiceOf({ model }: FrameAnalysis, pair: Pair): PairChoice {
   const nameOf = (f: number) => model.labels[f] || model.names[f]!;
   return {
@@ -52,15 +47,7 @@ function choiceOf({ model }: FrameAnalysis, pair: Pair): PairChoice {
     second: pair.second + 1,
     names: [nameOf(pair.first), nameOf(pair.second)],
     distanceA: known(pair.distanceA),
-    energyKJPerMol: known(pair.referenceKJPerMol) ?? known(pair.energies.pointDipole),
+    energyKJPerMol: known(energyInUse(pair)),
     advice: pair.advice!,
   };
-}
-
-/** The frame (from 0) that a cursor on a line means: the one around it, else the one before, else the first; −1 where there is none. */
-export function frameIndexNear(file: CoordinateTree, line: number): number {
-  const around = frameAtLine(file, line);
-  if (around !== undefined) return around.index;
-  const before = file.frames.filter(({ firstLine }) => firstLine <= line).length - 1;
-  return file.frames.length === 0 ? -1 : Math.max(0, before);
 }

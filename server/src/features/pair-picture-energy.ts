@@ -1,3 +1,4 @@
+import { fixed, unitText } from './number-text';
 import type { PairPictureInput } from './pair-picture';
 import { element, FONT_PX, label, line, outline, type Palette, textWidth } from './pair-picture-parts';
 
@@ -28,7 +29,8 @@ export function energyBar(input: PairPictureInput, palette: Palette, width: numb
   const at = (energy: number) => zero + energy * pxPerKJ;
   // The band's value stands opposite to the reference's.
   const bandSide = reference !== null && reference > 0 ? -1 : 1;
-  const band = input.unit === 'kT' ? '±kT' : `±kT = ${shownEnergy(kT * input.unitsPerKJPerMol)} ${unitText(input)}`;
+  const band =
+    input.unit === 'kT' ? '±kT' : `±kT = ${shownEnergy(kT * input.unitsPerKJPerMol)} ${unitText(input.unit)}`;
   return (
     words(reference ?? point ?? 0, palette, width, input) +
     thermalBand(kT * pxPerKJ, zero, ink) +
@@ -44,12 +46,7 @@ export function energyBar(input: PairPictureInput, palette: Palette, width: numb
 export function shownEnergy(value: number): string {
   const size = Math.abs(value);
   if (size >= 1e6) return value.toExponential(2).replace('e+', 'e').replace('-', '−');
-  const text = value.toFixed(size >= 1000 ? 0 : 2);
-  return (Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−');
-}
-
-export function unitText({ unit }: PairPictureInput): string {
-  return unit === 'cm-1' ? 'cm⁻¹' : unit;
+  return fixed(value, size >= 1000 ? 0 : 2);
 }
 
 /** The sign of an energy as shown: 0 where its digits are all zero. */
@@ -118,7 +115,7 @@ function valueLabel(
   { ink }: Palette,
   input: PairPictureInput,
 ): string {
-  const text = `${name} ${shownEnergy(energy * input.unitsPerKJPerMol)} ${unitText(input)}`;
+  const text = `${name} ${shownEnergy(energy * input.unitsPerKJPerMol)} ${unitText(input.unit)}`;
   const half = (textWidth(text) * TEXT_PX) / FONT_PX / 2;
   const [from, to] = energy > 0 ? [zero + EDGE, 2 * zero - EDGE] : [EDGE, zero - EDGE];
   return small(Math.min(Math.max(x, from + half), to - half), y, text, ink, 'middle');

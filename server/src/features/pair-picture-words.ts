@@ -1,5 +1,6 @@
+import { unitText } from './number-text';
 import type { PairPictureInput } from './pair-picture';
-import { shownEnergy, shownSign, unitText } from './pair-picture-energy';
+import { shownEnergy, shownSign } from './pair-picture-energy';
 import { fittedCount, printable, signed } from './pair-picture-parts';
 import { isEnclosed, isIon, isZeroDipole } from './pair-picture-scene';
 
@@ -39,7 +40,7 @@ function energies(input: PairPictureInput): string {
   if (leading === null) return 'No energy is known.';
   const sign = shownSign(leading, unitsPerKJPerMol);
   const word = sign < 0 ? 'Attractive' : sign > 0 ? 'Repulsive' : 'Neither attractive nor repulsive';
-  const value = (energy: number) => `${shownEnergy(energy * unitsPerKJPerMol)} ${unitText(input)}`;
+  const value = (energy: number) => `${shownEnergy(energy * unitsPerKJPerMol)} ${unitText(input.unit)}`;
   const parts = [
     ...(reference === null ? [] : [`reference ${value(reference)}`]),
     ...(point === null ? [] : [`point dipole ${value(point)}`]),

@@ -1,8 +1,7 @@
 import { type FrameAnalysis, pairsOf } from '../analysis/frame-analysis';
 import type { Steps } from '../base/steps';
+import { csvLine, type Field } from './csv';
 import { type PairRecord, pairRecord } from './records';
-
-export type Field = string | number | null;
 
 /** The fields of a record in their order: nested names joined by a dot, lists by blanks in one field. */
 function fieldsOf(record: PairRecord): [string, Field][] {
@@ -23,17 +22,10 @@ export class PairTable {
   /** The lines of one more pair of a file: before the first one stand the titles. */
   linesOf(file: string, frame: number, record: PairRecord): string {
     const fields = fieldsOf(record);
-    const titles = this.#titled ? '' : `file,frame,${fields.map(([title]) => title).join(',')}\n`;
+    const titles = this.#titled ? '' : csvLine(['file', 'frame', ...fields.map(([title]) => title)]);
     this.#titled = true;
-    return `${titles}${quoted(file)},${frame},${fields.map(([, field]) => quoted(field)).join(',')}\n`;
+    return titles + csvLine([file, frame, ...fields.map(([, field]) => field)]);
   }
-}
-
-/** A field as it stands in comma-separated values. */
-export function quoted(field: Field): string {
-  if (field === null) return '';
-  const text = String(field);
-  return /[",\r\n]/.test(text) ? `"${text.replace(/"/g, '""')}"` : text;
 }
 
 /** Adds the lines of a frame's pairs to others; returns false where that would be more than `most` pairs. */

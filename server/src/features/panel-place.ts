@@ -5,19 +5,14 @@ import { atomAtLine } from '../formats/reread';
 import type { CoordinateTree } from '../formats/tree';
 import type { EnergyUnit } from '../physics/units';
 import { fragmentTitle } from './fragment-title';
-import { byStrength, namesOf, pairsOfFragment, viewFrom } from './hover';
 import { type PairList, type PairRow, pairRow } from './pair-list';
 import { type PairPicture, pairPicture } from './pair-picture';
 import { pictureInputOf } from './pair-picture-input';
 import type { PictureTheme } from './pair-picture-parts';
+import type { PairNumbers } from './pair-place';
+import { byStrength, namesOf, pairsOfFragment, viewFrom } from './partner-view';
 import { type FragmentRecord, fragmentRecord, type PairRecord } from './records';
 import { type SeparationCurve, separationCurveSteps } from './separation-curve';
-
-/** A pair of a frame; fragments from 1. */
-export interface PairNumbers {
-  readonly first: number;
-  readonly second: number;
-}
 
 /** The pair that the panel leads with, seen from its first fragment. */
 export interface ChosenPair {

@@ -3,12 +3,11 @@ import type { Entry } from '../formats/annotation/entries';
 import { listItems } from '../formats/annotation/lists';
 import { atomAtLine } from '../formats/reread';
 import type { CoordinateTree } from '../formats/tree';
-import { atomsOf } from '../model/fragment-set';
 import type { FrameModel } from '../model/frame-model';
 import { skipBlanks, skipField, trimEnd } from '../text/numbers';
-import { frameAtLine } from './hover';
+import { fragmentLines } from './fragment-lines';
+import { frameAtLine } from './frame-at';
 import { holds, itemsOfEntry, namesOfAxis, spanAt } from './mentions';
-import { runsOf } from './navigation';
 import { linesSpan } from './outline';
 
 /**
@@ -87,12 +86,12 @@ function lineSpans({ text, lines }: CoordinateTree, line: number): Span[] {
 }
 
 /** The run of lines of the fragment around an atom line, if there is one. */
-function fragmentSpans({ lines }: CoordinateTree, model: FrameModel, line: number): Span[] {
+function fragmentSpans(file: CoordinateTree, model: FrameModel, line: number): Span[] {
   const atom = atomAtLine(model.tree, line);
   const f = atom < 0 ? -1 : model.fragments.ofAtom[atom]!;
   if (f < 0) return [];
-  return runsOf(model, atomsOf(model.fragments, f)).flatMap((run) => {
-    const [first, last] = [lines.lineAt(run.start), lines.lineAt(run.end)];
-    return line < first || line > last ? [] : [{ start: lines.starts[first]!, end: lines.end(last) }];
-  });
+  const { starts } = file.lines;
+  return fragmentLines(file, model, f).flatMap(({ firstLine, lastLine }) =>
+    line < firstLine || line > lastLine ? [] : [{ start: starts[firstLine]!, end: file.lines.end(lastLine) }],
+  );
 }

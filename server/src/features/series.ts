@@ -1,7 +1,7 @@
 import type { Advice } from '../analysis/advice';
 import type { Contact } from '../analysis/contact';
 import { type FileAnalysis, type FrameAnalysis, pairsOf } from '../analysis/frame-analysis';
-import { evaluatePair, type Pair } from '../analysis/pair';
+import { energyInUse, evaluatePair, type Pair } from '../analysis/pair';
 import type { Basis, Regime } from '../analysis/reference';
 import type { System } from '../analysis/system';
 import type { Steps } from '../base/steps';
@@ -90,17 +90,13 @@ function problemOf([a, b]: readonly [number, number], count: number): string | n
   return a === b ? `fragment ${a} makes no pair with itself` : null;
 }
 
-function energyOf({ referenceKJPerMol, energies }: Pair): number {
-  return Number.isFinite(referenceKJPerMol) ? referenceKJPerMol : energies.pointDipole;
-}
-
 /** The pair of the largest energy; null where none is known. */
 function* strongestSteps(frame: FrameAnalysis): Steps<[number, number] | null> {
   let strongest: [number, number] | null = null;
   let most = Number.NEGATIVE_INFINITY;
   let seen = 0;
   for (const pair of pairsOf(frame)) {
-    const size = Math.abs(energyOf(pair));
+    const size = Math.abs(energyInUse(pair));
     if (Number.isFinite(size) && size > most) {
       most = size;
       strongest = [pair.first + 1, pair.second + 1];
@@ -140,7 +136,7 @@ function lookAt(
     return { record: { ...NOTHING_KNOWN, ...numbers, missing }, place: null };
   }
   const pair = evaluatePair(system, Math.min(f, g), Math.max(f, g));
-  const energy = known(energyOf(pair));
+  const energy = known(energyInUse(pair));
   const record: SeriesFrame = {
     ...numbers,
     distanceA: known(pair.distanceA),

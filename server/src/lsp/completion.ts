@@ -7,7 +7,7 @@ import {
 } from 'vscode-languageserver';
 import type { FrameAnalysis } from '../analysis/frame-analysis';
 import { type Completion, type CompletionPlace, completionsAt } from '../features/completion';
-import { frameAtLine } from '../features/hover';
+import { frameAtLine } from '../features/frame-at';
 import { atomicNumberOf } from '../physics/elements';
 import { scanCount, skipBlanks, skipField, trimEnd } from '../text/numbers';
 import type { Analysed } from './analyser';

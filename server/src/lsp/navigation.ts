@@ -10,8 +10,9 @@ import {
   type ServerCapabilities,
 } from 'vscode-languageserver';
 import type { Span } from '../base/span';
-import { frameIndexAt } from '../features/hover';
-import { type Concern, concernAt, definitionAt, linesOf } from '../features/navigation';
+import { linesOf } from '../features/fragment-lines';
+import { frameIndexAt } from '../features/frame-at';
+import { type Concern, concernAt, definitionAt } from '../features/navigation';
 import { NOTHING_TO_RENAME, type Renaming, renamingAt } from '../features/rename';
 import { selectionSpans } from '../features/selection';
 import type { FrameModel } from '../model/frame-model';

@@ -1,7 +1,7 @@
 import { FileAnalysis, type FrameAnalysis } from '../analysis/frame-analysis';
 import { fragmentLines } from '../features/fragment-lines';
 import { fragmentTitle } from '../features/fragment-title';
-import { frameIndexAt } from '../features/hover';
+import { frameIndexAt } from '../features/frame-at';
 import { PairList } from '../features/pair-list';
 import { fragmentAtLine, placeSteps } from '../features/panel-place';
 import { seriesSteps } from '../features/series';
@@ -131,7 +131,7 @@ export class PanelAnswers {
     const there = fragments.filter((f) => Number.isInteger(f) && f >= 1 && f <= count);
     return {
       version: this.#analysed.document.version,
-      runs: there.flatMap((f) => fragmentLines(frame.model, f - 1)),
+      runs: there.flatMap((f) => fragmentLines(this.#analysed.tree, frame.model, f - 1)),
     };
   }
 

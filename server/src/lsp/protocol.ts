@@ -4,11 +4,12 @@
  */
 
 import type { Advice } from '../analysis/advice';
-import type { Dimer, DimerHarvest, PairPlace } from '../features/dimers';
+import type { Dimer, DimerHarvest } from '../features/dimers';
 import type { PairChoice } from '../features/pair-choices';
 import type { PairRow, RowQuery } from '../features/pair-list';
 import type { PictureTheme } from '../features/pair-picture-parts';
-import type { PairNumbers, PlaceData } from '../features/panel-place';
+import type { PairPlace } from '../features/pair-place';
+import type { PlaceData } from '../features/panel-place';
 import type { Maybe } from '../features/records';
 import type { SeriesFrame } from '../features/series';
 import type { SeriesEvent } from '../features/series-events';
@@ -130,9 +131,8 @@ export const OPEN_PANEL_COMMAND = 'polewise.openPanel';
 export const FILES_CHANGED_NOTIFICATION = 'polewise/filesChanged';
 
 /** A pair of a document; frame and fragments from 1. */
-export interface DocumentPair extends PairNumbers {
+export interface DocumentPair extends PairPlace {
   readonly uri: string;
-  readonly frame: number;
 }
 
 /** What every answer to the panel carries: of which version of the text it speaks, and how energies are to be written. */
@@ -150,7 +150,7 @@ export interface PanelPlaceParams {
   readonly uri: string;
   readonly position: TextPlace;
   /** A pair that was chosen; shown as long as the cursor is on one of its fragments, or on none. */
-  readonly pair: ({ readonly frame: number } & PairNumbers) | null;
+  readonly pair: PairPlace | null;
 }
 
 export interface PanelPlace extends PanelAnswer {

@@ -1,8 +1,9 @@
-import type { HoverData, PartnerView } from '../features/hover';
+import type { HoverData } from '../features/hover';
 import { fixed, NOTHING } from '../features/number-text';
 import { pairPicture } from '../features/pair-picture';
 import { pictureInputOf } from '../features/pair-picture-input';
 import type { PictureTheme } from '../features/pair-picture-parts';
+import type { PartnerView } from '../features/partner-view';
 import type { FragmentRecord, Maybe } from '../features/records';
 import { BOHR_A, COULOMB_METRE_E_A, DEBYE_E_A } from '../physics/constants';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';

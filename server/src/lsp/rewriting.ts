@@ -1,6 +1,6 @@
 import type { FrameAnalysis } from '../analysis/frame-analysis';
 import type { TextEdit } from '../base/finding';
-import { frameIndexAt } from '../features/hover';
+import { frameIndexAt } from '../features/frame-at';
 import { addDipolesEdits } from '../features/rewrite/add-dipoles';
 import { fileSettingEdits } from '../features/rewrite/file-setting';
 import { headerEdits } from '../features/rewrite/insert-header';

@@ -1,5 +1,6 @@
 import type { FrameAnalysis } from '../analysis/frame-analysis';
-import { frameIndexAt, type HoverData, hoverSteps } from '../features/hover';
+import { frameIndexAt } from '../features/frame-at';
+import { type HoverData, hoverSteps } from '../features/hover';
 import { type Hint, hintSteps } from '../features/inlay-hints';
 import type { Language } from '../formats/tree';
 import { type Analysed, analyseDocument } from './analyser';

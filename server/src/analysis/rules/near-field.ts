@@ -1,6 +1,6 @@
 import type { FindingCode } from '../../base/catalogue';
 import type { Related } from '../../base/finding';
-import { evaluatePair, type Pair } from '../pair';
+import { energyInUse, evaluatePair, type Pair } from '../pair';
 import { NoteKind, type PairNotes } from '../pair-notes';
 import type { Basis } from '../reference';
 import { type RuleContext, shown } from './context';
@@ -131,10 +131,9 @@ class NearField {
     const context = this.#context;
     const pair = evaluatePair(context.frame.system, first, second);
     const { kTKJPerMol } = context.frame.system;
-    const known = Number.isNaN(pair.referenceKJPerMol) ? pair.energies.pointDipole : pair.referenceKJPerMol;
     const share = shareOff(pair);
     const off = share === null ? '' : `, point dipole off by ${share}`;
-    return `${context.nameOf(first === f ? second : first)}: R ${shown(pair.distanceA)} Å, ${energy(known, kTKJPerMol)}${off}`;
+    return `${context.nameOf(first === f ? second : first)}: R ${shown(pair.distanceA)} Å, ${energy(energyInUse(pair), kTKJPerMol)}${off}`;
   }
 
   #sentence({ first, second }: Noted, f: number): string {
