@@ -49,10 +49,10 @@ interface Import {
 
 function importsOf(file: string): Import[] {
   const text = readFileSync(file, 'utf8');
-  const found = text.matchAll(/^(import|export)\b(?:([^;]*?)from )?'([^']+)'|\bimport\('([^']+)'\)/gm);
-  return Array.from(found, ([, , names = '', target, dynamic]) => ({
+  const found = text.matchAll(/^(?:import|export)\b\s*(?:([^;]*?)from )?'([^']+)'|\bimport\('([^']+)'\)/gm);
+  return Array.from(found, ([, names = '', target, dynamic]) => ({
     target: (target ?? dynamic)!,
-    isTypeOnly: /^ type\b/.test(names),
+    isTypeOnly: /^type\b/.test(names),
   }));
 }
 
