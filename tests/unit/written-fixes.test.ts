@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { FindingCode } from '../../server/src/base/catalogue';
+import { safeEdits } from '../../server/src/features/quick-fixes';
 import type { Language } from '../../server/src/formats/tree';
 import { analyse, applyFix } from '../support/analyse';
 import { pdbAtom } from './findings-table';
@@ -65,11 +66,31 @@ describe.each(['\n', '\r\n'])('a comment line before %j', (lineEnd) => {
     ['value-unportable', 'fragment_charges=[0, 0 temperature=300', 'fragment_charges="0 0" temperature=300'],
     ['value-unportable', 'fragment_names=["a b", c,]', null],
     ['key-misspelt', 'temprature=300', 'temperature=300'],
+    ['key-misspelt', 'temprature=300 temperature=310', null],
+    ['key-misspelt', 'total_chrge=0 charge=0', null],
     ['array-length', 'fragment_charges="0 0 0"', 'fragment_charges="0 0"'],
   ];
 
   it.each(rows)('%s: %s becomes %s', (code, wrong, mended) => {
     expect(mend(file(wrong), code, 'xyz')).toBe(mended === null ? null : file(mended));
+  });
+});
+
+describe('remedies applied all at once', () => {
+  const safely = (comment: string) => {
+    const text = ['6', comment, ...WATERS, ''].join('\n');
+    const edits = [...safeEdits(analyse(text, 'xyz').findings)].reverse();
+    const after = edits.reduce((all, edit) => all.slice(0, edit.start) + edit.text + all.slice(edit.end), text);
+    return after.split('\n')[1];
+  };
+
+  it.each([
+    ['fill up a list', 'fragment_charges="0"', 'fragment_charges="0 nan"'],
+    ['fill up a list of one bare word', 'fragment_charges=0', 'fragment_charges="0 nan"'],
+    ['take nothing out of a list', 'fragment_charges="0 0 1"', 'fragment_charges="0 0 1"'],
+    ['give no key twice', 'temprature=300 temperatur=310', 'temperature=300 temperatur=310'],
+  ])('%s', (_, before, after) => {
+    expect(safely(before)).toBe(after);
   });
 });
 
@@ -125,6 +146,9 @@ describe('a PDB file', () => {
     expect(mend(file(first, second), 'key-repeated', 'pdb')).toBe(file(first));
     expect(mend(file(first, `${second} charge=0`), 'key-repeated', 'pdb')).toBe(
       file(first, 'REMARK  99 fragment=*:HOH:* charge=0'),
+    );
+    expect(mend(file(first, `${second} as measured`), 'key-repeated', 'pdb')).toBe(
+      file(first, 'REMARK  99 fragment=*:HOH:* as measured'),
     );
   });
 

@@ -15,6 +15,8 @@ export interface TextEdit extends Span {
 export interface Fix {
   readonly title: string;
   readonly edits: readonly TextEdit[];
+  /** Whether it takes something out that was given. */
+  readonly drops?: boolean;
 }
 
 export type FragmentPair = readonly [first: number, second: number];

@@ -2,7 +2,7 @@ import type { FindingCode } from '../base/catalogue';
 import type { Finding, TextEdit } from '../base/finding';
 import type { Span } from '../base/span';
 
-/** Remedies that change no number and no atom: they may be applied all at once. */
+/** Remedies that change no number and no atom: they may be applied all at once, but for those that take something out. */
 const SAFE: ReadonlySet<FindingCode> = new Set(['count-wrong', 'key-misspelt', 'array-length']);
 
 /** The findings that a span touches. */
@@ -14,7 +14,7 @@ export function findingsIn(findings: readonly Finding[], span: Span): Finding[] 
 export function safeEdits(findings: readonly Finding[]): TextEdit[] {
   const edits: TextEdit[] = [];
   for (const { code, fix } of findings) {
-    if (fix === undefined || !SAFE.has(code)) continue;
+    if (fix === undefined || fix.drops || !SAFE.has(code)) continue;
     const isClear = fix.edits.every((edit) => edits.every((other) => edit.end < other.start || edit.start > other.end));
     if (isClear) edits.push(...fix.edits);
   }

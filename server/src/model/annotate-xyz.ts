@@ -1,4 +1,4 @@
-import { FindingCollector } from '../base/finding';
+import { FindingCollector, type Fix } from '../base/finding';
 import type { Span } from '../base/span';
 import { finish, inStrides, type Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
@@ -358,22 +358,25 @@ interface Size {
 }
 
 /** Fills a list up with `nan`, or takes away what is too much; a bare value needs quotes to become a list. */
-function lengthFix(source: Snapshot, entry: Entry, items: readonly Span[], needed: number) {
+function lengthFix(source: Snapshot, entry: Entry, items: readonly Span[], needed: number): Fix {
+  const surplus = items.length - needed;
   if (entry.form === 'bare') {
     const words = items.slice(0, needed).map(({ start, end }) => source.slice(start, end));
     while (words.length < needed) words.push('nan');
-    return { title: `Give ${needed} entries`, edits: [{ ...entry.value, text: `"${words.join(' ')}"` }] };
+    const edits = [{ ...entry.value, text: `"${words.join(' ')}"` }];
+    return { title: `Give ${needed} entries`, edits, drops: surplus > 0 };
   }
-  if (items.length > needed) {
+  if (surplus > 0) {
     const start = needed === 0 ? entry.inner.start : items[needed - 1]!.end;
     return {
-      title: `Remove the last ${items.length - needed} entries`,
+      title: surplus === 1 ? 'Remove the last entry' : `Remove the last ${surplus} entries`,
       edits: [{ start, end: items[items.length - 1]!.end, text: '' }],
+      drops: true,
     };
   }
   const at = items.length === 0 ? entry.inner.start : items[items.length - 1]!.end;
   const separator = entry.form === 'bracketed' ? ', ' : ' ';
-  const missing = needed - items.length;
+  const missing = -surplus;
   const text = `${items.length === 0 ? '' : separator}${Array.from({ length: missing }, () => 'nan').join(separator)}`;
   return { title: `Add ${missing} times nan (not given)`, edits: [{ start: at, end: at, text }] };
 }

@@ -25,12 +25,14 @@ export function reportKeys(
   problems: FindingCollector,
 ): void {
   const first = new Map<string, Entry>();
+  // What a misspelt key would become must not be there already.
+  const taken = new Set(entries.map(({ key }) => meaningOf(key)));
   for (const entry of entries) {
     if (!known.includes(entry.key)) {
-      reportMisspelt(entry, known, problems);
+      reportMisspelt(entry, known, taken, problems);
       continue;
     }
-    const meaning = SAME_AS.get(entry.key) ?? entry.key;
+    const meaning = meaningOf(entry.key);
     const earlier = first.get(meaning);
     if (earlier === undefined) first.set(meaning, entry);
     else {
@@ -48,14 +50,20 @@ export function reportKeys(
   }
 }
 
-function reportMisspelt(entry: Entry, known: readonly string[], problems: FindingCollector): void {
+function meaningOf(key: string): string {
+  return SAME_AS.get(key) ?? key;
+}
+
+function reportMisspelt(entry: Entry, known: readonly string[], taken: Set<string>, problems: FindingCollector): void {
   const meant = likelyKey(entry.key, known);
   if (meant === undefined) return;
+  const isFree = !taken.has(meaningOf(meant));
+  taken.add(meaningOf(meant));
   problems.add(
     'key-misspelt',
     entry.keySpan,
     () => `"${entry.key}" is no key; did you mean "${meant}"?`,
-    () => ({ fix: { title: `Replace by ${meant}`, edits: [{ ...entry.keySpan, text: meant }] } }),
+    () => (isFree ? { fix: { title: `Replace by ${meant}`, edits: [{ ...entry.keySpan, text: meant }] } } : {}),
   );
 }
 

@@ -122,12 +122,19 @@ export function checkRemarks(
             `"${entry.key}" is given on line ${earlier.line + 1} and again on line ${line + 1} for the same fragments; the first one is used.`,
           () => ({
             related: [{ ...earlier.entry.keySpan, message: 'The first one stands here.' }],
-            fix: entries.length === 1 ? lineRemoval(lines, line) : removal(text, entry),
+            fix: isAlone(text, lines, line, entry) ? lineRemoval(lines, line) : removal(text, entry),
           }),
         );
       }
     }
   }
+}
+
+/** Whether a remark says nothing but one thing of its fragments. */
+function isAlone(text: Snapshot, lines: LineIndex, line: number, { keySpan, value }: Entry): boolean {
+  const before = text.slice(lines.starts[line]! + TEXT_COLUMN - 1, keySpan.start);
+  const after = text.slice(value.end, lines.end(line));
+  return /^["'\s]*(?:fragment["']?\s*=\s*(?:"[^"]*"|'[^']*'|\S+)\s*)?$/.test(`${before} ${after}`);
 }
 
 /** One of each different residue of a file by its number, and all of them under null. */
