@@ -67,7 +67,8 @@ function keyCompletions({ before, after, language }: CompletionPlace): Completio
     .map((label) => ({
       label,
       kind: 'key',
-      detail: KEY_DOCS[label] ?? '',
+      // Shown above the documentation, as it is.
+      detail: (KEY_FACTS[label]?.values ?? '').replaceAll('`', ''),
       documentation: keyDocumentation(label, language),
       insert: `${label}=`,
       template: null,
@@ -75,13 +76,8 @@ function keyCompletions({ before, after, language }: CompletionPlace): Completio
     }));
 }
 
-/** What a key means, its values and an example, as Markdown. */
+/** What a key means, and an example, as Markdown. */
 export function keyDocumentation(key: string, language: Language): string {
-  const facts = KEY_FACTS[key];
-  const example = facts?.[language];
-  return [
-    KEY_DOCS[key] ?? '',
-    ...(facts === undefined ? [] : [`Values: ${facts.values}.`]),
-    ...(example === undefined ? [] : [`\`${example}\``]),
-  ].join('\n\n');
+  const example = KEY_FACTS[key]?.[language];
+  return [KEY_DOCS[key] ?? '', ...(example === undefined ? [] : [`\`${example}\``])].join('\n\n');
 }

@@ -1,6 +1,6 @@
 // The panel: what it leads with, how it follows, what is chosen in it, and that everyone can use it.
 import { deepStrictEqual, match, ok, strictEqual } from 'node:assert/strict';
-import { readFileSync, rmSync } from 'node:fs';
+import { readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { join } from 'node:path';
 import { WAIT, words } from '../hands.mjs';
@@ -140,6 +140,35 @@ async function ligand(person) {
   await person.shot('matrix');
 }
 
+/** A hundred thousand pairs: only what is seen is there, and the last row is as near as the first. */
+async function large(person) {
+  const { page, place } = person;
+  const waters = Array.from({ length: 1000 }, (_, k) => {
+    const [x, y, z] = [3.1 * (k % 10), 3.1 * (Math.floor(k / 10) % 10), 3.1 * Math.floor(k / 100)];
+    const atom = (symbol, dx, dy) => `${symbol} ${(x + dx).toFixed(4)} ${(y + dy).toFixed(4)} ${z.toFixed(4)}\n`;
+    return atom('O', 0, 0) + atom('H', 0.9572, 0) + atom('H', -0.24, 0.9266);
+  });
+  writeFileSync(join(place.samples, 'crowd.xyz'), `3000\n\n${waters.join('')}`);
+  await person.openFile('crowd.xyz');
+  await person.goTo(1500, 2);
+  await person.command(OPEN);
+  await read(person, 'h2', 'Partners of H2O (500)');
+  await view(person, 'All pairs');
+  const note = await read(person, '.all-pairs [role=status]', /\d{5,} pairs/);
+  const count = Number(/(\d+) pairs/.exec(note)[1]);
+  ok(count > 100_000, note);
+  const grid = person.panel.locator('.all-pairs [role=grid]');
+  strictEqual(await grid.getAttribute('aria-rowcount'), String(count + 1));
+  await grid.focus();
+  await page.keyboard.press('End');
+  await read(person, `.all-pairs [role=row][aria-rowindex="${count + 1}"]`, /H2O \(\d+\) – H2O \(\d+\)/);
+  const made = await person.panel.locator('.all-pairs .rows [role=row]').count();
+  ok(made < 100, `${made} rows are made`);
+  await person.shot('last-row');
+  await view(person, 'Fragment by fragment');
+  await read(person, '.matrix .reading', 'shown for up to 300');
+}
+
 /** It rests while hidden, comes back after a reload, and shows nothing of a file that is gone. */
 async function lasting(person) {
   const { page, place } = person;
@@ -189,5 +218,6 @@ export const PANEL = [
   { name: 'panel-keyboard', run: keyboard, only: 'dark' },
   { name: 'panel-frames', run: frames },
   { name: 'panel-ligand', run: ligand },
+  { name: 'panel-large', run: large, only: 'dark' },
   { name: 'panel-lasting', run: lasting, only: 'light' },
 ];
