@@ -5,6 +5,7 @@ import { join } from 'node:path';
 import * as vscode from 'vscode';
 import { ACTING } from './suite-acting';
 import { closeAll, folder, open, type Suite, sample, until } from './suite-kit';
+import { NAVIGATION } from './suite-navigation';
 import { PROVIDERS } from './suite-providers';
 import { READING } from './suite-reading';
 import { ROUGH } from './suite-rough';
@@ -20,7 +21,7 @@ const FIRST: Suite = {
   },
 };
 
-const SUITES: readonly Suite[] = [READING, PROVIDERS, ACTING, ROUGH];
+const SUITES: readonly Suite[] = [READING, PROVIDERS, NAVIGATION, ACTING, ROUGH];
 
 const LAST: Suite = {
   'nothing was written to the samples': async () => {
