@@ -2,6 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { builtInKnowledge } from '../../server/src/analysis/built-in-knowledge';
 import type { FrameAnalysis } from '../../server/src/analysis/frame-analysis';
 import { type AnalysisRequest, DEFAULT_REQUEST } from '../../server/src/analysis/settings';
+import type { TextEdit } from '../../server/src/base/finding';
+import { addDipolesEdits } from '../../server/src/features/rewrite/add-dipoles';
 import { moveApart } from '../../server/src/features/rewrite/move-fragment';
 import { turnTowardStrongest } from '../../server/src/features/rewrite/turn-fragment';
 import type { Language } from '../../server/src/formats/tree';
@@ -152,6 +154,24 @@ describe('a molecule', () => {
     expect(across(after.text)).toBeGreaterThan(0.1);
     const { findings } = analyse(after.text, 'xyz', KNOWING);
     expect(findings.filter(({ severity }) => severity === 'error')).toEqual([]);
+  });
+});
+
+describe('a residue that is joined to another', () => {
+  const atoms = (number: number, z: number) => [
+    pdbAtom(3 * number, 'O', 'HOH', number, [0, 0, z], 'O'),
+    pdbAtom(3 * number + 1, 'H1', 'HOH', number, [0.757, 0.586, z], 'H'),
+    pdbAtom(3 * number + 2, 'H2', 'HOH', number, [-0.757, 0.586, z], 'H'),
+  ];
+  const joined = `${[...atoms(1, 0), ...atoms(2, 3), ...atoms(3, 9), 'CONECT    3    6'].join('\n')}\n`;
+
+  it('is not given the dipole of those that are not', () => {
+    const { tree, frames } = analyse(joined, 'pdb', KNOWING);
+    const after = edited(joined, addDipolesEdits(tree, frames[0]!) as readonly TextEdit[]);
+    expect(after).toContain('REMARK  99 fragment=A:HOH:3 dipole_size=1.85 axis=O>H1,H2');
+    const [frame] = analyse(after, 'pdb', KNOWING).frames;
+    expect(dipoleOf(frame!, 0)).toEqual(dipoleOf(frames[0]!, 0));
+    expect(dipoleOf(frame!, 1)[1]).toBeCloseTo(1.85 * DEBYE_E_A, 6);
   });
 });
 

@@ -8,7 +8,7 @@ import { atomsOf } from '../../model/fragment-set';
 import { symbolOf } from '../../physics/elements';
 import { CommentLine } from '../rewrite/comment-line';
 import { remarkInsertion } from '../rewrite/remark-lines';
-import { kindSelector, residuesOf, selectorOf } from '../rewrite/selectors';
+import { residuesOf, selectorsOfKind } from '../rewrite/selectors';
 import { offered, type RemedyMaker } from './remedy';
 
 /** A list of more fragments is not written for their ions. */
@@ -71,10 +71,14 @@ function byRemark(
   ions: readonly number[],
   charge: number,
 ): TextEdit[] | null {
-  const nameOf = (f: number) => residuesOf(frame, f)[0]?.name ?? '';
-  const others = new Set<string>();
-  for (const f of frame.model.formulas.keys()) if (!ions.includes(f)) others.add(nameOf(f));
-  const selectors = new Set(ions.map((f) => (others.has(nameOf(f)) ? selectorOf(frame, f) : kindSelector(nameOf(f)))));
+  const byName = new Map<string, number[]>();
+  for (const f of ions) {
+    const name = residuesOf(frame, f)[0]?.name ?? '';
+    const list = byName.get(name);
+    if (list === undefined) byName.set(name, [f]);
+    else list.push(f);
+  }
+  const selectors = new Set([...byName].flatMap(([name, own]) => selectorsOfKind(frame, name, own)));
   if (selectors.has(null) || selectors.size > MOST_LISTED) return null;
   return [
     remarkInsertion(

@@ -4,7 +4,7 @@ import { AtomFlag, type CoordinateTree } from '../../formats/tree';
 import { CommentLine } from './comment-line';
 import { dipoleOffers } from './dipole-offers';
 import { remarkInsertion, remarkSentence } from './remark-lines';
-import { kindSelector, residuesOf, selectorOf } from './selectors';
+import { residuesOf, selectorOf, selectorsOfKind } from './selectors';
 import { addDipoles, dipoleRemarks } from './write-dipoles';
 
 /** Lists of more fragments are not written without need. */
@@ -91,13 +91,27 @@ function pdbHeader(file: CoordinateTree, frame: FrameAnalysis): readonly TextEdi
 /** Charges of ions that are the library's word, a line a kind. */
 function chargeRemarks(frame: FrameAnalysis): string[] {
   const { moments, model } = frame;
-  const lines = new Map<string, string>();
+  const own = new Map<string, number[]>();
   for (let f = 0; f < model.fragments.count; f++) {
     if (moments.chargeSource[f] !== 'library' || moments.chargeE[f] === 0) continue;
     const [residue, ...others] = residuesOf(frame, f);
-    const selector = others.length === 0 && residue !== undefined ? kindSelector(residue.name) : selectorOf(frame, f);
-    if (selector !== null) lines.set(selector, `fragment=${selector} charge=${moments.chargeE[f]}`);
+    const name = others.length === 0 ? residue?.name : undefined;
+    const key = `${name ?? `#${f}`} ${moments.chargeE[f]}`;
+    const list = own.get(key);
+    if (list === undefined) own.set(key, [f]);
+    else list.push(f);
+  }
+  const lines = new Set<string>();
+  for (const fragments of own.values()) {
+    const [residue, ...others] = residuesOf(frame, fragments[0]!);
+    const isKind = others.length === 0 && residue !== undefined;
+    const selectors = isKind
+      ? selectorsOfKind(frame, residue.name, fragments)
+      : fragments.map((f) => selectorOf(frame, f));
+    for (const selector of selectors) {
+      if (selector !== null) lines.add(`fragment=${selector} charge=${moments.chargeE[fragments[0]!]}`);
+    }
   }
   if (lines.size === 0) return [];
-  return [...lines.values(), ...remarkSentence('Charges of ions: those of their usual form.')];
+  return [...lines, ...remarkSentence('Charges of ions: those of their usual form.')];
 }

@@ -9,7 +9,7 @@ import { CommentLine } from './comment-line';
 import type { DipoleOffer } from './dipole-offers';
 import { planDipoles } from './dipole-plan';
 import { remarkInsertion, remarkSentence } from './remark-lines';
-import { kindSelector, residuesOf, selectorOf } from './selectors';
+import { residuesOf, selectorOf, selectorsOfKind } from './selectors';
 
 /** Vectors of more fragments are no list that anyone reads. */
 const MOST_VECTORS = 1000;
@@ -133,9 +133,10 @@ export function dipoleRemarks(
   const lines: string[] = [];
   const sources: string[] = [];
   for (const { kind, sizeEA, axis, offers: own } of plan.kinds) {
+    const fragments = own.map(({ fragment }) => fragment);
     const selectors = kind.includes('+')
-      ? own.map(({ fragment }) => selectorOf(frame, fragment))
-      : [kindSelector(kind)];
+      ? fragments.map((f) => selectorOf(frame, f))
+      : selectorsOfKind(frame, kind, fragments, (f) => frame.model.notes[f]!.dipoleEA !== null);
     for (const selector of selectors) {
       if (selector === null) return `${kind} cannot be named by a selector.`;
       const along = axis === null ? '' : ` axis=${atomNames(frame, own) ?? axis.text}`;
