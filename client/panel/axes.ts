@@ -8,6 +8,7 @@ export interface Scale {
   readonly most: number;
 }
 
+/** Takes values from `least` to `most` to a stretch of the drawing, evenly. */
 export function scale(least: number, most: number, fromPx: number, toPx: number): Scale {
   const at = (value: number) => fromPx + ((value - least) / (most - least)) * (toPx - fromPx);
   return Object.assign(at, { least, most });

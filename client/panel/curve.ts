@@ -18,6 +18,7 @@ const LEADING_SHARE = 0.93;
 const STRETCHES = ['far', 'edge', 'near', 'clash'] as const;
 type Stretch = (typeof STRETCHES)[number];
 
+/** Draws the energy of a pair against the separation of its centres, with the band within ±kT and where the point dipole holds. */
 export function drawCurve({ curve, titles }: ChosenPair, energies: Energies): SVGSVGElement {
   const { points, presentA, validBeyondA } = curve!;
   const { left, right, top, bottom } = FRAME;
@@ -93,6 +94,7 @@ export function curveLegend(): HTMLElement {
   );
 }
 
+/** The curve as CSV; separations in Å, energies in kJ/mol. */
 export function curveCsv({ points }: SeparationCurve): string {
   const head = [
     'distanceA',

@@ -58,14 +58,17 @@ export function tableWords(energies: Energies): string {
   return `E and point in ${unitText(energies.unit)}; ~ is a point estimate without a reference.`;
 }
 
+/** The size of an energy beside kT. */
 export function multipleOfKT({ kTKJPerMol }: Energies, energyKJPerMol: number): string {
   return `${fixed(Math.abs(energyKJPerMol) / kTKJPerMol, 1)} kT`;
 }
 
+/** The energy that a pair is judged by, kJ/mol: the reference, else the point estimate. */
 export function energyOf(pair: PairRecord): number | null {
   return pair.referenceKJPerMol ?? pair.energyKJPerMol.pointDipole;
 }
 
+/** What the sign of an energy means. */
 export function signWord(energyKJPerMol: number): string {
   return energyKJPerMol < 0 ? 'attractive' : energyKJPerMol > 0 ? 'repulsive' : 'neither attractive nor repulsive';
 }

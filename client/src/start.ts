@@ -48,6 +48,7 @@ export async function start(context: ExtensionContext, makeClient: MakeClient): 
       if (client.isRunning()) void client.sendNotification(THEME_NOTIFICATION, { themeKind: currentThemeKind() });
     }),
   );
-  await client.start();
+  // Nothing waits for the server: status and panel say that it is starting, and what is asked meanwhile is answered then.
+  client.start().catch(() => status.serverIs('stopped'));
   return client;
 }

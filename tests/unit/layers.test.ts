@@ -18,7 +18,7 @@ const LAYERS: Readonly<Record<string, Layer>> = {
   'server/src/library': { paths: server('base', 'physics'), packages: [] },
   'server/src/text': { paths: server('base'), packages: [] },
   'server/src/formats': { paths: server('base', 'physics', 'text'), packages: [] },
-  'server/src/model': { paths: server('base', 'physics', 'library', 'text', 'formats'), packages: [] },
+  'server/src/model': { paths: server('base', 'physics', 'text', 'formats'), packages: [] },
   'server/src/analysis': { paths: server('base', 'physics', 'library', 'text', 'formats', 'model'), packages: [] },
   'server/src/features': { paths: server(...CORE.slice(0, -1)), packages: [] },
   'server/src/lsp': { paths: server(...CORE), packages: ['vscode-languageserver'] },

@@ -44,6 +44,7 @@ export const NO_ABILITIES: ClientAbilities = {
   previews: false,
 };
 
+/** What an editor says at the start that it can do. */
 export function abilitiesOf({ workspace, textDocument }: ClientCapabilities): ClientAbilities {
   const { codeAction } = textDocument ?? {};
   return {

@@ -10,14 +10,17 @@ function worstInWords(findings: Analysed['findings']): string {
   return `${plural(count('error'), 'error')}, ${plural(count('warning'), 'warning')}.`;
 }
 
+/** While the pairs are being computed. */
 export function busyStatus(uri: string): StatusParams {
   return { uri, state: 'busy', text: 'computing', detail: 'The pairs of this document are being computed.' };
 }
 
+/** Where the analysis stopped by a fault of ours. */
 export function failedStatus(uri: string, reason: string): StatusParams {
   return { uri, state: 'failed', text: 'failed', detail: `The analysis stopped: ${reason}` };
 }
 
+/** What was found, and which parts are off for a text of this size. */
 export function readyStatus(analysed: Analysed): StatusParams {
   const { document, settings, tree, findings, fragments, pairs, limited } = analysed;
   const frames = plural(tree.frames.length, 'frame');

@@ -66,6 +66,7 @@ export interface FrameNotes {
   silence: ReadonlySet<string>;
 }
 
+/** What is noted of a fragment that nothing is said of. */
 export function emptyNotes(): FragmentNotes {
   return {
     name: null,

@@ -1,6 +1,7 @@
 /** Three numbers: a place, a direction or a dipole. */
 export type Vector = readonly [number, number, number];
 
+/** The vector at a place of a flat array, three numbers each. */
 export function vectorAt(array: ArrayLike<number>, index: number): Vector {
   return [array[3 * index]!, array[3 * index + 1]!, array[3 * index + 2]!];
 }
@@ -34,6 +35,7 @@ export function angleDeg(a: Vector, b: Vector): number {
 /** A rotation as its three rows. */
 export type Rotation = readonly [Vector, Vector, Vector];
 
+/** A vector turned by a rotation. */
 export function rotated(rotation: Rotation, v: Vector): Vector {
   return [dot(rotation[0], v), dot(rotation[1], v), dot(rotation[2], v)];
 }

@@ -56,6 +56,7 @@ export function meantCharge(text: string): string | null {
 
 const MULTIPLICITIES = ['singlet', 'doublet', 'triplet', 'quartet', 'quintet', 'sextet', 'septet'];
 
+/** The multiplicity that is meant, by its word or its number; `null` where that is not sure. */
 export function meantMultiplicity(text: string): string | null {
   const index = MULTIPLICITIES.indexOf(nearestWord(text.trim(), MULTIPLICITIES) ?? '');
   return index >= 0 ? String(index + 1) : meantNumber(text);
@@ -70,12 +71,14 @@ const FLAGS: ReadonlyMap<string, string> = new Map([
   ['.false.', 'false'],
 ]);
 
+/** `true` or `false`, whichever is meant; `null` where that is not sure. */
 export function meantFlag(text: string): string | null {
   const word = text.trim().toLowerCase();
   const near = nearestWord(word, ['true', 'false']);
   return FLAGS.get(word) ?? (word.length > 2 ? near : null);
 }
 
+/** The number or the medium that is meant; `null` where that is not sure. */
 export function meantPermittivity(text: string): string | null {
   const number = meantNumber(text);
   if (number !== null) return Number(number) >= 1 ? number : null;
@@ -170,6 +173,7 @@ const CHARGE_COLUMN_WORDS: ReadonlyMap<string, string> = new Map([
   ['beta', 'bfactor'],
 ]);
 
+/** The column of a PDB file that is meant; `null` where that is not sure. */
 export function meantChargeColumn(text: string): string | null {
   const word = text.trim().toLowerCase();
   const near = CHARGE_COLUMN_WORDS.get(word) ?? nearestWord(word, ['occupancy', 'bfactor']);

@@ -75,6 +75,7 @@ export function parseSelector(text: string): Selector | null {
   };
 }
 
+/** Whether a selector takes a residue in. */
 export function selectorMatches(selector: Selector, residue: Residue): boolean {
   return (
     (selector.chain === null || selector.chain === residue.chain) &&
