@@ -11,7 +11,7 @@ let client: LanguageClient | undefined;
 let worker: Worker | undefined;
 
 /** Entry in a browser: the server is a web worker. */
-export async function activate(context: ExtensionContext): Promise<void> {
+export function activate(context: ExtensionContext): void {
   const script = Uri.joinPath(context.extensionUri, 'server/dist/worker.js').toString(true);
   // A client that starts again wants a worker of its own. The library would not know a worker made here: the host's `Worker` is not its own.
   const startWorker = (): Promise<MessageTransports> => {
@@ -19,7 +19,7 @@ export async function activate(context: ExtensionContext): Promise<void> {
     worker = new Worker(script);
     return Promise.resolve({ reader: new BrowserMessageReader(worker), writer: new BrowserMessageWriter(worker) });
   };
-  await start(context, (options) => {
+  start(context, (options) => {
     client = new LanguageClient('polewise', 'Polewise', startWorker, options);
     return client;
   });

@@ -5,13 +5,13 @@ import { start } from './start';
 let client: LanguageClient | undefined;
 
 /** Entry on the desktop: the server is a process of its own. */
-export async function activate(context: ExtensionContext): Promise<void> {
+export function activate(context: ExtensionContext): void {
   const module = context.asAbsolutePath('server/dist/server.cjs');
   const serverOptions: ServerOptions = {
     run: { module, transport: TransportKind.ipc },
     debug: { module, transport: TransportKind.ipc, options: { execArgv: ['--nolazy', '--inspect=6179'] } },
   };
-  await start(context, (options) => {
+  start(context, (options) => {
     client = new LanguageClient('polewise', 'Polewise', serverOptions, options);
     return client;
   });

@@ -25,7 +25,7 @@ const SERVER_STATES: Readonly<Record<State, ServerState>> = {
 export type MakeClient = (options: LanguageClientOptions) => BaseLanguageClient;
 
 /** Starts server and user interface; the same on the desktop and in a browser. */
-export async function start(context: ExtensionContext, makeClient: MakeClient): Promise<BaseLanguageClient> {
+export function start(context: ExtensionContext, makeClient: MakeClient): BaseLanguageClient {
   const client = makeClient({
     documentSelector: SELECTOR,
     initializationOptions: () => ({ themeKind: currentThemeKind() }),

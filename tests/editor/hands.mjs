@@ -64,6 +64,16 @@ export class Person {
     await this.see('.monaco-editor .view-line');
   }
 
+  /** Opens a file that the explorer has not noticed yet. */
+  async openByName(name) {
+    await this.page.keyboard.press('Control+p');
+    await (await this.see('.quick-input-widget input.input')).fill(name);
+    await this.see('.quick-input-widget .monaco-list-row', name);
+    await this.page.keyboard.press('Enter');
+    await this.see('.tab.active', name);
+    await this.see('.monaco-editor .view-line');
+  }
+
   async goTo(line, column) {
     await this.page.keyboard.press('Control+g');
     const input = await this.see('.quick-input-widget input.input');

@@ -149,7 +149,7 @@ async function large(person) {
     return atom('O', 0, 0) + atom('H', 0.9572, 0) + atom('H', -0.24, 0.9266);
   });
   writeFileSync(join(place.samples, 'crowd.xyz'), `3000\n\n${waters.join('')}`);
-  await person.openFile('crowd.xyz');
+  await person.openByName('crowd.xyz');
   await person.goTo(1500, 2);
   await person.command(OPEN);
   await read(person, 'h2', 'Partners of H2O (500)');
