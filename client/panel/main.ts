@@ -1,5 +1,5 @@
 import './panel.css';
-import { fixed } from '../../server/src/features/number-text';
+import { fixed, plural } from '../../server/src/features/number-text';
 import type { PairPlace } from '../../server/src/features/pair-place';
 import type { PanelPlace } from '../../server/src/lsp/protocol';
 import { AllPairsView } from './all-pairs';
@@ -80,8 +80,8 @@ class Panel {
     }
     this.#title.textContent = place.frames > 1 ? `${file}, frame ${place.frame} of ${place.frames}` : file;
     this.#facts.textContent = [
-      `${place.atoms} atoms`,
-      `${place.fragments} fragments`,
+      plural(place.atoms, 'atom'),
+      plural(place.fragments, 'fragment'),
       `${fixed(place.temperatureK, 2)} K`,
       `εᵣ ${place.relativePermittivity}`,
       `kT ${energyText(answer, place.kTKJPerMol)}`,

@@ -80,7 +80,7 @@ export const CATALOGUE = {
     severity: 'error',
     title: 'Unknown unit',
     meaning: 'A unit is none of those that the quantity can be given in. The quantity is ignored.',
-    remedy: 'For dipoles use D, e*angstrom, a.u. or C*m.',
+    remedy: 'Give a unit of the quantity: D, e*angstrom, a.u. or C*m for dipoles, K or degC for temperatures.',
   },
   'selector-unmatched': {
     severity: 'error',

@@ -1,10 +1,10 @@
 import { csvLine } from '../features/csv';
-import { fixed, NOTHING } from '../features/number-text';
+import { fixed, NOTHING, plural } from '../features/number-text';
 import type { SeriesFrame } from '../features/series';
 import type { SeriesEvent } from '../features/series-events';
 import { type EnergyUnit, energyUnitsPerKJPerMol } from '../physics/units';
 import type { Output } from './output';
-import { CAUTIONS, plural, shownEnergy } from './report-text';
+import { CAUTIONS, shownEnergy } from './report-text';
 import type { SeriesForReport } from './series-command';
 import { type Column, textTable } from './table';
 

@@ -1,6 +1,6 @@
 import type { Advice } from '../analysis/advice';
 import type { FrameAnalysis } from '../analysis/frame-analysis';
-import { fixed, NOTHING } from '../features/number-text';
+import { fixed, NOTHING, plural } from '../features/number-text';
 import {
   type FragmentName,
   findingRecord,
@@ -181,10 +181,6 @@ function uncertainty(valueKJPerMol: Maybe, scale: number): string {
   if (valueKJPerMol === null || valueKJPerMol === 0) return '';
   const value = valueKJPerMol * scale;
   return ` ±${value >= 1 ? value.toFixed(0) : value.toPrecision(1)}`;
-}
-
-export function plural(count: number, what: string): string {
-  return `${count} ${what}${count === 1 ? '' : 's'}`;
 }
 
 function percent(share: number): string {

@@ -15,3 +15,8 @@ export function fixed(value: Maybe, digits: number): string {
 export function unitText(unit: EnergyUnit): string {
   return unit === 'cm-1' ? 'cm⁻¹' : unit;
 }
+
+/** "1 pair", "2 pairs". */
+export function plural(count: number, what: string): string {
+  return `${count} ${what}${count === 1 ? '' : 's'}`;
+}

@@ -1,5 +1,5 @@
 import type { HoverData } from '../features/hover';
-import { fixed, NOTHING } from '../features/number-text';
+import { fixed, NOTHING, plural } from '../features/number-text';
 import { pairPicture } from '../features/pair-picture';
 import { pictureInputOf } from '../features/pair-picture-input';
 import type { PictureTheme } from '../features/pair-picture-parts';
@@ -137,7 +137,7 @@ function picture(
 function renderFrame(data: Extract<HoverData, { kind: 'frame' }>, unit: EnergyUnit): string {
   const { regimes } = data;
   const scale = energyUnitsPerKJPerMol(unit, data.kTKJPerMol);
-  const head = `**Frame ${data.frame} of ${data.frames}** · ${data.atoms} atoms · ${data.fragments} fragments · ${data.pairCount} pairs`;
+  const head = `**Frame ${data.frame} of ${data.frames}** · ${plural(data.atoms, 'atom')} · ${plural(data.fragments, 'fragment')} · ${plural(data.pairCount, 'pair')}`;
   if (data.pairCount === 0) return head;
   const sum = `Sum of the energies ${fixed(data.sumKJPerMol * scale, 1)} ${unit}, over the ${data.summedPairs} pairs that have one. Point dipole: far ${regimes.far}, edge ${regimes.edge}, near ${regimes.near}, without basis ${regimes.none}.`;
   const { energyKJPerMol, nonAdditiveKJPerMol, reason } = data.induction;

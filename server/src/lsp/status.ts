@@ -1,8 +1,7 @@
+import { plural } from '../features/number-text';
 import type { Analysed } from './analyser';
 import { partsOff } from './limits';
 import type { StatusParams } from './protocol';
-
-const plural = (count: number, what: string) => `${count} ${what}${count === 1 ? '' : 's'}`;
 
 /** How many errors and warnings there are. */
 function worstInWords(findings: Analysed['findings']): string {

@@ -378,5 +378,8 @@ function lengthFix(source: Snapshot, entry: Entry, items: readonly Span[], neede
   const separator = entry.form === 'bracketed' ? ', ' : ' ';
   const missing = -surplus;
   const text = `${items.length === 0 ? '' : separator}${Array.from({ length: missing }, () => 'nan').join(separator)}`;
-  return { title: `Add ${missing} times nan (not given)`, edits: [{ start: at, end: at, text }] };
+  return {
+    title: missing === 1 ? 'Add one nan (not given)' : `Add nan ${missing} times (not given)`,
+    edits: [{ start: at, end: at, text }],
+  };
 }
