@@ -26,12 +26,17 @@ export function dimerFile(
   const { moments, settings } = frame.system;
   const fragments = [pair.first, pair.second];
   const hasCharges = fragments.every((f) => frame.system.hasColumn[f] === 1);
+  const hasDipoles = sides.every(({ model, members }) => {
+    const { dipoleEA } = model.tree.atoms;
+    return dipoleEA !== null && members.every((atom) => Number.isFinite(dipoleEA[3 * atom]!));
+  });
   const shift = shiftOf(frame, pair);
   const atoms: PrintableAtom[] = sides.flatMap(({ model, members }, side) =>
     members.map((atom) => ({
       symbol: writtenSymbol(model, atom),
       positionA: [0, 1, 2].map((a) => model.positionA[3 * atom + a]! + (side === 1 ? shift[a]! : 0)),
       chargeE: hasCharges ? model.tree.atoms.chargeE![atom]! : null,
+      dipoleEA: hasDipoles ? Array.from(model.tree.atoms.dipoleEA!.subarray(3 * atom, 3 * atom + 3)) : null,
       fragment: side + 1,
     })),
   );

@@ -5,6 +5,8 @@ export interface PrintableAtom {
   readonly positionA: readonly number[];
   /** Partial charge, e; `null` for all atoms where there is no charge column. */
   readonly chargeE: number | null;
+  /** Atomic dipole, e·Å; none where there is no such column. */
+  readonly dipoleEA?: readonly number[] | null;
   /** Number of the fragment. */
   readonly fragment: number;
 }
@@ -28,15 +30,18 @@ export function printXyzFrame(
   note: string,
 ): string {
   const hasCharges = atoms.every((atom) => atom.chargeE !== null);
-  const properties = `species:S:1:pos:R:3${hasCharges ? ':charge:R:1' : ''}:fragment:I:1`;
+  const hasDipoles = atoms.every(({ dipoleEA }) => dipoleEA != null);
+  const columns = `${hasCharges ? ':charge:R:1' : ''}${hasDipoles ? ':dipoles:R:3' : ''}`;
+  const properties = `species:S:1:pos:R:3${columns}:fragment:I:1`;
   const pairs = [['Properties', properties] as const, ...keys].map(([key, value]) =>
     /[\s,=]/.test(value) && !value.includes(':S:') ? `${key}="${value}"` : `${key}=${value}`,
   );
-  const lines = atoms.map(({ symbol, positionA, chargeE, fragment }) =>
+  const lines = atoms.map(({ symbol, positionA, chargeE, dipoleEA, fragment }) =>
     [
       symbol.padEnd(3),
       ...positionA.map((value) => written(value).padStart(16)),
       ...(hasCharges ? [written(chargeE!).padStart(13)] : []),
+      ...(hasDipoles ? dipoleEA!.map((value) => written(value).padStart(13)) : []),
       String(fragment).padStart(3),
     ].join(' '),
   );
