@@ -110,6 +110,12 @@ describe('an annotated header', () => {
     );
   });
 
+  it('takes a radical for no ion where the multiplicity says so', async () => {
+    const after = (await ask('polewise/insertHeader', xyz('multiplicity=2', 'O 0 0 0', 'H 0 0 0.97', ...water(4)), 1))!;
+    expect(after).not.toContain('_charge');
+    expect(loud(after)).toEqual([]);
+  });
+
   it('keeps to the line ends of the file', async () => {
     const text = xyz('', ...water(0), ...water(8)).replace(/\n/g, '\r\n');
     const after = (await ask('polewise/insertHeader', text, 0))!;

@@ -27,7 +27,7 @@ function xyzHeader(file: CoordinateTree, frame: FrameAnalysis): readonly TextEdi
   };
   const names = model.names.map((name) => name.replace(/[\s"'\\[\]{},=]+/g, '_'));
   add('fragment_names', count <= MOST_LISTED && model.tree.groups?.areWords !== true ? names.join(' ') : null);
-  const charges = knownCharges(frame);
+  const charges = chargesToWrite(frame);
   const isListed = charges.some((charge) => charge !== null && charge !== 0) || count <= MOST_LISTED;
   const hasColumn = model.tree.atoms.chargeE !== null;
   if (isListed && !hasColumn && charges.some((charge) => charge !== null)) {
@@ -48,7 +48,24 @@ function xyzHeader(file: CoordinateTree, frame: FrameAnalysis): readonly TextEdi
   return typeof edits !== 'string' && edits.length === 0 ? 'The frame has all of these keys already.' : edits;
 }
 
-/** Net charges as they are to be written, `null` where nothing says so. */
+/**
+ * Net charges as they are to be written. None are where they would contradict the multiplicity that the file gives: a radical is not the ion
+ * of the same atoms.
+ */
+function chargesToWrite(frame: FrameAnalysis): (number | null)[] {
+  const charges = knownCharges(frame);
+  const { multiplicity } = frame.model.frameNotes;
+  const fromLibrary = frame.moments.chargeSource.some((source, f) => source === 'library' && charges[f] !== 0);
+  if (multiplicity === null || !fromLibrary || charges.includes(null)) return charges;
+  const lowest = lowestMultiplicity(
+    frame,
+    charges.reduce((sum: number, charge) => sum + charge!, 0),
+  );
+  const isOff = lowest !== null && (Number(lowest) - multiplicity.value) % 2 !== 0;
+  return isOff ? charges.map((charge, f) => (frame.moments.chargeSource[f] === 'library' ? null : charge)) : charges;
+}
+
+/** Net charges as the analysis has them, `null` where nothing says so. */
 function knownCharges({ moments, model }: FrameAnalysis): (number | null)[] {
   return Array.from({ length: model.fragments.count }, (_, f) => {
     const charge = moments.chargeE[f]!;
