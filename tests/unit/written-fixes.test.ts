@@ -68,6 +68,7 @@ describe.each(['\n', '\r\n'])('a comment line before %j', (lineEnd) => {
     ['key-misspelt', 'temprature=300', 'temperature=300'],
     ['key-misspelt', 'temprature=300 temperature=310', null],
     ['key-misspelt', 'total_chrge=0 charge=0', null],
+    ['array-length', 'fragment_axes="1 > 2,3 4>5,6"', null],
     ['array-length', 'fragment_charges="0 0 0"', 'fragment_charges="0 0"'],
   ];
 

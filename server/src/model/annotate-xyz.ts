@@ -203,9 +203,17 @@ class XyzBinder {
         const fragments = `${this.#set.count} fragment${this.#set.count === 1 ? '' : 's'}`;
         return `${entry.key} has ${items.length} entries, and ${fragments} need ${needed}${each}.`;
       },
-      () => (needed > MOST_FIXED_ENTRIES ? {} : { fix: lengthFix(this.#reader.text, entry, items, needed) }),
+      () =>
+        needed > MOST_FIXED_ENTRIES || this.#hasLooseArrow(items)
+          ? {}
+          : { fix: lengthFix(this.#reader.text, entry, items, needed) },
     );
     return false;
+  }
+
+  /** Whether blanks beside an arrow have made several entries of one axis. */
+  #hasLooseArrow(items: readonly Span[]): boolean {
+    return items.some(({ start, end }) => /^>|>$/.test(this.#reader.text.slice(start, end)));
   }
 
   #setSize(f: number, read: () => Size | null): void {
