@@ -3,6 +3,7 @@ import type { Contact } from '../analysis/contact';
 import { type FrameAnalysis, pairsOf } from '../analysis/frame-analysis';
 import type { Pair } from '../analysis/pair';
 import type { Regime } from '../analysis/reference';
+import { sortSteps } from '../base/sort-steps';
 import type { Steps } from '../base/steps';
 import type { FrameModel } from '../model/frame-model';
 import { fragmentTitle } from './fragment-title';
@@ -186,39 +187,4 @@ function rowFrom(model: FrameModel, source: RowSource): PairRow {
     contact,
     advice,
   };
-}
-
-const RUN = 2048;
-
-/** Sorts in place: short runs first, which are then merged, with pauses. */
-function* sortSteps(items: Int32Array, compare: (a: number, b: number) => number): Steps<void> {
-  for (let from = 0; from < items.length; from += RUN) {
-    items.subarray(from, from + RUN).sort(compare);
-    yield;
-  }
-  const merged = new Int32Array(items.length);
-  for (let width = RUN; width < items.length; width *= 2) {
-    for (let from = 0; from < items.length; from += 2 * width) {
-      yield* mergeSteps(items, merged, from, from + width, from + 2 * width, compare);
-    }
-    items.set(merged);
-    yield;
-  }
-}
-
-function* mergeSteps(
-  from: Int32Array,
-  to: Int32Array,
-  start: number,
-  middle: number,
-  end: number,
-  compare: (a: number, b: number) => number,
-): Steps<void> {
-  const [firstEnd, secondEnd] = [Math.min(middle, from.length), Math.min(end, from.length)];
-  let [a, b] = [start, firstEnd];
-  for (let at = start; at < secondEnd; at++) {
-    const takesFirst = b >= secondEnd || (a < firstEnd && compare(from[a]!, from[b]!) <= 0);
-    to[at] = takesFirst ? from[a++]! : from[b++]!;
-    if (at % RUN === 0) yield;
-  }
 }

@@ -8,7 +8,7 @@ import type { FrameTree, RemarkAnnotation, Residue } from '../formats/tree';
 import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
-import { type Axis, emptyNotes, type FragmentNotes, ValueReader } from './annotation';
+import { type Axis, emptyNotes, type FragmentNotes, MOST_AXIS_NAMES, ValueReader } from './annotation';
 import { atomsOf, type FragmentSet } from './fragment-set';
 
 /**
@@ -36,9 +36,6 @@ export function annotatePdb(
     return note;
   });
 }
-
-/** An axis names a few atoms; what names more is no axis. */
-const MOST_AXIS_NAMES = 200;
 
 /** Annotation lines with a selector, found by the residue number they ask for. */
 class SelectedRemarks {

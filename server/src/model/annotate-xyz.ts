@@ -3,15 +3,14 @@ import type { Span } from '../base/span';
 import { finish, inStrides, type Steps } from '../base/steps';
 import type { Entry } from '../formats/annotation/entries';
 import { listGroups, listItems, listWords } from '../formats/annotation/lists';
-import { meantAxis, meantCharge, nearestWord, replacement } from '../formats/annotation/meant';
+import { meantCharge, nearestWord, replacement } from '../formats/annotation/meant';
 import { AtomFlag, type FrameTree } from '../formats/tree';
-import { atomicNumberOf } from '../physics/elements';
 import { dipoleUnitEA } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
-import { type Axis, emptyNotes, type FragmentNotes, ValueReader, type WrittenDipole } from './annotation';
+import { emptyNotes, type FragmentNotes, ValueReader, type WrittenDipole } from './annotation';
 import { canonicalFormula } from './formula';
-import { atomsInRanges, rangesOf } from './fragment-list';
 import { atomsOf, type FragmentSet } from './fragment-set';
+import { XyzAxes } from './xyz-axes';
 
 /** Longer lists are not completed by a fix. */
 const MOST_FIXED_ENTRIES = 1000;
@@ -20,8 +19,6 @@ const FRAGMENTS_A_STEP = 1024;
 /** A longer formula, and one in a longer list, is not mended. */
 const LONGEST_KIND = 40;
 const LONGEST_LIST = 2000;
-/** An axis names a few atoms; what names more is no axis. */
-const MOST_AXIS_NAMES = 200;
 
 /** Keys of the first frame that hold for a later one which does not give them itself. */
 export const INHERITED_KEYS = ['fragment_names', 'kind_dipole_sizes', 'kind_axes'];
@@ -93,6 +90,7 @@ class XyzBinder {
   readonly #set: FragmentSet;
   readonly #formulas: readonly string[];
   readonly #notes: FragmentNotes[];
+  readonly #axes: XyzAxes;
   /** The fragments to be looked at where they are not all. */
   readonly #some: readonly number[] | null;
   #byFormula: Map<string, number[]> | null = null;
@@ -111,6 +109,7 @@ class XyzBinder {
     this.#set = set;
     this.#formulas = formulas;
     this.#notes = notes;
+    this.#axes = new XyzAxes(reader, frame, set);
   }
 
   *bind(entries: readonly Entry[], wanted: (key: string) => boolean): Steps<void> {
@@ -153,13 +152,13 @@ class XyzBinder {
     if (axes !== undefined) {
       const groups = listGroups(this.#reader.text, axes);
       if (this.#hasLength(axes, groups, 1)) {
-        for (const [f, group] of groups.entries()) this.#notes[f]!.axis ??= this.#axisByNumbers(group);
+        for (const [f, group] of groups.entries()) this.#notes[f]!.axis ??= this.#axes.byNumbers(group);
       }
     }
     const kindAxes = entryOf('kind_axes');
     if (kindAxes !== undefined) {
       yield* this.#bindKinds(kindAxes, (value) => {
-        const axisOf = this.#axisReader(value);
+        const axisOf = this.#axes.byNames(value);
         return (f) => {
           this.#notes[f]!.axis ??= axisOf(f);
         };
@@ -301,62 +300,6 @@ class XyzBinder {
       }
     }
     return this.#byFormula.get(formula) ?? [];
-  }
-
-  #axisByNumbers(group: Span): Axis | null {
-    const { text } = this.#reader;
-    const words = text.slice(group.start, group.end);
-    if (words.toLowerCase() === 'nan') return null;
-    const mark = words.indexOf('>');
-    const count = this.#frame.atoms.count;
-    const read = (start: number, end: number) => {
-      const ranges = rangesOf(text, { start, end });
-      if (ranges.some(({ from, to }) => !(from >= 1 && to >= from && to <= count))) return [];
-      return atomsInRanges(ranges);
-    };
-    const before = mark < 0 ? [] : read(group.start, group.start + mark);
-    const after = mark < 0 ? [] : read(group.start + mark + 1, group.end);
-    if (before.length > 0 && after.length > 0) return { before, after, span: group };
-    const reason = /^[\d,-]+>[\d,-]+$/.test(words)
-      ? `The axis "${this.#reader.shown(group)}" names atoms outside 1 to ${count}.`
-      : `"${this.#reader.shown(group)}" is no axis; write atom numbers as in 1>2,3.`;
-    return this.#reader.invalid(group, reason, meantAxis(this.#reader.shown(group)));
-  }
-
-  /** Reads an axis by symbols (`O>H`), for all fragments that it is given to. */
-  #axisReader(value: Span): (f: number) => Axis | null {
-    const words = this.#reader.text.slice(value.start, value.end);
-    const sides = words.split('>').map((side) => [...new Set(side.split(','))].map((name) => name.trim()));
-    const isAxis = sides.length === 2 && sides.every((side) => side.length <= MOST_AXIS_NAMES);
-    const elements = sides.map((side) => side.map((name) => [name, atomicNumberOf(name)] as const));
-    return (f) => {
-      const [before, after] = isAxis ? elements.map((side) => this.#atomsNamed(f, side)) : [];
-      if (before?.length && after?.length) return { before, after, span: value };
-      return this.#reader.invalid(
-        value,
-        `"${this.#reader.shown(value)}" names no atoms on both sides of ">"; write symbols as in O>H.`,
-        meantAxis(this.#reader.shown(value)),
-      );
-    };
-  }
-
-  /** Atoms of a fragment by element, or by the label that stands in the file. */
-  #atomsNamed(f: number, names: readonly (readonly [name: string, element: number])[]): number[] {
-    const { starts, members } = this.#set;
-    const { element } = this.#frame.atoms;
-    const named: number[] = [];
-    for (const [name, z] of names) {
-      for (let k = starts[f]!; k < starts[f + 1]!; k++) {
-        const atom = members[k]!;
-        if (z > 0 ? element[atom] === z : this.#labelOf(atom) === name) named.push(atom);
-      }
-    }
-    return named;
-  }
-
-  #labelOf(atom: number): string {
-    const { start, end } = this.#frame.fieldSpan(atom, 'element');
-    return this.#reader.text.slice(start, end);
   }
 }
 

@@ -19,6 +19,9 @@ import { type Dimension, readQuantity } from '../physics/quantity';
 import { dipoleUnitEA, standardDipoleUnit } from '../physics/units';
 import type { Snapshot } from '../text/snapshot';
 
+/** An axis names a few atoms; what names more is no axis. */
+export const MOST_AXIS_NAMES = 200;
+
 /** Direction of a dipole by atoms: from the mean position of `before` to that of `after` (atom indices of the frame). */
 export interface Axis {
   readonly before: readonly number[];
