@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { dimerFile } from '../../server/src/features/dimer-file';
-import { namesOf } from '../../server/src/features/hover';
+import { namesOf } from '../../server/src/features/partner-view';
 import { analyse } from '../support/analyse';
 
 /** Two waters with what a column gives each atom. */

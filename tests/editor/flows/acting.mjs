@@ -46,7 +46,7 @@ async function walkthrough(person) {
   await person.see('.tab', 'sample-cluster.xyz');
   await person.see('.monaco-editor .view-line', 'acetone');
   await person.shot('opened');
-  await step('Read what is known', 'Explain This Line', 'read.svg');
+  await step('Read what is known', 'Show the Hover of This Line', 'read.svg');
   await person.see('.monaco-hover:not(.hidden) .hover-row', 'C3H6O');
   await person.shot('explained');
   await page.keyboard.press('Escape');
