@@ -1,5 +1,5 @@
 import { type Disposable, type DocumentSelector, LanguageStatusSeverity, languages, window, workspace } from 'vscode';
-import type { StatusParams } from '../../server/src/lsp/protocol';
+import { OPEN_PANEL_COMMAND, type StatusParams } from '../../server/src/lsp/protocol';
 
 const SEVERITY = {
   idle: LanguageStatusSeverity.Information,
@@ -27,6 +27,7 @@ export class StatusView implements Disposable {
   constructor(selector: DocumentSelector) {
     this.#item = languages.createLanguageStatusItem('polewise.status', selector);
     this.#item.name = 'Polewise';
+    this.#item.command = { title: 'Open panel', command: OPEN_PANEL_COMMAND };
     this.#subscriptions = [
       window.onDidChangeActiveTextEditor(() => this.#show()),
       workspace.onDidCloseTextDocument((document) => this.#byUri.delete(document.uri.toString())),

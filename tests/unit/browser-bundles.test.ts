@@ -1,4 +1,4 @@
-import { existsSync, readFileSync } from 'node:fs';
+import { existsSync, readFileSync, statSync } from 'node:fs';
 import { resolve } from 'node:path';
 import { build, type Metafile } from 'esbuild';
 import { describe, expect, it } from 'vitest';
@@ -9,6 +9,7 @@ import { describe, expect, it } from 'vitest';
 const BUNDLES: Readonly<Record<string, readonly string[]>> = {
   'client/dist/browser.js': ['vscode'],
   'server/dist/worker.js': [],
+  'client/dist/panel.js': [],
 };
 
 /** The modules that a script asks for by name as it runs. */
@@ -26,6 +27,13 @@ describe.each(Object.keys(BUNDLES))('%s', (file) => {
     expect(readFileSync('.vscodeignore', 'utf8').split('\n')).toContain(`!${file}`);
   });
 });
+
+it.each(['client/dist/extension.cjs', 'client/dist/browser.js'])(
+  '%s, read at every start, has at most 500 kB',
+  (file) => {
+    expect(statSync(file).size).toBeLessThanOrEqual(500_000);
+  },
+);
 
 describe('the manifest', () => {
   const manifest = JSON.parse(readFileSync('package.json', 'utf8'));

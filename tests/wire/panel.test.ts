@@ -301,6 +301,21 @@ describe('nothing stale', () => {
     expect(after.rows).not.toEqual(before.rows);
   });
 
+  it('keeps its head where a question makes no sense', async () => {
+    const uri = openSample('water-cluster.xyz');
+    const query = { key: 'colour', descending: 'yes', advice: 'none such', text: 7 };
+    const answer: PanelRows = await ask(PANEL_ROWS_REQUEST, { uri, frame: 1, query, from: -5, count: 3 });
+    expect(answer.matching).toBe(0);
+    const all: PanelRows = await ask(PANEL_ROWS_REQUEST, {
+      uri,
+      frame: 1,
+      query: { ...query, advice: null },
+      from: 0,
+      count: 99,
+    });
+    expect(all.rows.every(({ first, second }) => first === 7 || second === 7)).toBe(true);
+  });
+
   it.each([
     [PANEL_ROWS_REQUEST, { frame: 99, query: BY_STRENGTH, from: 0, count: 5 }],
     [PANEL_MATRIX_REQUEST, { frame: 0 }],

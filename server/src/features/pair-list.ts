@@ -156,6 +156,9 @@ export class PairList {
         return (at) => words[3 * at + 1]!;
       case 'advice':
         return (at) => words[3 * at + 2]!;
+      default:
+        // A key that another client made up orders nothing.
+        return (at) => at;
     }
   }
 }

@@ -154,11 +154,12 @@ export class PanelAnswers {
   }
 
   async #order(frame: number, list: PairList, query: PanelRowsParams['query'], pace: Pace): Promise<Int32Array> {
-    const { key, descending, advice, text } = query;
+    const { key, descending, advice } = query;
+    const text = String(query.text ?? '');
     const name = JSON.stringify([frame, key, descending, advice, text]);
     let order = this.#orders.get(name);
     if (order === undefined) {
-      order = await pace.finish(list.orderSteps(query));
+      order = await pace.finish(list.orderSteps({ key, descending, advice, text }));
       // One order is looked at at a time.
       this.#orders.clear();
       this.#orders.set(name, order);
