@@ -1,4 +1,5 @@
-// Uses the editor as a person would, in every theme: `node tests/editor/person.mjs [--theme=hc] [--flow=pdb]`.
+// Uses the editor as a person would: `node tests/editor/person.mjs [--theme=hc] [--flow=pdb] [--every]`. Flows that read and draw most run in
+// every theme, the others in one of their own; `--every` runs all of them in all.
 // Screenshots go to $POLEWISE_SHOTS, or to polewise-shots in the system's folder for temporary files.
 import { ACTING } from './flows/acting.mjs';
 import { EDITING } from './flows/editing.mjs';
@@ -43,8 +44,8 @@ await main(async (atEnd) => {
     await place.setSettings(calmSettings({ 'workbench.colorTheme': colorTheme }));
     const window = await newWindow(browser);
     await window.open(server, place);
-    // What does not depend on colours is done in one theme.
-    const wanted = flows.filter(({ only = theme }) => only === theme);
+    const isEvery = process.argv.includes('--every') || option('theme') !== '';
+    const wanted = flows.filter((flow) => isEvery || (flow.theme ?? theme) === theme);
     await runFlows(window.page, place, theme, wanted);
     window.checkErrors();
     await window.context.close();

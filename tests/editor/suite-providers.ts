@@ -162,18 +162,15 @@ export const PROVIDERS: Suite = {
       ok(labels.includes('silence'), labels.join(' '));
     }),
 
-  'every quick fix in the mistakes takes its finding away and changes nothing else, with either line end': async () => {
-    const texts: Record<string, string> = {};
-    for (const name of MISTAKES) {
-      const text = readFileSync(sample(name).fsPath, 'utf8');
-      texts[name] = text;
-      texts[`crlf-${name}`] = text.replaceAll('\n', '\r\n');
-    }
-    await withFiles(texts, async (uri) => {
-      const counts: Record<string, number> = {};
-      for (const name of Object.keys(texts)) counts[name] = await everyFix(uri(name));
-      for (const name of MISTAKES) strictEqual(counts[name], counts[`crlf-${name}`]);
-      ok(counts['typical-mistakes.xyz']! >= 5, JSON.stringify(counts));
-    });
-  },
+  'every quick fix in the mistakes takes its finding away and changes nothing else, whatever the line end':
+    async () => {
+      const texts = Object.fromEntries(MISTAKES.map((name) => [name, readFileSync(sample(name).fsPath, 'utf8')]));
+      // Over the protocol each is taken with both line ends; here one file has the one and the other the other.
+      texts['typical-mistakes.pdb'] = texts['typical-mistakes.pdb']!.replaceAll('\n', '\r\n');
+      await withFiles(texts, async (uri) => {
+        const counts: Record<string, number> = {};
+        for (const name of MISTAKES) counts[name] = await everyFix(uri(name));
+        ok(counts['typical-mistakes.xyz']! >= 15 && counts['typical-mistakes.pdb']! >= 5, JSON.stringify(counts));
+      });
+    },
 };

@@ -129,7 +129,7 @@ async function fileSettings(person) {
 }
 
 export const ACTING = [
-  { name: 'file-settings', run: fileSettings },
-  { name: 'walkthrough', run: walkthrough },
-  { name: 'writing', run: writing },
+  { name: 'file-settings', run: fileSettings, theme: 'hc' },
+  { name: 'walkthrough', run: walkthrough, theme: 'light' },
+  { name: 'writing', run: writing, theme: 'hc' },
 ];

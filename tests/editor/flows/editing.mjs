@@ -98,8 +98,8 @@ async function completing(person) {
 }
 
 export const EDITING = [
-  { name: 'remedies', run: remedies, only: 'dark' },
-  { name: 'turning', run: turning },
-  { name: 'moving', run: moving },
-  { name: 'completing', run: completing, only: 'light' },
+  { name: 'remedies', run: remedies, theme: 'dark' },
+  { name: 'turning', run: turning, theme: 'light' },
+  { name: 'moving', run: moving, theme: 'hc' },
+  { name: 'completing', run: completing, theme: 'light' },
 ];

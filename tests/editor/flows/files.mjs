@@ -45,6 +45,6 @@ async function twoEditors(person) {
 }
 
 export const FILES = [
-  { name: 'renamed', run: renamed },
-  { name: 'two-editors', run: twoEditors },
+  { name: 'renamed', run: renamed, theme: 'dark' },
+  { name: 'two-editors', run: twoEditors, theme: 'light' },
 ];

@@ -215,9 +215,9 @@ async function lasting(person) {
 
 export const PANEL = [
   { name: 'panel-cluster', run: cluster },
-  { name: 'panel-keyboard', run: keyboard, only: 'dark' },
-  { name: 'panel-frames', run: frames },
-  { name: 'panel-ligand', run: ligand },
-  { name: 'panel-large', run: large, only: 'dark' },
-  { name: 'panel-lasting', run: lasting, only: 'light' },
+  { name: 'panel-keyboard', run: keyboard, theme: 'dark' },
+  { name: 'panel-frames', run: frames, theme: 'hc' },
+  { name: 'panel-ligand', run: ligand, theme: 'light' },
+  { name: 'panel-large', run: large, theme: 'dark' },
+  { name: 'panel-lasting', run: lasting, theme: 'light' },
 ];

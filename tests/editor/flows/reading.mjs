@@ -76,6 +76,6 @@ async function mistakes(person) {
 
 export const READING = [
   { name: 'cluster', run: cluster },
-  { name: 'pdb', run: pdb },
-  { name: 'mistakes', run: mistakes },
+  { name: 'pdb', run: pdb, theme: 'dark' },
+  { name: 'mistakes', run: mistakes, theme: 'hc' },
 ];
