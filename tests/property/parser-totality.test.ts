@@ -65,8 +65,8 @@ function content({ frames, remarks }: CoordinateTree) {
   };
 }
 
-/** Findings by line and column. */
-function placed({ file, findings }: Outcome) {
+/** Findings by line and column; lines that a remedy adds with the given end. */
+function placed({ file, findings }: Outcome, lineEnd = '\n') {
   const place = ({ start, end }: { start: number; end: number }) => [
     file.lines.positionAt(start),
     file.lines.positionAt(end),
@@ -76,7 +76,10 @@ function placed({ file, findings }: Outcome) {
     message,
     at: place(span),
     related: related.map((other) => [other.message, ...place(other)]),
-    fix: fix === undefined ? null : [fix.title, fix.edits.map((edit) => [edit.text, ...place(edit)])],
+    fix:
+      fix === undefined
+        ? null
+        : [fix.title, fix.edits.map((edit) => [edit.text.replaceAll('\n', lineEnd), ...place(edit)])],
   }));
 }
 
@@ -283,7 +286,7 @@ describe('reading is the same', () => {
         const one = inLanguage(plain, language);
         const two = inLanguage(plain.replaceAll('\n', '\r\n'), language);
         expect(content(two.file)).toEqual(content(one.file));
-        expect([placed(two), two.pairs]).toEqual([placed(one), one.pairs]);
+        expect([placed(two), two.pairs]).toEqual([placed(one, '\r\n'), one.pairs]);
       }),
       { ...RUNS, numRuns: 250 },
     );
