@@ -5,7 +5,7 @@ import { describe, expect, type TestContext, test } from 'vitest';
 /** With which the scripts end where no rig can be had. */
 const NO_RIG = 77;
 /** Making the rig from nothing takes about a minute on a fast network. */
-const LIMIT = 8 * 60_000;
+const LIMIT = 10 * 60_000;
 const GRACE = 10_000;
 /** A whole editor beside all other tests on two cores may be slow to draw; what fails three times is broken. */
 const RETRIES = 2;
