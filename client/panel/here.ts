@@ -32,6 +32,7 @@ export class HereView {
   readonly #partnersUnit = html('p', { class: 'quiet' });
   readonly #partners: PairTable;
   #place: PlaceData | null = null;
+  #isUnfolded = false;
 
   constructor(host: Host) {
     this.#host = host;
@@ -52,7 +53,14 @@ export class HereView {
   show(place: PlaceData, energies: Energies): void {
     this.#place = place;
     const { chosen, here, partners, partnerCount } = place;
+    const focused = this.#pair.contains(document.activeElement) ? document.activeElement?.textContent : null;
     this.#pair.replaceChildren(...(chosen === null ? this.#nothing(place) : this.#chosen(place, chosen, energies)));
+    // The keyboard stays on the button that it was on.
+    if (focused !== null) {
+      [...this.#pair.querySelectorAll<HTMLElement>('button, summary')]
+        .find((other) => other.textContent === focused)
+        ?.focus();
+    }
     const some = partners.length < partnerCount ? `the first ${partners.length} of ${partnerCount}` : `${partnerCount}`;
     this.#partnersTitle.textContent =
       here === null ? `Strongest pairs of this frame: ${some}` : `Partners of ${here.title}: ${some}`;
@@ -99,9 +107,7 @@ export class HereView {
       actions,
       image,
       ...this.#curve(chosen, energies),
-      html(
-        'details',
-        {},
+      this.#details(
         html('summary', {}, 'Terms, angles and where the dipoles come from'),
         termTable(chosen, energies),
         html('p', {}, `${titles[0]}: ${fragmentWords(first)}`),
@@ -110,6 +116,15 @@ export class HereView {
       ),
       html('p', { class: 'quiet' }, 'Estimate for triage, not a substitute for a quantum calculation.'),
     ];
+  }
+
+  /** What is unfolded stays so while the cursor moves on. */
+  #details(...content: HTMLElement[]): HTMLDetailsElement {
+    const details = html('details', { open: this.#isUnfolded }, ...content);
+    details.addEventListener('toggle', () => {
+      this.#isUnfolded = details.open;
+    });
+    return details;
   }
 
   #curve(chosen: ChosenPair, energies: Energies): HTMLElement[] {

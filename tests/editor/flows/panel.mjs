@@ -109,6 +109,11 @@ async function keyboard(person) {
   await person.see('.monaco-editor .selected-text');
   await page.keyboard.press('Shift+Tab');
   await view(person, 'At the cursor');
+  // A button keeps the keyboard though what it does draws everything anew.
+  await person.panel.getByRole('button', { name: 'Select its atoms' }).focus();
+  await page.keyboard.press('Enter');
+  await page.waitForTimeout(700);
+  strictEqual(words(await person.panel.locator(':focus').first().textContent()), 'Select its atoms');
   const [first, second] = current.split(' – ');
   const shown = await read(person, 'h2', first);
   ok(shown.includes(second), `${shown} is ${current}`);
