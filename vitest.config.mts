@@ -5,6 +5,8 @@ export default defineConfig({
   test: {
     include: ['tests/**/*.test.ts'],
     testTimeout: 60_000,
+    // Left to itself it leaves a core free: of two that is half.
+    maxWorkers: '100%',
     reporters: ['default'],
   },
 });
