@@ -7,6 +7,8 @@ import { join } from 'node:path';
 /** Where the screenshots go. */
 export const SHOTS = process.env.POLEWISE_SHOTS || join(tmpdir(), 'polewise-shots');
 export const WAIT = 30_000;
+/** A whole editor on a busy machine may be slow to draw; a flow that fails as often as this is broken. */
+const ATTEMPTS = 3;
 
 /** Text as it reads on the screen, without the spaces that must not break. */
 export const words = (text) => text.replaceAll('\u00a0', ' ').replaceAll('−', '-').replace(/\s+/g, ' ').trim();
@@ -197,17 +199,21 @@ export function makeShots(...themes) {
 /** Runs flows one after another in one window: a new one for each would take longer than the flow. */
 export async function runFlows(page, place, theme, flows) {
   for (const flow of flows) {
-    const started = Date.now();
-    const person = new Person(page, place, { theme, flow: flow.name });
-    try {
-      await person.tidyUp();
-      await flow.run(person);
-      // What is left unsaved would come back in the next window.
-      if (flow === flows.at(-1)) await person.tidyUp();
-    } catch (error) {
-      await person.shot('failed').catch(() => {});
-      throw error;
+    for (let attempt = 1; ; attempt++) {
+      const started = Date.now();
+      const person = new Person(page, place, { theme, flow: flow.name });
+      try {
+        await person.tidyUp();
+        await flow.run(person);
+        // What is left unsaved would come back in the next window.
+        if (flow === flows.at(-1)) await person.tidyUp();
+        console.log(`passed ${theme} ${flow.name} (${Date.now() - started} ms)`);
+        break;
+      } catch (error) {
+        await person.shot(`failed-${attempt}`).catch(() => {});
+        if (attempt === ATTEMPTS) throw error;
+        console.log(`again ${theme} ${flow.name}: ${String(error.message).split('\n')[0]}`);
+      }
     }
-    console.log(`passed ${theme} ${flow.name} (${Date.now() - started} ms)`);
   }
 }
