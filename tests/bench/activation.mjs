@@ -61,7 +61,7 @@ await main(async (atEnd) => {
   const shown = (values) => `${median(values).toFixed(1)} (${values.map((value) => value.toFixed(1)).join(', ')})`;
   console.log(`Activation in a fresh extension host, medians of ${rounds} rounds, ms (and every round):`);
   console.log(`  an extension that does nothing  ${shown(of(EMPTY))}`);
-  console.log(`  Polewise, its server answering  ${shown(of(OURS))}`);
+  console.log(`  Polewise                        ${shown(of(OURS))}`);
   const ratio = (pick) => (pick(of(OURS)) / pick(of(EMPTY))).toFixed(1);
   const least = (values) => Math.min(...values);
   console.log(`  ratio of the medians ${ratio(median)}, of the least of all rounds ${ratio(least)}`);
