@@ -1,5 +1,6 @@
 // What has to work where there is no server's process: findings, hints, hovers with pictures, status, quick fixes, units.
 import { ok } from 'node:assert/strict';
+import { WAIT } from '../hands.mjs';
 
 async function browser(person) {
   const { page } = person;
@@ -30,6 +31,17 @@ async function browser(person) {
   await person.gone('.markers-panel .monaco-list-row', 'array-length');
   await person.see('.markers-panel .monaco-list-row', 'unit-unknown');
   await person.shot('fixed');
+
+  // The panel and the commands, which are bundles of their own elsewhere, work here too.
+  await person.openFile('bare-cluster.xyz');
+  await person.see('.codelens-decoration', 'to compute');
+  await person.goTo(4, 3);
+  await person.command('Polewise: Open the Panel of Pairs');
+  await person.panel.locator('h2', { hasText: 'C3H6O (1)' }).first().waitFor({ timeout: WAIT });
+  await person.shot('panel');
+  await person.focusEditor();
+  await person.command('Polewise: Add Missing Dipoles');
+  await person.see('.monaco-editor .view-line', 'fragment_dipoles');
 }
 
 export const BROWSER = [{ name: 'browser', run: browser }];
