@@ -41,6 +41,8 @@ class Panel {
   #uri = this.#host.kept.uri ?? '';
   #pair: PairPlace | null = this.#host.kept.pair ?? null;
   #last: PanelPlace | null = null;
+  /** What each view of a whole frame was last filled with. */
+  readonly #filled = new Map<ViewId, string>();
 
   constructor() {
     const main = html('main', {}, this.#tabs.element);
@@ -61,6 +63,7 @@ class Panel {
 
   #hear(message: Exclude<FromHost, { kind: 'answer' }>): void {
     if (message.kind === 'state') {
+      this.#filled.clear();
       // What was computed of an earlier text is not left to be read as if it held.
       document.body.classList.toggle('busy', message.state === 'busy');
       this.#state.textContent = message.text;
@@ -68,6 +71,7 @@ class Panel {
       return;
     }
     const { uri, file, answer } = message;
+    if (uri !== this.#uri) this.#filled.clear();
     this.#uri = uri;
     this.#last = answer;
     const { place } = answer;
@@ -100,17 +104,22 @@ class Panel {
     this.#facts.textContent = '';
   }
 
-  /** Fills the view that is seen; the others are filled when they are. */
+  /**
+   * Fills the view that is seen; the others are filled when they are. What stands for the whole frame is not asked for again while only the
+   * cursor moves: each new analysis is told of as busy, and forgets what is filled.
+   */
   #fill(id: ViewId): void {
     const place = this.#last?.place;
     if (this.#last === null || place === null || place === undefined) return;
     const { frame, chosen } = place;
     if (id === 'here') this.#here.show(place, this.#last);
-    if (id === 'pairs') this.#pairs.show(frame);
-    if (id === 'matrix') this.#matrix.show(frame, chosen?.pair ?? null);
-    if (id === 'frames') {
-      this.#frames.show(chosen === null ? null : { frame, first: chosen.pair.first, second: chosen.pair.second });
-    }
+    const pair = chosen === null ? null : { frame, first: chosen.pair.first, second: chosen.pair.second };
+    const subject = JSON.stringify(id === 'frames' ? pair : frame);
+    const isFilled = this.#filled.get(id) === subject;
+    this.#filled.set(id, subject);
+    if (id === 'pairs' && !isFilled) this.#pairs.show(frame);
+    if (id === 'matrix' && !isFilled) this.#matrix.show(frame, pair);
+    if (id === 'frames' && !isFilled) this.#frames.show(pair);
     if (id === 'pairs' && chosen !== null) this.#pairs.mark(chosen.pair.first, chosen.pair.second);
   }
 }

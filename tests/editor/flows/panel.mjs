@@ -78,6 +78,14 @@ async function cluster(person) {
   await person.panel.locator('.matrix svg').waitFor({ timeout: WAIT });
   await person.shot('matrix');
   await isAccessible(person);
+
+  // A table is not left as it was before an edit.
+  await view(person, 'All pairs');
+  await read(person, '.all-pairs [role=status]', /of 21 pairs/);
+  await toText(person, 'water-cluster.xyz');
+  await person.goTo(21, 1);
+  await page.keyboard.press('Control+Shift+k');
+  await read(person, '.all-pairs [role=status]', /of (?!21 )\d+ pairs/);
 }
 
 /** Everything by keyboard alone. */
