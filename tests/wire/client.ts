@@ -127,6 +127,7 @@ export class WireClient {
   settings: unknown;
   files: Record<string, string>;
   initialized: InitializeResult | undefined;
+  #opened = 0;
   readonly #process: ChildProcess | null;
   readonly #exit: Promise<number | null>;
   readonly #waiting: { test: () => boolean; done: () => void }[] = [];
@@ -189,6 +190,13 @@ export class WireClient {
   until(test: () => boolean): Promise<void> {
     if (test()) return Promise.resolve();
     return new Promise((done) => this.#waiting.push({ test, done }));
+  }
+
+  /** Opens a text under an address of its own, and gives that. */
+  openNew(text: string, languageId = 'xyz'): string {
+    const uri = `file:///new/${++this.#opened}.${languageId}`;
+    this.open(uri, text, languageId);
+    return uri;
   }
 
   open(uri: string, text: string, languageId = 'xyz', version = 1): void {

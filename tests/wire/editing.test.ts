@@ -23,7 +23,6 @@ import { WireClient } from './client';
 
 const SAMPLES = readdirSync('samples').filter((name) => /\.(xyz|pdb)$/.test(name));
 let client: WireClient;
-let count = 0;
 
 beforeAll(async () => {
   client = await WireClient.start();
@@ -33,11 +32,7 @@ afterAll(async () => {
   expect(await client.stop()).toBe(0);
 });
 
-function open(text: string, language = 'xyz'): string {
-  const uri = `file:///editing/${++count}.${language}`;
-  client.open(uri, text, language);
-  return uri;
-}
+const open = (text: string, language = 'xyz') => client.openNew(text, language);
 
 function actions(uri: string, range: Range, diagnostics: Diagnostic[], only?: string[]): Promise<CodeAction[]> {
   const context = { diagnostics, ...(only === undefined ? {} : { only }) };

@@ -19,7 +19,6 @@ const CLUSTER = readFileSync('samples/water-cluster.xyz', 'utf8');
 const ATOM = '1\nalone\nAr 0 0 0\n';
 
 let client: WireClient;
-let count = 0;
 
 beforeAll(async () => {
   client = await WireClient.start();
@@ -29,11 +28,7 @@ afterAll(async () => {
   expect(await client.stop()).toBe(0);
 });
 
-function open(text: string, language = 'xyz'): string {
-  const uri = `file:///lens/${++count}.${language}`;
-  client.open(uri, text, language);
-  return uri;
-}
+const open = (text: string, language = 'xyz') => client.openNew(text, language);
 
 const lenses = async (own: WireClient, uri: string) =>
   (await own.connection.sendRequest(CodeLensRequest.type, { textDocument: { uri } }))!;

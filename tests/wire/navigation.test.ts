@@ -20,7 +20,6 @@ import { edited, offsetIn, placeOf, textIn } from './places';
 /** Definition, references, highlights, rename and growing selection over a real connection. */
 
 let client: WireClient;
-let count = 0;
 
 beforeAll(async () => {
   client = await WireClient.start();
@@ -30,11 +29,7 @@ afterAll(async () => {
   expect(await client.stop()).toBe(0);
 });
 
-function open(text: string, language = 'xyz'): string {
-  const uri = `file:///navigation/${++count}.${language}`;
-  client.open(uri, text, language);
-  return uri;
-}
+const open = (text: string, language = 'xyz') => client.openNew(text, language);
 
 const languageOf = (text: string) => (/^(?:REMARK|ATOM|HETATM|MODEL|CRYST1)/m.test(text) ? 'pdb' : 'xyz');
 

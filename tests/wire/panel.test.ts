@@ -22,7 +22,6 @@ import { WireClient } from './client';
 const SAMPLES = readdirSync('samples').filter((name) => /\.(xyz|pdb)$/.test(name));
 const BY_STRENGTH: RowQuery = { key: 'strength', descending: true, advice: null, text: '' };
 let client: WireClient;
-let count = 0;
 
 beforeAll(async () => {
   client = await WireClient.start();
@@ -32,11 +31,7 @@ afterAll(async () => {
   expect(await client.stop()).toBe(0);
 });
 
-function open(text: string, language = 'xyz'): string {
-  const uri = `file:///panel/${++count}.${language}`;
-  client.open(uri, text, language);
-  return uri;
-}
+const open = (text: string, language = 'xyz') => client.openNew(text, language);
 
 function openSample(name: string): string {
   return open(readFileSync(`samples/${name}`, 'utf8'), name.endsWith('.pdb') ? 'pdb' : 'xyz');
